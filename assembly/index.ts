@@ -1,0 +1,9 @@
+// Every export of the kernel, grouped by the question that it serves.
+
+// The border itself
+export { alloc, mark, release, setCeiling } from "./memory";
+export { drawMoves, drawStart } from "./random/choices";
+// Randomness
+export { philoxBlock } from "./random/philox";
+export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
+export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";

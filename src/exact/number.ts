@@ -1,0 +1,36 @@
+/**
+ * An exact number of the walk file: a real number that can be evaluated to any number of
+ * bits with a proved error, and whose kind is known.
+ */
+import { Rational } from "./rational.js";
+
+/** `rational` and `algebraic` (irrational) are proved; `unproved`: neither could be proved. */
+export type NumberKind = "rational" | "algebraic" | "unproved";
+
+export interface ExactNumber {
+  /** As the file wrote it (for a polynomial: a readable rendering). */
+  readonly text: string;
+  readonly kind: NumberKind;
+  /** The value, when `kind` is `rational`. */
+  readonly rational?: Rational;
+  /**
+   * When `kind` is `algebraic`: an integer polynomial that vanishes at the number,
+   * coefficients from the constant term up (not always the minimal one).
+   */
+  readonly polynomial?: readonly bigint[];
+  /** An integer m with |x 2^bits - m| <= 1, proved. */
+  toFixed(bits: number): bigint;
+  /** A double within two units in the last place of the value. */
+  toNumber(): number;
+}
+
+/** The exact number that equals a fraction. */
+export function exactRational(value: Rational, text: string = value.toString()): ExactNumber {
+  return {
+    text,
+    kind: "rational",
+    rational: value,
+    toFixed: (bits) => Rational.of(value.num << BigInt(bits), value.den).floor(),
+    toNumber: () => value.toNumber(),
+  };
+}

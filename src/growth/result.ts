@@ -1,0 +1,25 @@
+import type { Quantity } from "../quantity/quantity.js";
+
+/** Answer of `growth`. All rates in natural logarithms per move. */
+export interface GrowthResult {
+  readonly torwend: string;
+  readonly walk: string;
+  /** d exponents, largest first. */
+  readonly exponents: readonly Quantity[];
+  /** lim Var(log |A_n...A_1|) / n. */
+  readonly logNormVariance: Quantity;
+  /** Lambda(s) = lim 1/n log E |A_n...A_1|^s. */
+  readonly pressure: readonly { readonly s: number; readonly value: Quantity }[];
+  /** Large deviations of (1/n) log |A_n...A_1|: the rate at each speed. */
+  readonly rate: readonly { readonly speed: number; readonly rate: Quantity }[];
+  /** For plots: after `moves`, the mean of (1/n) log |A_n...A_1| over replicates and its interval. */
+  readonly curve: readonly {
+    readonly moves: number;
+    readonly mean: number;
+    readonly low: number;
+    readonly high: number;
+  }[];
+  readonly replicates: number;
+  readonly moves: number;
+  readonly warnings: readonly string[];
+}

@@ -1,0 +1,2 @@
+/** The package's version, in every result; a test compares it with package.json. */
+export const VERSION = "0.1.0";
