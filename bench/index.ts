@@ -1,0 +1,20 @@
+/** Runs every suite of this folder (or those named on the command line) and prints one table. */
+import Table from "cli-table3";
+import type { Comparison } from "./compare.js";
+
+const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> }>> = {
+  draws: () => import("./draws.js"),
+};
+
+const wanted = process.argv.slice(2);
+const table = new Table({ head: ["comparison", "contender", "median ms", "ratio to the first"] });
+for (const [name, load] of Object.entries(suites)) {
+  if (wanted.length > 0 && !wanted.includes(name)) continue;
+  process.stderr.write(`${name} ...\n`);
+  for (const comparison of await (await load()).suite()) {
+    for (const row of comparison.rows) {
+      table.push([comparison.name, row.label, row.milliseconds.toPrecision(4), row.ratio.toPrecision(3)]);
+    }
+  }
+}
+process.stdout.write(`${table.toString()}\n`);
