@@ -1,0 +1,9 @@
+/** The library: one function a question. The same entry serves Node and browsers. */
+export type { Fault } from "./errors.js";
+export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
+export { exactRational } from "./exact/number.js";
+export { loadKernel } from "./kernel/kernel.js";
+export type { Quantity, Standing, Verdict } from "./quantity/quantity.js";
+export { quantityNumber } from "./quantity/quantity.js";
+export { type CommonOptions, type Effort, type Progress, withSession } from "./session.js";
+export { VERSION } from "./version.js";
