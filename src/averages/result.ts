@@ -10,14 +10,27 @@ export interface SampledAverage {
   readonly variance: Quantity;
   readonly batchMeansVariance: Quantity;
   /** Distance of the standardised averages to the normal law (Kolmogorov), and its p-value. */
-  readonly normalDistance: { readonly statistic: number; readonly pValue: number };
+  readonly normalDistance: {
+    /** null, and so the p-value, where the variance is 0: there is nothing to standardise by. */
+    readonly statistic: number | null;
+    readonly pValue: number | null;
+    /** What the averages were standardised by, and how the p-value was computed. */
+    readonly method: string;
+  };
   /** Share of replicates whose interval covers the limit, against the level. */
   readonly coverage: Quantity;
-  /** Largest |S_n - n m| / sqrt(2 n v log log n) met over n in the second half, over replicates. */
-  readonly iteratedLogarithm: { readonly largest: number; readonly median: number };
-  /** For plots: standardised averages, one a replicate. */
+  /**
+   * Largest |S_n - n m| / sqrt(2 n v log log n) met over n in the second half (n >= 16), over
+   * replicates; null where the variance is 0 or no such n exists.
+   */
+  readonly iteratedLogarithm: { readonly largest: number | null; readonly median: number | null };
+  /** Bound on |computed f - f| at every position, from 64-bit positions and rounding; for a box, 0 (see `resolution`). */
+  readonly evaluationError: number;
+  /** Positions are decided to this distance: a box's side may be misjudged only for points closer to it. */
+  readonly resolution: number;
+  /** For plots: standardised averages, one a replicate; empty where the variance is 0. */
   readonly standardised: readonly number[];
-  /** For plots: one replicate's running average at growing n. */
+  /** For plots: the first replicate's running average at growing n, the limit's band and envelope (half-width). */
   readonly running: readonly {
     readonly moves: number;
     readonly average: number;
