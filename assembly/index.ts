@@ -1,5 +1,7 @@
 // Every export of the kernel, grouped by the question that it serves.
 
+// Trajectory: big integers
+export { multiply, productPlan } from "./fixed/multiply";
 // The border itself
 export { alloc, mark, release, setCeiling } from "./memory";
 export { drawMoves, drawStart } from "./random/choices";
