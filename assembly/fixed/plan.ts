@@ -10,7 +10,7 @@
  * that a twiddle is off by less than 4 u, u = 2^-53 (argument 2 u, function one unit in
  * the last place of a number below 1).
  */
-import { alloc, mark, release } from "../memory";
+import { alloc } from "../memory";
 
 const TURN: f64 = 6.283185307179586476925286766559;
 /** Passes at most: lengths stay below 2^31. */

@@ -32,7 +32,6 @@
  * `errorFactor` is 3 F + 6 u + terms u; the caller multiplies by the norms that `digitsOf`
  * measures, and takes smaller digits where the bound is not met.
  */
-import { add, mul, splat, sub } from "./lanes";
 import {
   forward2,
   forward3,
@@ -51,7 +50,7 @@ import { passRadix, passTable, planLength, planPasses, tableStride } from "./pla
 const U: f64 = 1.1102230246251565e-16;
 /** exp(i pi / 4), the root that parts the lanes: both of its parts. */
 const DIAGONAL: f64 = 0.7071067811865475244;
-/** Pairs in a part that stays in the first-level cache: below it passes run level by level. */
+/** Bytes of a block that stays in the first-level cache: from there on passes run level by level. */
 const CACHE_BYTES: usize = 16384;
 
 /** 3 F + (6 + terms) u of the proof above. */
