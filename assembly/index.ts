@@ -2,6 +2,19 @@
 
 // Trajectory: big integers
 export { multiply, productPlan } from "./fixed/multiply";
+// The dual walk: law, averages
+export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
+export { dualPhase } from "./dual/phase";
+export { dualEvaluate, dualFind, dualGather, dualLargestCoefficient, dualPair } from "./dual/sums";
+export {
+  dualClear,
+  dualCount,
+  dualFoldConjugate,
+  dualFoldEven,
+  dualFoldNone,
+  dualHeaderBytes,
+  dualLargest,
+} from "./dual/table";
 // The border itself
 export { alloc, mark, release, setCeiling } from "./memory";
 export { drawMoves, drawStart } from "./random/choices";
