@@ -22,3 +22,20 @@ export { drawMoves, drawStart } from "./random/choices";
 export { philoxBlock } from "./random/philox";
 export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
 export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";
+// Trajectories
+export { residueWalk } from "./trajectory/residue";
+export { scatterStart } from "./trajectory/start";
+export {
+  windowAdvance,
+  windowBatches,
+  windowBytes,
+  windowConsumes,
+  windowEmit,
+  windowLimbs,
+  windowLongest,
+  windowOpen,
+  windowPlan,
+  windowRecordBytes,
+  windowStart,
+  windowWorkBytes,
+} from "./trajectory/window";

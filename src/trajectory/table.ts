@@ -1,0 +1,113 @@
+/** A walk's moves in the form that the trajectory kernels take. */
+import { LimitError } from "../errors.js";
+import type { ExactNumber } from "../exact/number.js";
+import { floorDiv, gcdBig, type Rational } from "../exact/rational.js";
+import type { ResidueTable, WindowTable } from "../kernel/trajectory.js";
+import type { Walk } from "../walk/walk.js";
+
+function absolute(x: bigint): bigint {
+  return x < 0n ? -x : x;
+}
+
+/** Whether the number is an integer, that is zero on the torus. */
+function vanishes(x: ExactNumber): boolean {
+  return x.rational?.isInteger() ?? false;
+}
+
+export interface WindowPlan {
+  readonly table: WindowTable;
+  /** The walk's distinct translation coordinates: components dimension, dimension + 1, ... of the vector. */
+  readonly constants: readonly ExactNumber[];
+}
+
+/**
+ * Matrices [A | E] of every move, with its translation b = E z in the walk's constants z.
+ * @throws LimitError where a row of |A| and |E| sums to more than 2^62
+ */
+export function windowTable(walk: Walk): WindowPlan {
+  const d = walk.dimension;
+  const constants: ExactNumber[] = [];
+  const known = new Map<string, number>();
+  const columns = walk.moves.map((move) =>
+    (move.translation ?? []).map((x) => {
+      if (vanishes(x)) return -1;
+      const at = known.get(x.text) ?? constants.push(x) - 1;
+      known.set(x.text, at);
+      return at;
+    }),
+  );
+  const inputs = d + constants.length;
+  const matrices = new BigInt64Array(walk.moves.length * d * inputs);
+  const norms = new Float64Array(walk.moves.length);
+  for (const [m, move] of walk.moves.entries()) {
+    let norm = 0n;
+    for (const [i, row] of move.matrix.entries()) {
+      const at = (m * d + i) * inputs;
+      const column = columns[m]?.[i] ?? -1;
+      let sum = row.reduce((a, b) => a + absolute(b), 0n);
+      if (column >= 0) sum += 1n;
+      if (sum > norm) norm = sum;
+      if (sum > 1n << 62n) continue;
+      for (const [j, entry] of row.entries()) matrices[at + j] = entry;
+      if (column >= 0) matrices[at + d + column] = 1n;
+    }
+    if (norm > 1n << 62n) {
+      throw new LimitError(
+        `move ${m} (${move.label}) has a row whose absolute entries sum to ${norm}; exact trajectories take at most 2^62`,
+      );
+    }
+    // One unit up covers the rounding of the conversion.
+    norms[m] = Number(norm) * (1 + Number.EPSILON);
+  }
+  return { table: { dimension: d, inputs, matrices, norms }, constants };
+}
+
+/** The walk on points of one denominator. */
+export interface RationalWalk {
+  readonly denominator: bigint;
+  /** Numerators of the start, in [0, denominator). */
+  readonly start: readonly bigint[];
+  /** For each move the translation's numerators, in [0, denominator). */
+  readonly translations: readonly (readonly bigint[])[];
+}
+
+/** The walk on (Z/q)^d, where the start and every translation are rational; q is the least common denominator. */
+export function rationalWalk(walk: Walk): RationalWalk | undefined {
+  if (walk.start.type !== "point") return undefined;
+  const zeros = new Array<undefined>(walk.dimension).fill(undefined);
+  const rows: (readonly (Rational | undefined)[])[] = [walk.start.point.map((x) => x.rational)];
+  if (rows[0]?.includes(undefined)) return undefined;
+  let q = 1n;
+  for (const move of walk.moves) {
+    if (move.translation?.some((x) => x.rational === undefined)) return undefined;
+    rows.push(move.translation?.map((x) => x.rational) ?? zeros);
+  }
+  for (const x of rows.flat()) if (x !== undefined) q *= x.den / gcdBig(q, x.den);
+  const numerators = rows.map((row) => row.map((x) => (x === undefined ? 0n : x.mod1().num * (q / x.den)))) as [
+    bigint[],
+    ...bigint[][],
+  ];
+  return { denominator: q, start: numerators[0], translations: numerators.slice(1) };
+}
+
+/** The kernel's table of a rational walk; undefined where its sums would not fit a machine word. */
+export function residueTable(walk: Walk, rational: RationalWalk): ResidueTable | undefined {
+  const d = walk.dimension;
+  const q = rational.denominator;
+  const moves = new BigInt64Array(walk.moves.length * d * (d + 1));
+  let norm = 0n;
+  if (q >= 1n << 58n) return undefined;
+  for (const [m, move] of walk.moves.entries()) {
+    for (const [i, row] of move.matrix.entries()) {
+      const centred = row.map((a) => {
+        const r = a - floorDiv(a, q) * q;
+        return 2n * r > q ? r - q : r;
+      });
+      const sum = centred.reduce((a, b) => a + absolute(b), 0n);
+      if (sum > norm) norm = sum;
+      moves.set([...centred, rational.translations[m]?.[i] ?? 0n], (m * d + i) * (d + 1));
+    }
+  }
+  if ((norm + 1n) * q >= 1n << 62n) return undefined;
+  return { dimension: d, denominator: q, moves, start: BigInt64Array.from(rational.start) };
+}
