@@ -1,7 +1,5 @@
 // Every export of the kernel, grouped by the question that it serves.
 
-// Trajectory: big integers
-export { multiply, productPlan } from "./fixed/multiply";
 // The dual walk: law, averages
 export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
 export { dualPhase } from "./dual/phase";
@@ -15,6 +13,8 @@ export {
   dualHeaderBytes,
   dualLargest,
 } from "./dual/table";
+// Trajectory: big integers
+export { multiply, productPlan } from "./fixed/multiply";
 // The border itself
 export { alloc, mark, release, setCeiling } from "./memory";
 export { drawMoves, drawStart } from "./random/choices";
