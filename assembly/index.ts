@@ -1,5 +1,7 @@
 // Every export of the kernel, grouped by the question that it serves.
 
+// Averages
+export { observeAdd, observeBox, observePhases, observeSum } from "./averages/observe";
 // The dual walk: law, averages
 export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
 export { dualPhase } from "./dual/phase";

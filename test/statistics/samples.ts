@@ -3,9 +3,11 @@ import { drawStartWords } from "../../src/kernel/draws.js";
 import { loadKernel } from "../../src/kernel/kernel.js";
 import { normalQuantile } from "../../src/statistics/distributions.js";
 
+const kernel = loadKernel();
+
 /** Uniform on (0, 1); sample number `which` of a test is independent of the others. */
 export async function uniforms(seed: bigint, which: number, count: number): Promise<number[]> {
-  const words = drawStartWords(await loadKernel(), seed, which, 0, count);
+  const words = drawStartWords(await kernel, seed, which, 0, count);
   return Array.from(words, (w) => (Number(w >> 11n) + 0.5) / 2 ** 53);
 }
 

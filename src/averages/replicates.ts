@@ -1,0 +1,46 @@
+/** Replicates of exact walks, reduced to sums of the observables over segments of each path. */
+import { type KernelTarget, loadKernel } from "../kernel/kernel.js";
+import { Observer } from "../kernel/observe.js";
+import { prepareWalker } from "../trajectory/walker.js";
+import type { Walk } from "../walk/walk.js";
+import { observeProgram } from "./program.js";
+
+export interface SegmentsRequest {
+  readonly seed: bigint;
+  /** Moves of each replicate; its time average is that of the positions 0, ..., steps - 1. */
+  readonly steps: number;
+  /** Replicates first, ..., first + count - 1. */
+  readonly first: number;
+  readonly count: number;
+  /** Ends of the segments, increasing; the last is `steps`. */
+  readonly ends: readonly number[];
+  readonly memoryLimit: number;
+  /** Which build of the kernel; for tests. */
+  readonly target?: KernelTarget;
+}
+
+/**
+ * The walk that is sampled. No point can be drawn from a density that need not be positive,
+ * and the limits do not depend on one, so replicates then start from Haar measure.
+ */
+export function sampledWalk(walk: Walk): Walk {
+  return walk.start.type === "density" ? { ...walk, start: { type: "uniform" } } : walk;
+}
+
+/**
+ * Sums over the segments, row-major: replicates x observables x segments.
+ * @throws LimitError where the exact walk or the observables pass the memory limit
+ */
+export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise<Float64Array<ArrayBuffer>> {
+  const { seed, steps, first, count, ends, memoryLimit } = request;
+  const options = { memoryLimit, ...(request.target === undefined ? {} : { target: request.target }) };
+  const observer = new Observer(await loadKernel(options), observeProgram(walk));
+  const walker = await prepareWalker(sampledWalk(walk), { ...options, seed, steps });
+  const stride = walk.observables.length * ends.length;
+  const sums = new Float64Array(count * stride);
+  for (let r = 0; r < count; r++) {
+    const { positions } = walker.run(first + r);
+    observer.segmentSums(positions, ends, sums.subarray(r * stride, (r + 1) * stride));
+  }
+  return sums;
+}
