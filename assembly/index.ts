@@ -17,6 +17,8 @@ export {
 } from "./dual/table";
 // Trajectory: big integers
 export { multiply, productPlan } from "./fixed/multiply";
+export { lengthFor, makePlan, planBytes } from "./fixed/plan";
+export { errorFactor } from "./fixed/transform";
 // The border itself
 export { alloc, mark, release, setCeiling } from "./memory";
 export { drawMoves, drawStart } from "./random/choices";
@@ -27,16 +29,19 @@ export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } fro
 // Trajectories
 export { residueWalk } from "./trajectory/residue";
 export { scatterStart } from "./trajectory/start";
+export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
 export {
   windowAdvance,
   windowBatches,
   windowBytes,
+  windowCarry,
   windowConsumes,
   windowEmit,
   windowLimbs,
   windowLongest,
   windowOpen,
   windowPlan,
+  windowProduct,
   windowRecordBytes,
   windowStart,
   windowWorkBytes,

@@ -5,7 +5,7 @@
 import { alloc, mark, release } from "../memory";
 import { CHECK_FAILED, FULL, OK } from "../status";
 import { digitsOf, limbsOf } from "./digits";
-import { lengthFor, makePlan, planBytes } from "./plan";
+import { lengthFor, makePlan, planBytes, planLength } from "./plan";
 import { addResidueProduct, coefficientResidues, digitResidues } from "./residue";
 import { errorFactor, forward, inverse, product, transformBytes } from "./transform";
 
@@ -36,7 +36,7 @@ export function multiply(r: usize, a: usize, na: u32, b: usize, nb: u32, plan: u
   const nx = digitsOf(plan, x, a, na, width);
   const ny = digitsOf(plan, y, b, nb, width);
   let status = OK;
-  if (errorFactor(plan, 0) * Math.sqrt(nx) * Math.sqrt(ny) < ERROR_LIMIT) {
+  if (errorFactor(planLength(plan), 1) * Math.sqrt(nx) * Math.sqrt(ny) < ERROR_LIMIT) {
     const expected = addResidueProduct(0, digitResidues(plan, x), digitResidues(plan, y));
     forward(plan, x);
     forward(plan, y);

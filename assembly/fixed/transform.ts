@@ -53,13 +53,15 @@ const DIAGONAL: f64 = 0.7071067811865475244;
 /** Bytes of a block that stays in the first-level cache: from there on passes run level by level. */
 const CACHE_BYTES: usize = 16384;
 
-/** 3 F + (6 + terms) u of the proof above. */
-export function errorFactor(plan: usize, terms: i32): f64 {
-  let f = 7.3;
-  for (let p = 0; p < planPasses(plan); p++) {
-    const r = passRadix(plan, p);
-    f += r == 4 ? 8.3 : r == 2 ? 7.3 : r == 3 ? 15.0 : 29.0;
-  }
+/** 3 F + (6 + terms) u of the proof above, for a plan of length m. */
+export function errorFactor(m: u32, terms: u32): f64 {
+  const half = m >> 1;
+  const twos = ctz(half);
+  const odd = half >> twos;
+  let f = 7.3 + 8.3 * <f64>(twos >> 1);
+  if (twos & 1) f += 7.3;
+  if (odd == 3) f += 15.0;
+  if (odd == 5) f += 29.0;
   return (3.0 * f + 6.0 + <f64>terms) * U;
 }
 

@@ -10,10 +10,12 @@
  * Transforms of a left child's entries are made once and used twice: for the product of
  * its parent, and for moving the point from the parent's first move to its middle.
  */
-import { coefficientResidues, digitResidues, addResidueProduct } from "../fixed/residue";
+
 import { digitsOf, limbsOf } from "../fixed/digits";
-import { addProduct, errorFactor, forward, inverse, product, transformBytes, twoProducts } from "../fixed/transform";
 import { ERROR_LIMIT } from "../fixed/multiply";
+import { planLength } from "../fixed/plan";
+import { addResidueProduct, coefficientResidues, digitResidues } from "../fixed/residue";
+import { addProduct, errorFactor, forward, inverse, product, transformBytes, twoProducts } from "../fixed/transform";
 import { CHECK_FAILED, OK } from "../status";
 
 /** What is kept of a transform beside it: its residues, then the norm of its digits. */
@@ -68,7 +70,7 @@ export function treeRow(
   width: u32,
 ): i32 {
   const bytes = transformBytes(plan);
-  const factor = errorFactor(plan, <i32>d);
+  const factor = errorFactor(planLength(plan), d);
   for (let j: u32 = 0; j < columns; j++) {
     let expected: u64 = 0;
     let size: f64 = 0;
@@ -103,12 +105,12 @@ export function treeAdd(into: usize, limbs: u32, from: usize, fromLimbs: u32): v
   let carry: u64 = 0;
   let x: u64 = 0;
   for (let i: u32 = 0; i < limbs; i++) {
-    x = i < fromLimbs ? load<u64>(from + (<usize>i << 3)) : <u64>(<i64>x >> 63);
-    const old = load<u64>(into + (<usize>i << 3));
+    x = i < fromLimbs ? load<u64>(from + ((<usize>i) << 3)) : <u64>(<i64>x >> 63);
+    const old = load<u64>(into + ((<usize>i) << 3));
     const sum = old + x;
     const out = sum + carry;
     carry = <u64>(sum < old) | <u64>(out < sum);
-    store<u64>(into + (<usize>i << 3), out);
+    store<u64>(into + ((<usize>i) << 3), out);
   }
 }
 
@@ -117,11 +119,11 @@ export function treeBits(from: usize, count: u32, limbs: u32): u32 {
   let most: u32 = 1;
   for (let i: u32 = 0; i < count; i++) {
     let top = limbs - 1;
-    const sign = <u64>(load<i64>(from + (<usize>top << 3)) >> 63);
-    while (top > 0 && load<u64>(from + (<usize>top << 3)) == sign) top--;
-    const bits = (top << 6) + 65 - <u32>clz(load<u64>(from + (<usize>top << 3)) ^ sign);
+    const sign = <u64>(load<i64>(from + ((<usize>top) << 3)) >> 63);
+    while (top > 0 && load<u64>(from + ((<usize>top) << 3)) == sign) top--;
+    const bits = (top << 6) + 65 - <u32>clz(load<u64>(from + ((<usize>top) << 3)) ^ sign);
     if (bits > most) most = bits;
-    from += <usize>limbs << 3;
+    from += (<usize>limbs) << 3;
   }
   return most;
 }
@@ -129,9 +131,9 @@ export function treeBits(from: usize, count: u32, limbs: u32): u32 {
 /** Drops limbs that only repeat the sign: from `limbs` to `fewer` limbs an integer, in place or downwards. */
 export function treePack(into: usize, fewer: u32, from: usize, limbs: u32, count: u32): void {
   for (let i: u32 = 0; i < count; i++) {
-    memory.copy(into, from, <usize>fewer << 3);
-    into += <usize>fewer << 3;
-    from += <usize>limbs << 3;
+    memory.copy(into, from, (<usize>fewer) << 3);
+    into += (<usize>fewer) << 3;
+    from += (<usize>limbs) << 3;
   }
 }
 
@@ -151,12 +153,12 @@ export function treeInterleave(
   zStride: usize,
   have: u32,
 ): void {
-  const step = <usize>inputs << 2;
+  const step = (<usize>inputs) << 2;
   const there = min(limbs32, have << 1);
   memory.fill(out, 0, <usize>(limbs32 - there) * step);
   for (let j: u32 = 0; j < inputs; j++) {
-    let from = (j < d ? xTop + <usize>j * xStride : zTop + <usize>(j - d) * zStride) - (<usize>there << 2);
-    let to = out + <usize>(limbs32 - there) * step + (<usize>j << 2);
+    let from = (j < d ? xTop + <usize>j * xStride : zTop + <usize>(j - d) * zStride) - ((<usize>there) << 2);
+    let to = out + <usize>(limbs32 - there) * step + ((<usize>j) << 2);
     for (let i: u32 = 0; i < there; i++) {
       store<u32>(to, load<u32>(from));
       from += 4;
@@ -178,13 +180,13 @@ export function treeColumn(
   d: u32,
   inputs: u32,
 ): void {
-  const step = <usize>inputs << 2;
+  const step = (<usize>inputs) << 2;
   for (let i: u32 = 0; i < d; i++) {
-    const base = vector + (<usize>i << 2);
+    const base = vector + ((<usize>i) << 2);
     const sign = <u32>(load<i32>(base + <usize>(limbs32 - 1) * step) >> 31);
     for (let l: u32 = 0; l < limbs << 1; l++) {
       const x = l < limbs32 ? load<u32>(base + <usize>l * step) : sign;
-      store<u32>(out + (<usize>l << 2), x);
+      store<u32>(out + ((<usize>l) << 2), x);
     }
     out += outStride;
   }

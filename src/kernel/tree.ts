@@ -1,0 +1,455 @@
+/**
+ * The tree walk: exact positions of a long walk in quasi-linear time. Divide and conquer
+ * over moves: from the point at a node's first move, the product of its left half moves
+ * the point to its middle; then each half is walked from a point cut to the bits that it
+ * needs. Leaves go to the window kernel.
+ *
+ * Bits. need(leaf) is the window's; need(node) = max(need(left), log2 |P| + need(right)) + 2
+ * with P the left half's product, |P| its row-sum norm, bounded from above by a product in
+ * doubles with its radius. A point within 2^-need(node) leaves its left half's point within
+ * 2^-need(left) (1/4, and at most 1/2 for the cut at a whole limb), and its right half's
+ * within 2^-need(right) (1/4 carried, 1/8 wrapped from above, the cut at most 1/2); so the
+ * positions are as right as the window's from digits of its own.
+ *
+ * Memory is a stack: a node's right point, then its left half's subtree, which is given
+ * back when the left half is walked. What is pending is one point a level: a checkpoint.
+ */
+
+import { LimitError } from "../errors.js";
+import { writeLimbs } from "./bigint.js";
+import type { Kernel } from "./kernel.js";
+import type { WindowTable } from "./trajectory.js";
+
+/** A node of the recursion over leaves [from, to). */
+interface Span {
+  readonly from: number;
+  readonly to: number;
+  /** Bits of the point at its first move. */
+  readonly need: number;
+  /** Bits of its product's row-sum norm. */
+  readonly size: number;
+  readonly halves?: readonly [Span, Span];
+}
+
+/** A product in doubles, for bounds: entries 2^exponent, within radius 2^exponent. */
+interface Rough {
+  readonly entries: Float64Array;
+  readonly norm: number;
+  readonly exponent: number;
+  readonly radius: number;
+}
+
+/** A node whose product has been formed. Entries live on the integer stack until its parent is formed. */
+interface Built {
+  readonly entries: number;
+  readonly limbs: number;
+  readonly bits: number;
+  readonly halves?: readonly [Built, Built];
+  /** The transforms of its left half's entries. */
+  readonly left?: Transforms;
+}
+
+interface Transforms {
+  readonly plan: number;
+  readonly length: number;
+  readonly width: number;
+  readonly at: number;
+  readonly notes: number;
+  readonly bits: number;
+}
+
+/** Fractions: component j's top limb ends at top + j stride. */
+interface Point {
+  readonly top: number;
+  readonly stride: number;
+  readonly limbs: number;
+}
+
+/** A block of positions in order; the views last until the next block is asked for. */
+export interface TreeBlock {
+  /** The first position's number. */
+  readonly first: number;
+  readonly rows: number;
+  /** rows x dimension x words 64-bit words. */
+  readonly positions: BigUint64Array<ArrayBuffer>;
+}
+
+const NOTE_BYTES = 16;
+/** Digit widths, widest first; narrower digits for longer products (see assembly/fixed/transform.ts). */
+const WIDTHS = [14, 12, 10, 8];
+/** What the proof asks a coefficient's error to stay below. */
+const ERROR_LIMIT = 0.4375;
+/** Bits of a leaf's product: where the transform overtakes the window (bench/tree.ts measures it). */
+const LEAF_BITS = 900;
+
+const scratch = new DataView(new ArrayBuffer(8));
+/** The least e with x < 2^e, for x > 0. */
+function exponentAbove(x: number): number {
+  scratch.setFloat64(0, x);
+  return ((scratch.getUint32(0) >>> 20) & 0x7ff) - 1022;
+}
+
+export class TreeRun {
+  private readonly d: number;
+  private readonly inputs: number;
+  private readonly window: number;
+  private readonly choicesAt: number;
+  private readonly records: number;
+  private readonly capacity: number;
+  private readonly state: number;
+  private readonly stateLimbs: number;
+  private readonly out: number;
+  private readonly leaves: number;
+  private readonly plans = new Map<number, number>();
+  private readonly root: Span;
+  private integers = 0;
+  private constants: Point = { top: 0, stride: 0, limbs: 0 };
+
+  /**
+   * @param choices the moves, u16, all of them
+   * @param words 64-bit words of each coordinate of a position
+   * @param leafMoves moves of a leaf; by default what makes products of some 900 bits
+   * @throws LimitError
+   */
+  constructor(
+    private readonly kernel: Kernel,
+    table: WindowTable,
+    choices: Uint16Array,
+    private readonly words: number,
+    private readonly leafMoves: number = defaultLeaf(table),
+  ) {
+    const { raw } = kernel;
+    const { dimension, inputs, matrices, norms } = table;
+    this.d = dimension;
+    this.inputs = inputs;
+    this.steps = choices.length;
+    this.leaves = Math.max(1, Math.ceil(this.steps / leafMoves));
+    const moves = kernel.alloc(matrices.byteLength, "the table of moves");
+    const normsAt = kernel.alloc(norms.byteLength, "the table of moves");
+    this.window = kernel.alloc(raw.windowBytes(), "a run's state");
+    const work = kernel.alloc(raw.windowWorkBytes(dimension, inputs, words), "a run's work space");
+    this.choicesAt = kernel.alloc(2 * this.steps, "the choices of moves");
+    this.capacity = leafMoves;
+    this.records = kernel.alloc(this.capacity * raw.windowRecordBytes(dimension, inputs), "the plan of batches");
+    this.out = kernel.alloc(8 * (leafMoves + 1) * dimension * words, "a block of positions");
+    kernel.i64(moves, matrices.length).set(matrices);
+    kernel.f64(normsAt, norms.length).set(norms);
+    kernel.u16(this.choicesAt, this.steps).set(choices);
+    raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, work);
+    let widest = 0;
+    const leaves: { span: Span; rough: Rough }[] = [];
+    for (let leaf = 0; leaf < this.leaves; leaf++) {
+      this.planLeaf(leaf);
+      const limbs = raw.windowLimbs(this.window);
+      widest = Math.max(widest, limbs);
+      const rough = this.roughLeaf();
+      const size = exponentAbove(rough.norm + rough.radius) + rough.exponent;
+      leaves.push({ span: { from: leaf, to: leaf + 1, need: 32 * limbs, size }, rough });
+      widest = Math.max(widest, Math.ceil((size + 3) / 32));
+    }
+    this.root = this.join(leaves, 0, this.leaves).span;
+    this.stateLimbs = widest + 2;
+    this.state = kernel.alloc(4 * this.stateLimbs * inputs, "a leaf's digits");
+  }
+
+  readonly steps: number;
+
+  /** 64-bit limbs that each fraction of the start and each constant must have. */
+  get limbs(): number {
+    return limbsFor(this.root);
+  }
+
+  private count(leaf: number): number {
+    return Math.min(this.leafMoves, this.steps - leaf * this.leafMoves);
+  }
+
+  private planLeaf(leaf: number): void {
+    const { raw } = this.kernel;
+    const at = this.choicesAt + 2 * leaf * this.leafMoves;
+    const status = raw.windowPlan(this.window, at, this.count(leaf), this.records, this.capacity);
+    if (status !== 0) throw new Error(`windowPlan: more batches than moves in leaf ${leaf}`);
+  }
+
+  private roughLeaf(): Rough {
+    const { kernel, d, inputs } = this;
+    const n = d * inputs;
+    return kernel.scoped(() => {
+      const at = kernel.alloc(8 * (2 * n + 2), "a product in doubles");
+      kernel.raw.windowProduct(this.window, at);
+      const values = kernel.f64(at, 2 * n + 2);
+      const entries = values.slice(0, n);
+      return { entries, norm: rowNorm(entries, inputs), exponent: values[2 * n]!, radius: values[2 * n + 1]! };
+    });
+  }
+
+  /** The span of leaves [from, to) and its product in doubles. */
+  private join(
+    leaves: readonly { span: Span; rough: Rough }[],
+    from: number,
+    to: number,
+  ): { span: Span; rough: Rough } {
+    if (to - from === 1) return leaves[from]!;
+    // The largest power of two below the length, so that left halves share their plans.
+    const middle = from + 2 ** (31 - Math.clz32(to - from - 1));
+    const left = this.join(leaves, from, middle);
+    const right = this.join(leaves, middle, to);
+    const rough = multiplyRough(right.rough, left.rough, this.d, this.inputs);
+    const need = Math.max(left.span.need, left.span.size + right.span.need) + 2;
+    const size = Math.min(left.span.size + right.span.size, exponentAbove(rough.norm + rough.radius) + rough.exponent);
+    return { span: { from, to, need, size, halves: [left.span, right.span] }, rough };
+  }
+
+  /**
+   * Walks from the start: `digits` holds, for each component (coordinates, then constants),
+   * floor(x 2^(64 limbs)) modulo 2^(64 limbs).
+   * @throws LimitError before any memory is taken that does not fit
+   */
+  *walk(digits: readonly bigint[]): Generator<TreeBlock, void, void> {
+    const { kernel, inputs, limbs } = this;
+    const stride = 8 * limbs;
+    const at = kernel.alloc(stride * inputs, "the start's digits");
+    for (const [j, x] of digits.entries()) writeLimbs(kernel.u64(at + j * stride, limbs), x);
+    this.makePlans(this.root);
+    this.integers = kernel.alloc(this.integerBytes(), "the products of moves");
+    const start = { top: at + stride, stride, limbs };
+    this.constants = { top: start.top + this.d * stride, stride, limbs };
+    yield* this.node(this.root, start, undefined);
+    this.kernel.raw.windowEmit(this.window, this.out);
+    yield { first: this.steps, rows: 1, positions: kernel.u64(this.out, this.d * this.words) };
+  }
+
+  private *node(span: Span, point: Point, built: Built | undefined): Generator<TreeBlock, void, void> {
+    if (span.halves === undefined) {
+      yield this.leaf(span.from, point);
+      return;
+    }
+    const [left, right] = span.halves;
+    const { raw } = this.kernel;
+    const cutHere = cut(point, limbsFor(span));
+    const before = raw.mark();
+    const stride = 8 * cutHere.limbs;
+    const at = this.kernel.alloc(stride * this.d, "a point on the way");
+    const after = raw.mark();
+    const whole = built?.halves !== undefined ? built : undefined;
+    const leftBuilt = whole?.halves?.[0] ?? this.build(left, this.integers);
+    const transforms = whole?.left ?? this.transform(span, leftBuilt);
+    const lost = this.apply(transforms, cutHere, at, stride);
+    yield* this.node(left, cutHere, leftBuilt);
+    raw.release(after);
+    const moved = { top: at + stride, stride, limbs: cutHere.limbs - lost };
+    yield* this.node(right, moved, whole?.halves?.[1]);
+    raw.release(before);
+  }
+
+  private leaf(leaf: number, point: Point): TreeBlock {
+    const { kernel, d, inputs, state } = this;
+    const { raw } = kernel;
+    this.planLeaf(leaf);
+    const limbs = raw.windowLimbs(this.window);
+    const z = this.constants;
+    raw.treeInterleave(state, limbs, d, inputs, point.top, point.stride, z.top, z.stride, point.limbs);
+    raw.windowStart(this.window, state, limbs);
+    const rows = this.count(leaf);
+    const made = raw.windowAdvance(this.window, rows, this.out);
+    if (made !== rows) throw new Error(`a leaf of ${rows} moves ended after ${made}`);
+    const first = leaf * this.leafMoves;
+    return { first, rows, positions: kernel.u64(this.out, rows * d * this.words) };
+  }
+
+  /** Forms a span's product; its entries go to `to`, on the integer stack. */
+  private build(span: Span, to: number): Built {
+    if (span.halves === undefined) return this.buildLeaf(span, to);
+    const [left, right] = span.halves;
+    const l = this.build(left, to);
+    const transforms = this.transform(span, l);
+    const r = this.build(right, to + this.entryBytes(l.limbs));
+    const { limbs, bits } = this.multiply(transforms, r, to);
+    return { entries: to, limbs, bits, halves: [l, r], left: transforms };
+  }
+
+  private buildLeaf(span: Span, to: number): Built {
+    const { kernel, d, inputs, state } = this;
+    const { raw } = kernel;
+    this.planLeaf(span.from);
+    const limbs32 = Math.ceil((span.size + 2) / 32);
+    const limbs = Math.ceil(limbs32 / 2);
+    const length = limbs32 * inputs;
+    for (let c = 0; c < inputs; c++) {
+      const vector = kernel.u32(state, length);
+      vector.fill(0);
+      vector[c] = 1;
+      raw.windowCarry(this.window, state, state + 4 * length);
+      raw.treeColumn(to + 8 * limbs * c, 8 * limbs * inputs, limbs, state, limbs32, d, inputs);
+    }
+    return { entries: to, limbs, bits: raw.treeBits(to, d * inputs, limbs) };
+  }
+
+  private entryBytes(limbs: number): number {
+    return 8 * limbs * this.d * this.inputs;
+  }
+
+  /** A path of the tree holds at most one finished node a level beside the one in hand. */
+  private integerBytes(): number {
+    let bytes = 0;
+    for (let span: Span | undefined = this.root; span !== undefined; span = span.halves?.[0]) {
+      bytes += 2 * this.entryBytes(Math.ceil((span.size + 66) / 64) + 1);
+    }
+    return bytes;
+  }
+
+  /** Length and digit width of a span's transforms: the widest digits that the a-priori bound allows. */
+  private shape(span: Span): { readonly length: number; readonly width: number } {
+    const { raw } = this.kernel;
+    const bits = 64 * limbsFor(span);
+    const [left] = span.halves as readonly [Span, Span];
+    for (const width of WIDTHS) {
+      const length = raw.lengthFor(Math.ceil(bits / width / 2) + 1) >>> 0;
+      // Largest digits, both operands' numbers of digits, one term a component.
+      const digits = Math.sqrt((bits / width + 2) * ((left.size + 66) / width + 2));
+      const terms = this.inputs;
+      if (raw.errorFactor(length, terms) * terms * 4 ** (width - 1) * digits < ERROR_LIMIT) return { length, width };
+    }
+    throw new LimitError(`a product of ${bits} bits is beyond the transform's proved range`);
+  }
+
+  /** Makes every plan of the walk, below all that is released. */
+  private makePlans(span: Span): void {
+    if (span.halves === undefined) return;
+    const { length } = this.shape(span);
+    if (!this.plans.has(length)) {
+      this.kernel.require(this.kernel.raw.planBytes(length) >>> 0, "the transforms' tables");
+      this.plans.set(length, this.kernel.raw.makePlan(length) >>> 0);
+    }
+    for (const half of span.halves) this.makePlans(half);
+  }
+
+  /** The transforms of a left half's entries, kept on the arena. */
+  private transform(span: Span, left: Built): Transforms {
+    const { kernel, d, inputs } = this;
+    const { length, width } = this.shape(span);
+    const plan = this.plans.get(length) as number;
+    const count = d * inputs;
+    const at = kernel.alloc(16 * length * count, "the transforms of a product");
+    const notes = kernel.alloc(NOTE_BYTES * count, "the transforms of a product");
+    kernel.raw.treeTransform(plan, at, notes, left.entries, 8 * left.limbs, count, left.limbs, width);
+    return { plan, length, width, at, notes, bits: left.bits };
+  }
+
+  /** The product (right half) (left half), packed to `to`. */
+  private multiply(
+    transforms: Transforms,
+    right: Built,
+    to: number,
+  ): { readonly limbs: number; readonly bits: number } {
+    const { kernel, d, inputs } = this;
+    const { raw } = kernel;
+    const { plan, length, width, at, notes } = transforms;
+    const limbs = Math.ceil((transforms.bits + right.bits + 8) / 64);
+    const entry = 8 * limbs;
+    return kernel.scoped(() => {
+      const row = kernel.alloc(16 * length * d, "a row of transforms");
+      const rowNotes = kernel.alloc(NOTE_BYTES * d, "a row of transforms");
+      const work = kernel.alloc(16 * length, "a row of transforms");
+      const out = kernel.alloc(entry * d * inputs, "a product of moves");
+      for (let i = 0; i < d; i++) {
+        const from = right.entries + 8 * right.limbs * inputs * i;
+        raw.treeTransform(plan, row, rowNotes, from, 8 * right.limbs, d, right.limbs, width);
+        const into = out + entry * inputs * i;
+        this.check(raw.treeRow(plan, row, rowNotes, at, notes, d, inputs, work, into, entry, limbs, 0, width));
+        for (let c = d; c < inputs; c++) {
+          raw.treeAdd(into + entry * c, limbs, from + 8 * right.limbs * c, right.limbs);
+        }
+      }
+      const bits = raw.treeBits(out, d * inputs, limbs);
+      const fewer = Math.ceil(bits / 64);
+      raw.treePack(to, fewer, out, limbs, d * inputs);
+      return { limbs: fewer, bits };
+    });
+  }
+
+  /**
+   * Moves a point by a left half's product, to d fractions at `to`.
+   * @returns low limbs of the result that carry no right bit
+   */
+  private apply(transforms: Transforms, point: Point, to: number, stride: number): number {
+    const { kernel, d, inputs, constants } = this;
+    const { raw } = kernel;
+    const { plan, length, width, at, notes } = transforms;
+    const limbs = point.limbs;
+    // Carries from digits that are not read stay 11 bits below what the cut of the point has spoilt.
+    const lost = Math.max(0, Math.floor((transforms.bits - 50) / 64));
+    kernel.scoped(() => {
+      const column = kernel.alloc(16 * length * inputs, "a point's transforms");
+      const columnNotes = kernel.alloc(NOTE_BYTES * inputs, "a point's transforms");
+      const work = kernel.alloc(16 * length, "a point's transforms");
+      const bottom = (p: Point) => p.top - 8 * limbs;
+      raw.treeTransform(plan, column, columnNotes, bottom(point), point.stride, d, limbs, width);
+      const more = column + 16 * length * d;
+      const moreNotes = columnNotes + NOTE_BYTES * d;
+      raw.treeTransform(plan, more, moreNotes, bottom(constants), constants.stride, inputs - d, limbs, width);
+      for (let i = 0; i < d; i++) {
+        const row = at + 16 * length * inputs * i;
+        const rowNotes = notes + NOTE_BYTES * inputs * i;
+        const into = to + stride * i;
+        this.check(
+          raw.treeRow(plan, row, rowNotes, column, columnNotes, inputs, 1, work, into, stride, limbs, lost, width),
+        );
+      }
+    });
+    return lost;
+  }
+
+  private check(status: number): void {
+    if (status !== 0) {
+      throw new Error("a big product failed its check modulo two primes: its result was not used");
+    }
+  }
+}
+
+/** 64-bit limbs of a point at a span's first move. */
+function limbsFor(span: Span): number {
+  return Math.ceil((span.need + 1) / 64);
+}
+
+/** The point's top limbs. */
+function cut(point: Point, limbs: number): Point {
+  return point.limbs <= limbs ? point : { ...point, limbs };
+}
+
+function rowNorm(entries: Float64Array, inputs: number): number {
+  let norm = 0;
+  for (let i = 0; i < entries.length; i += inputs) {
+    let sum = 0;
+    for (let j = 0; j < inputs; j++) sum += Math.abs(entries[i + j]!);
+    norm = Math.max(norm, sum);
+  }
+  return norm;
+}
+
+/** right left in doubles; the radius as in windowProduct (assembly/trajectory/window.ts). */
+function multiplyRough(right: Rough, left: Rough, d: number, inputs: number): Rough {
+  const unit = (d + 4) * 2 ** -53;
+  const shrink = 2 ** -left.exponent; // what right's constants' columns are scaled by
+  const entries = new Float64Array(d * inputs);
+  for (let i = 0; i < d; i++) {
+    for (let j = 0; j < inputs; j++) {
+      let x = j < d ? 0 : right.entries[i * inputs + j]! * shrink;
+      for (let k = 0; k < d; k++) x += right.entries[i * inputs + k]! * left.entries[k * inputs + j]!;
+      entries[i * inputs + j] = x;
+    }
+  }
+  const exponent = right.exponent + left.exponent;
+  const a = right.norm + right.radius;
+  const b = left.norm + left.radius + shrink;
+  const radius = (right.radius * b + a * left.radius + unit * a * b) * (1 + 4 * unit);
+  const norm = rowNorm(entries, inputs);
+  if (norm + radius < 2 ** 256) return { entries, norm, exponent, radius };
+  const down = 2 ** -256;
+  return { entries: entries.map((x) => x * down), norm: norm * down, exponent: exponent + 256, radius: radius * down };
+}
+
+/** Moves of a leaf, from the largest move: products of some LEAF_BITS bits. */
+function defaultLeaf(table: WindowTable): number {
+  const largest = table.norms.reduce((a, b) => Math.max(a, b), 2);
+  return Math.max(16, Math.min(1024, Math.round(LEAF_BITS / exponentAbove(largest))));
+}
