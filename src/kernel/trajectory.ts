@@ -111,7 +111,7 @@ export class WindowRun {
   }
 
   /** Lays out room for `limbs` limbs, forgetting the digits that are held. @throws LimitError */
-  private reserve(limbs: number): void {
+  reserve(limbs: number): void {
     const { kernel, table } = this;
     kernel.raw.release(this.rest);
     this.master = undefined;

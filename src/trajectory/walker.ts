@@ -8,6 +8,7 @@ import { cumulativeWeights, type PlacedWeights, placeWeights } from "../kernel/d
 import { type Kernel, type KernelTarget, loadKernel } from "../kernel/kernel.js";
 import { ResidueRun, WindowRun } from "../kernel/trajectory.js";
 import type { Walk } from "../walk/walk.js";
+import { toDoubles } from "./block.js";
 import { startDigits } from "./digits.js";
 import { type RationalWalk, rationalWalk, residueTable, windowTable } from "./table.js";
 
@@ -56,15 +57,6 @@ export interface ExactWalker {
    * @throws LimitError where the digits of the start would pass the memory limit
    */
   run(replicate: number, choices?: Uint16Array): ExactPath;
-}
-
-/** The top 53 bits of every `words`-th word as doubles in [0, 1). */
-function doubles(positions: BigUint64Array, words: number, into: Float64Array): Float64Array {
-  const halves = new Uint32Array(positions.buffer, positions.byteOffset, 2 * positions.length);
-  for (let i = 0, p = 0; i < into.length; i++, p += 2 * words) {
-    into[i] = ((halves[p + 1] as number) * 0x200000 + ((halves[p] as number) >>> 11)) * 2 ** -53;
-  }
-  return into;
 }
 
 /** Refuses starts that no point can be drawn from. */
@@ -122,7 +114,7 @@ function residueWalker(
         choices: run.choices,
         numerators: run.numerators(rows),
         denominator,
-        toDoubles: () => doubles(positions, 1, held),
+        toDoubles: () => toDoubles(positions, 1, held),
       };
     },
   };
@@ -160,7 +152,7 @@ function windowWalker(
       if (made !== steps) throw new LimitError(`a run of ${steps} moves ended after ${made}`);
       run.emit(steps);
       const positions = run.positions(rows);
-      return { rows, positions, choices: run.choices, toDoubles: () => doubles(positions, words, held) };
+      return { rows, positions, choices: run.choices, toDoubles: () => toDoubles(positions, words, held) };
     },
   };
 }

@@ -1,0 +1,79 @@
+import { describe, expect, it } from "vitest";
+import type { KernelTarget } from "../../src/kernel/kernel.js";
+import { rationalWalk, residueTable } from "../../src/trajectory/table.js";
+import { prepareWalker } from "../../src/trajectory/walker.js";
+import type { Walk } from "../../src/walk/walk.js";
+import { Dice, fraction, makeWalk, randomUnimodular, rationalPath, squareRoot } from "./walks.js";
+
+async function agrees(walk: Walk, steps: number, target: KernelTarget): Promise<void> {
+  const walker = await prepareWalker(walk, { seed: 3n, steps, target });
+  expect(walker.method).toBe("residue");
+  for (const replicate of [0, 1]) {
+    const path = walker.run(replicate);
+    const want = rationalPath(walk, path.choices).flat();
+    expect([...path.numerators!].map((n) => [n, path.denominator])).toEqual(
+      want.map((x) => [(x.num * path.denominator!) / x.den, path.denominator]),
+    );
+    expect([...path.positions]).toEqual(want.map((x) => (x.num << 64n) / x.den));
+    expect([...path.toDoubles()]).toEqual(want.map((x) => Number((x.num << 53n) / x.den) * 2 ** -53));
+  }
+}
+
+for (const target of ["simd", "plain"] as const) {
+  describe(`residue kernel, ${target}`, () => {
+    for (const d of [2, 3, 5, 8]) {
+      it(`walks dimension ${d} as fractions do, with and without translations`, async () => {
+        const dice = new Dice(BigInt(d));
+        for (const q of [1n, 2n, 7n, 60n, 65_537n, 1_000_000_007n, (1n << 31n) - 1n, (1n << 45n) + 59n]) {
+          const numerator = () => fraction(dice.word() % q, q);
+          const point = Array.from({ length: d }, numerator);
+          for (const size of [1n, 1n << 12n]) {
+            const moves = Array.from({ length: 3 }, (_, i) => ({
+              ...randomUnimodular(dice, d, size, d),
+              ...(i === 1 ? {} : { translation: Array.from({ length: d }, numerator) }),
+            }));
+            const walk = makeWalk(moves, { type: "point", point });
+            if (residueTable(walk, rationalWalk(walk)!) !== undefined) await agrees(walk, 40, target);
+            else expect(q).toBeGreaterThan(1n << 31n);
+          }
+        }
+      });
+    }
+
+    it("takes every small residue class of a 58-bit denominator's ends", async () => {
+      const q = (1n << 57n) + 29n;
+      const swap = [
+        [0n, 1n],
+        [-1n, 0n],
+      ];
+      for (const [a, b] of [
+        [0n, 1n],
+        [q - 1n, q - 1n],
+        [q / 2n, 1n],
+      ] as const) {
+        const walk = makeWalk([{ matrix: swap }], { type: "point", point: [fraction(a, q), fraction(b, q)] });
+        await agrees(walk, 9, target);
+      }
+    });
+  });
+}
+
+describe("which kernel", () => {
+  const matrix = [
+    [2n, 1n],
+    [1n, 1n],
+  ];
+  it("leaves points that are not rational, or of too large a denominator, to the window", async () => {
+    const rational = [fraction(1, 2), fraction(0)];
+    const huge = [fraction(1n, (1n << 70n) + 1n), fraction(0)];
+    const method = async (walk: Walk) => (await prepareWalker(walk, { seed: 1n, steps: 3 })).method;
+    expect(await method(makeWalk([{ matrix }], { type: "point", point: rational }))).toBe("residue");
+    expect(await method(makeWalk([{ matrix }], { type: "point", point: huge }))).toBe("window");
+    expect(await method(makeWalk([{ matrix }], { type: "point", point: [squareRoot(2n), fraction(0)] }))).toBe(
+      "window",
+    );
+    const translation = [squareRoot(2n), fraction(0)];
+    expect(await method(makeWalk([{ matrix, translation }], { type: "point", point: rational }))).toBe("window");
+    expect(await method(makeWalk([{ matrix }], { type: "uniform" }))).toBe("window");
+  });
+});
