@@ -29,14 +29,25 @@ const C4: f64 = -2.7557314351390663e-7;
 const C5: f64 = 2.087572321298175e-9;
 const C6: f64 = -1.1359647557788195e-11;
 
-function phaseOf(row: usize, frequency: usize, end: usize): u64 {
-  let p: u64 = 0;
-  while (frequency < end) {
-    p += load<u64>(row) * load<u64>(frequency);
-    row += 8;
-    frequency += 8;
+/** Writes k.X mod 2^64 for each row at `out`. */
+function phases(positions: usize, rows: u32, dimension: u32, frequency: usize, out: usize): void {
+  const stride = (<usize>dimension) << 3;
+  const stop = out + ((<usize>rows) << 3);
+  if (dimension == 2) {
+    const k0 = load<u64>(frequency);
+    const k1 = load<u64>(frequency, 8);
+    for (; out < stop; out += 8) {
+      store<u64>(out, load<u64>(positions) * k0 + load<u64>(positions, 8) * k1);
+      positions += 16;
+    }
+    return;
   }
-  return p;
+  for (; out < stop; out += 8) {
+    let p: u64 = 0;
+    for (let j: usize = 0; j < stride; j += 8) p += load<u64>(positions + j) * load<u64>(frequency + j);
+    store<u64>(out, p);
+    positions += stride;
+  }
 }
 
 /** The rest of a phase beside its nearest quarter turn, in radians: [-pi/4, pi/4]. */
@@ -60,8 +71,13 @@ function pairPlain(p: u64, cosOut: usize, sinOut: usize): void {
   store<u64>(sinOut, reinterpret<u64>(odd ? c : s) ^ ((q & 2) << 62));
 }
 
-function pairWide(p: u64, p2: u64, cosOut: usize, sinOut: usize): void {
-  const t = f64x2.replace_lane(f64x2.splat(restOf(p)), 1, restOf(p2));
+/** Two phases at once; the conversion of a rest r = h 2^32 + l rounds once, as the scalar one does. */
+function pairWide(p: v128, cosOut: usize, sinOut: usize): void {
+  const q = i64x2.shr_u(i64x2.add(p, i64x2.splat(QUARTER_HALF)), 62);
+  const rest = i64x2.sub(p, i64x2.shl(q, 62));
+  const high = f64x2.convert_low_i32x4_s(v128.shuffle<i32>(rest, rest, 1, 3, 1, 3));
+  const low = f64x2.convert_low_i32x4_u(v128.shuffle<i32>(rest, rest, 0, 2, 0, 2));
+  const t = f64x2.mul(f64x2.add(f64x2.mul(high, f64x2.splat(4294967296.0)), low), f64x2.splat(RADIANS));
   const z = f64x2.mul(t, t);
   let r = f64x2.add(f64x2.splat(S5), f64x2.mul(z, f64x2.splat(S6)));
   r = f64x2.add(f64x2.splat(S4), f64x2.mul(z, r));
@@ -79,8 +95,6 @@ function pairWide(p: u64, p2: u64, cosOut: usize, sinOut: usize): void {
   const one = f64x2.splat(1.0);
   const w = f64x2.sub(one, h);
   const c = f64x2.add(w, f64x2.add(f64x2.sub(f64x2.sub(one, w), h), f64x2.mul(z, r)));
-  const turned = i64x2.add(i64x2.replace_lane(i64x2.splat(p), 1, p2), i64x2.splat(QUARTER_HALF));
-  const q = i64x2.shr_u(turned, 62);
   const odd = i64x2.neg(v128.and(q, i64x2.splat(1)));
   const two = i64x2.splat(2);
   const cosSign = i64x2.shl(v128.and(i64x2.add(q, i64x2.splat(1)), two), 62);
@@ -98,25 +112,18 @@ export function observePhases(
   cosOut: usize,
   sinOut: usize,
 ): void {
-  const stride = (<usize>dimension) << 3;
-  const end = frequency + stride;
-  let left = rows;
+  // The phases wait where the cosines will be.
+  phases(positions, rows, dimension, frequency, cosOut);
+  const stop = cosOut + ((<usize>rows) << 3);
   if (ASC_FEATURE_SIMD) {
-    while (left >= 2) {
-      const next = positions + stride;
-      pairWide(phaseOf(positions, frequency, end), phaseOf(next, frequency, end), cosOut, sinOut);
-      positions = next + stride;
-      cosOut += 16;
+    for (; cosOut + 16 <= stop; cosOut += 16) {
+      pairWide(v128.load(cosOut), cosOut, sinOut);
       sinOut += 16;
-      left -= 2;
     }
   }
-  while (left > 0) {
-    pairPlain(phaseOf(positions, frequency, end), cosOut, sinOut);
-    positions += stride;
-    cosOut += 8;
+  for (; cosOut < stop; cosOut += 8) {
+    pairPlain(load<u64>(cosOut), cosOut, sinOut);
     sinOut += 8;
-    left--;
   }
 }
 
