@@ -23,10 +23,21 @@ function oneNorm(frequency: readonly bigint[]): number {
   return Number(frequency.reduce((s, k) => s + (k < 0n ? -k : k), 0n));
 }
 
-/** A bound on |f|, or on the centred f up to a factor 2: sum of |c| + |s|; 1 for a box. */
+function amplitude(term: Term): number {
+  return Math.abs(term.cos.toNumber()) + Math.abs(term.sin.toNumber());
+}
+
+/** A bound on |f|: the sum of |c| + |s|; 1 for a box. */
 export function observableSize(f: Observable): number {
-  if (f.type === "box") return 1;
-  return f.terms.reduce((s, t) => s + Math.abs(t.cos.toNumber()) + Math.abs(t.sin.toNumber()), 0);
+  return f.type === "box" ? 1 : f.terms.reduce((s, t) => s + amplitude(t), 0);
+}
+
+/**
+ * A bound on |f - integral of f| for a polynomial, the scale that a variance computed with
+ * rounding is judged by; 0 for a box, whose variance is 0 only where it is so exactly.
+ */
+export function observableSwing(f: Observable): number {
+  return f.type === "box" ? 0 : f.terms.reduce((s, t) => s + (oneNorm(t.frequency) > 0 ? amplitude(t) : 0), 0);
 }
 
 /**
@@ -38,7 +49,7 @@ export function evaluationError(f: Observable): number {
   if (f.type === "box") return 0;
   let error = 0;
   for (const term of f.terms) {
-    const size = Math.abs(term.cos.toNumber()) + Math.abs(term.sin.toNumber());
+    const size = amplitude(term);
     if (oneNorm(term.frequency) > 0)
       error += size * Math.min(2, 6.2831853072 * oneNorm(term.frequency) * RESOLUTION + 2 ** -51);
   }

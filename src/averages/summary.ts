@@ -21,6 +21,8 @@ export interface SummaryInput {
   readonly variance: number | undefined;
   /** A bound on |f|. */
   readonly size: number;
+  /** A bound on |f - its mean|, or 0 where f has no rounding (a box). */
+  readonly swing: number;
   /** A bound on the error of each computed value of f. */
   readonly error: number;
   readonly level: number;
@@ -28,8 +30,14 @@ export interface SummaryInput {
   readonly start: string;
 }
 
-/** A variance at most this share of the square of the observable's bound counts as 0: rounding may have left it. */
-const NEGLIGIBLE = 2 ** -40;
+/**
+ * A variance at most this counts as 0, since rounding alone may have left it: in a limit
+ * variance summed from correlations, a share of swing^2; in batch means of a constant, the
+ * square of the sums' rounding over a batch's length.
+ */
+function negligible({ size, swing, segments }: SummaryInput): number {
+  return 2 ** -40 * swing * swing + 2 ** -90 * size * size * segments.steps;
+}
 
 /** Sums up to each segment's end. */
 function cumulative(sums: ArrayLike<number>): Float64Array {
@@ -77,7 +85,7 @@ export function summarise(input: SummaryInput, real: Real): SampledAverage {
   const covered = proportionEstimate(hits, count, level);
 
   const variance = input.variance ?? within.value;
-  const flat = !(variance > NEGLIGIBLE * size * size);
+  const flat = !(variance > negligible(input));
   const standardised = flat ? [] : averages.map((a) => (a - limit) * Math.sqrt(steps / variance));
   const statistic = flat ? null : kolmogorovDistance(standardised, normalCdf);
   const peaks = flat || segments.envelope.length === 0 ? [] : paths.map((path) => peak(path, input, variance, real));

@@ -18,12 +18,17 @@ export function tQuantile(p: number, freedom: number): number {
   return studentQuantile(p, freedom);
 }
 
+/** (1 + level) / 2, kept below 1, so that every level has a finite quantile. */
+function upper(level: number): number {
+  return Math.min((1 + level) / 2, 1 - 2 ** -53);
+}
+
 /** z with P(|Z| <= z) = level for a standard normal Z: 1.96 for 0.95. */
 export function twoSidedNormal(level: number): number {
-  return normalQuantile((1 + level) / 2);
+  return normalQuantile(upper(level));
 }
 
 /** t with P(|T| <= t) = level for Student's T with `freedom` degrees of freedom. */
 export function twoSidedT(level: number, freedom: number): number {
-  return tQuantile((1 + level) / 2, freedom);
+  return tQuantile(upper(level), freedom);
 }

@@ -42,7 +42,7 @@ async function synthetic(seed: bigint, replicates: number, steps: number, known 
     );
   }
   const variance = known ? 4 : undefined;
-  return { segments, replicates: rows, mean: 3, variance, size: 10, error: 0, level: 0.95, start: "a test" };
+  return { segments, replicates: rows, mean: 3, variance, size: 10, swing: 7, error: 0, level: 0.95, start: "a test" };
 }
 
 describe("summarise", () => {
@@ -105,6 +105,7 @@ describe("summarise", () => {
           mean: 0.1,
           variance,
           size: 0.1,
+          swing: variance === undefined ? 0 : 0.1,
           error: 2 ** -50,
           level: 0.9,
         };
@@ -119,10 +120,27 @@ describe("summarise", () => {
     }
   });
 
+  it("a large constant does not hide a small variance", async () => {
+    const input = await synthetic(12n, 50, 1000);
+    const { ends } = input.segments;
+    const lifted = input.replicates.map((row) => Array.from(row, (v, j) => v + 1e7 * (ends[j]! - (ends[j - 1] ?? 0))));
+    const s = summarise({ ...input, replicates: lifted, mean: 1e7 + 3, size: 1e7 + 10, variance: undefined }, real);
+    expect(s.normalDistance.pValue).toBeGreaterThan(1e-3);
+  });
+
   it("a zero observable", () => {
     const segments = planSegments(50, real);
     const row = segments.ends.map(() => 0);
-    const input = { segments, replicates: [row, row], mean: 0, variance: undefined, size: 0, error: 0, level: 0.95 };
+    const input = {
+      segments,
+      replicates: [row, row],
+      mean: 0,
+      variance: undefined,
+      size: 0,
+      swing: 0,
+      error: 0,
+      level: 0.95,
+    };
     const s = summarise({ ...input, start: "a test" }, real);
     expect(s.mean.value).toBe(0);
     expect(s.normalDistance.statistic).toBeNull();

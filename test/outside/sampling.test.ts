@@ -61,7 +61,7 @@ describe("variance of a time average in closed form", () => {
     const count = 600;
     const sums = await segmentSums(walk, { seed: 1n, steps, first: 0, count, ends, memoryLimit: 2 ** 28 });
     const replicates = Array.from({ length: count }, (_, r) => sums.subarray(r * ends.length, (r + 1) * ends.length));
-    const shared = { segments, replicates, mean: 0, size: 1, error: 2 ** -45, start: "uniform points" };
+    const shared = { segments, replicates, mean: 0, size: 1, swing: 1, error: 2 ** -45, start: "uniform points" };
     const sure = summarise({ ...shared, variance: 2.5, level: 0.9999 }, real);
     for (const q of [sure.mean, sure.variance]) {
       const truth = q === sure.mean ? 0 : 2.5;
