@@ -27,7 +27,7 @@ export { philoxBlock } from "./random/philox";
 export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
 export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";
 // Trajectories
-export { residueWalk } from "./trajectory/residue";
+export { residueWalk, residueWalk2 } from "./trajectory/residue";
 export { scatterStart } from "./trajectory/start";
 export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
 export {

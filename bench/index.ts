@@ -6,6 +6,7 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   draws: () => import("./draws.js"),
   sampling: () => import("./sampling.js"),
   dual: () => import("./dual.js"),
+  trajectory: () => import("./trajectory.js"),
 };
 
 const wanted = process.argv.slice(2);

@@ -7,13 +7,17 @@
  * off by at most one from floor(S / q), and one comparison each way mends it.
  */
 
-/** floor(value / q), where `inverse` is 1 / q to the nearest; the remainder is what the caller wants next. */
+/** value mod q in [0, q), where `inverse` is 1 / q to the nearest. */
+function remainder(value: i64, q: i64, inverse: f64): i64 {
+  const rest = value - <i64>Math.floor(<f64>value * inverse) * q;
+  return rest < 0 ? rest + q : rest >= q ? rest - q : rest;
+}
+
+/** floor(value / q). */
 function quotient(value: i64, q: i64, inverse: f64): i64 {
-  let t = <i64>Math.floor(<f64>value * inverse);
+  const t = <i64>Math.floor(<f64>value * inverse);
   const rest = value - t * q;
-  if (rest < 0) t--;
-  else if (rest >= q) t++;
-  return t;
+  return rest < 0 ? t - 1 : rest >= q ? t + 1 : t;
 }
 
 /** floor(2^64 r / q), some bits at a time: `shift` with q 2^shift <= 2^62, at most 32. */
@@ -34,6 +38,17 @@ function fraction(r: i64, q: i64, inverse: f64, shift: i64): u64 {
 function emit(state: usize, count: usize, q: i64, inverse: f64, shift: i64, out: usize): void {
   for (let j: usize = 0; j < count; j++) {
     store<u64>(out + (j << 3), fraction(load<i64>(state + (j << 3)), q, inverse, shift));
+  }
+}
+
+/** One move, from `state` to `next`. */
+function step(d: usize, move: usize, state: usize, next: usize, q: i64, inverse: f64): void {
+  const end = state + (d << 3);
+  const last = next + (d << 3);
+  for (; next < last; next += 8, move += 8) {
+    let sum: i64 = 0;
+    for (let x = state; x < end; x += 8, move += 8) sum += load<i64>(move) * load<i64>(x);
+    store<i64>(next, remainder(sum + load<i64>(move), q, inverse));
   }
 }
 
@@ -58,26 +73,61 @@ export function residueWalk(
   const d = <usize>dimension;
   const row = d << 3;
   const size = row * (d + 1);
-  const work = state + row;
   const inverse = 1.0 / <f64>q;
-  for (let k: u32 = 0; ; k++) {
+  const last = choices + ((<usize>steps) << 1);
+  let here = state;
+  let next = state + row;
+  for (let choice = choices; ; choice += 2) {
     if (out != 0) {
-      emit(state, d, q, inverse, <i64>shift, out);
+      emit(here, d, q, inverse, <i64>shift, out);
       out += row;
     }
     if (numerators != 0) {
-      memory.copy(numerators, state, row);
+      for (let j: usize = 0; j < row; j += 8) store<i64>(numerators + j, load<i64>(here + j));
       numerators += row;
     }
-    if (k == steps) break;
-    let m = moves + <usize>load<u16>(choices + ((<usize>k) << 1)) * size;
-    for (let i: usize = 0; i < d; i++) {
-      let sum: i64 = 0;
-      for (let j: usize = 0; j < row; j += 8, m += 8) sum += load<i64>(m) * load<i64>(state + j);
-      sum += load<i64>(m);
-      m += 8;
-      store<i64>(work + (i << 3), sum - quotient(sum, q, inverse) * q);
-    }
-    memory.copy(state, work, row);
+    if (choice == last) break;
+    step(d, moves + <usize>load<u16>(choice) * size, here, next, q, inverse);
+    const spare = here;
+    here = next;
+    next = spare;
   }
+  if (here != state) memory.copy(state, here, row);
+}
+
+/** `residueWalk` in dimension 2, in registers. */
+export function residueWalk2(
+  moves: usize,
+  choices: usize,
+  steps: u32,
+  q: i64,
+  shift: u32,
+  state: usize,
+  out: usize,
+  numerators: usize,
+): void {
+  const inverse = 1.0 / <f64>q;
+  const last = choices + ((<usize>steps) << 1);
+  let x = load<i64>(state);
+  let y = load<i64>(state, 8);
+  for (let choice = choices; ; choice += 2) {
+    if (out != 0) {
+      store<u64>(out, fraction(x, q, inverse, <i64>shift));
+      store<u64>(out, fraction(y, q, inverse, <i64>shift), 8);
+      out += 16;
+    }
+    if (numerators != 0) {
+      store<i64>(numerators, x);
+      store<i64>(numerators, y, 8);
+      numerators += 16;
+    }
+    if (choice == last) break;
+    const m = moves + <usize>load<u16>(choice) * 48;
+    const u = load<i64>(m) * x + load<i64>(m, 8) * y + load<i64>(m, 16);
+    const v = load<i64>(m, 24) * x + load<i64>(m, 32) * y + load<i64>(m, 40);
+    x = remainder(u, q, inverse);
+    y = remainder(v, q, inverse);
+  }
+  store<i64>(state, x);
+  store<i64>(state, y, 8);
 }

@@ -234,19 +234,25 @@ export class ResidueRun {
     this.kernel.i64(this.state, this.table.dimension).set(this.table.start);
   }
 
-  /** Makes the first `steps` choices from the present point, which they replace. */
-  run(steps = this.steps): void {
-    this.kernel.raw.residueWalk(
-      this.table.dimension,
+  /**
+   * Makes the first `steps` choices from the present point, which they replace.
+   * @param positions false: numerators alone are written
+   */
+  run(steps = this.steps, positions = true): void {
+    const { dimension, denominator } = this.table;
+    const { raw } = this.kernel;
+    const rest = [
       this.movesAt,
       this.choicesAt,
       steps,
-      this.table.denominator,
+      denominator,
       this.shift,
       this.state,
-      this.out,
+      positions ? this.out : 0,
       this.numeratorsAt,
-    );
+    ] as const;
+    if (dimension === 2) raw.residueWalk2(...rest);
+    else raw.residueWalk(dimension, ...rest);
   }
 
   /** floor(2^64 x) of `rows` positions. */

@@ -101,10 +101,10 @@ function residuePath(walk: Walk, options: PathOptions, kernel: Kernel, rational:
       for (let first = 0; first < steps; first += ROWS) {
         const rows = Math.min(ROWS, steps - first);
         run.choices.set(choices.subarray(first, first + rows));
-        run.run(rows);
+        run.run(rows, false);
         yield new FractionBlock(first, rows, d, run.numerators(rows), rational.denominator);
       }
-      run.run(0);
+      run.run(0, false);
       yield new FractionBlock(steps, 1, d, run.numerators(1), rational.denominator);
     },
   };

@@ -79,6 +79,28 @@ describe("trajectory", () => {
     expect(drawn.bitsHeld! / drawn.bitsConsumed).toBeLessThan(1.06);
   });
 
+  it("holds few bits more than a group walk's products need, though moves cancel", async () => {
+    const moves = [2n, -2n].flatMap((c) => [
+      [
+        [1n, c],
+        [0n, 1n],
+      ],
+      [
+        [1n, 0n],
+        [c, 1n],
+      ],
+    ]);
+    const walk = makeWalk(
+      moves.map((matrix) => ({ matrix })),
+      { type: "point", point },
+    );
+    const { bitsConsumed, bitsHeld } = await trajectory(walk, { steps: 8000, at: [8000] });
+    const sumOfNorms = 8000 * Math.log2(3);
+    expect(bitsConsumed).toBeLessThan(0.6 * sumOfNorms);
+    expect(bitsHeld! - 64).toBeGreaterThan(bitsConsumed);
+    expect(bitsHeld! / bitsConsumed).toBeLessThan(1.15);
+  });
+
   it("takes no moves, one move, and reports every step of a short walk", async () => {
     const none = await trajectory(tray, { steps: 0 });
     expect(none.positions).toEqual([{ step: 0, point: ["0.414213562373095", "0.732050807568877"] }]);
