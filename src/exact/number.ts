@@ -2,7 +2,7 @@
  * An exact number of the walk file: a real number that can be evaluated to any number of
  * bits with a proved error, and whose kind is known.
  */
-import { Rational } from "./rational.js";
+import { bitLength, floorDiv, Rational } from "./rational.js";
 
 /** `rational` and `algebraic` (irrational) are proved; `unproved`: neither could be proved. */
 export type NumberKind = "rational" | "algebraic" | "unproved";
@@ -30,7 +30,16 @@ export function exactRational(value: Rational, text: string = value.toString()):
     text,
     kind: "rational",
     rational: value,
-    toFixed: (bits) => Rational.of(value.num << BigInt(bits), value.den).floor(),
+    toFixed: (bits) => floorDiv(value.num << BigInt(bits), value.den),
     toNumber: () => value.toNumber(),
   };
+}
+
+/** The double for a number known through its fixed-point values: one unit in the last place at most away. */
+export function fixedToNumber(toFixed: (bits: number) => bigint): number {
+  for (let bits = 64; ; bits *= 2) {
+    const m = toFixed(bits);
+    // 62 digits make the error of one unit smaller than a double's; beyond 2^-2000 all is 0.
+    if (bitLength(m) >= 62 || bits > 2000) return Rational.of(m, 1n << BigInt(bits)).toNumber();
+  }
 }
