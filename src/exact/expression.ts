@@ -8,11 +8,10 @@
  *   power   = primary [ "^" unary ]            so that -2^2 = -4 and 2^3^2 = 2^9
  *   primary = number | "pi" | "e" | ("sqrt" | "cbrt") "(" sum ")" | "(" sum ")"
  */
+import { ExactFault } from "./fault.js";
 import { Rational } from "./rational.js";
-import { type Builder, ExactFault, POWER_LIMIT, type Real } from "./real.js";
+import { type Builder, POWER_LIMIT, type Real } from "./real.js";
 
-export const EXPRESSION_ACCEPTED =
-  'integers, fractions and terminating decimals with + - * / ^ (integer powers), parentheses, sqrt( ), cbrt( ), pi and e, such as "sqrt(2)-1"';
 const LENGTH_LIMIT = 2000;
 const DEPTH_LIMIT = 100;
 

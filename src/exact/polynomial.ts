@@ -128,12 +128,12 @@ export function countRealRoots(f: Polynomial, low: Rational, high: Rational): nu
 
 /**
  * Every root of f other than 0 has absolute value above 2^-k for the k returned:
- * Cauchy's bound for the reverse polynomial, |root| >= |g0| / (|g0| + max |g_i|).
+ * Cauchy's bound for the reverse polynomial, |root| >= |g0| / (|g0| + max |g_i|) >= |g0| / sum |g_i|.
  */
 export function bitsBelowRoots(f: Polynomial): number {
   const g = f.slice(f.findIndex((c) => c !== 0n));
-  const largest = g.slice(1).reduce((m, c) => (abs(c) > m ? abs(c) : m), 0n);
-  return Math.max(0, bitLength(abs(g[0]) + largest) - bitLength(g[0]) + 1);
+  const total = g.reduce((sum, c) => sum + abs(c), 0n);
+  return Math.max(0, bitLength(total) - bitLength(g[0]) + 1);
 }
 
 /**

@@ -1,12 +1,10 @@
 /** Exact numbers as the walk file writes them. */
 import { parseExpression } from "./expression.js";
+import { ExactFault } from "./fault.js";
 import { type ExactNumber, exactRational, fixedToNumber } from "./number.js";
 import type { Rational } from "./rational.js";
-import { Builder, ExactFault, enclose } from "./real.js";
+import { Builder, enclose } from "./real.js";
 import { polynomialRoot } from "./root.js";
-
-export { EXPRESSION_ACCEPTED } from "./expression.js";
-export { ExactFault } from "./real.js";
 
 /** Polynomials up to this degree: the Sturm chain's coefficients grow with its square. */
 export const POLYNOMIAL_DEGREE_LIMIT = 64;
@@ -44,32 +42,42 @@ export function exactFromText(text: string): ExactNumber {
   };
 }
 
-function rationalFrom(value: string | number, what: string): Rational {
-  const { rational, kind } = exactFromText(String(value));
-  if (rational === undefined) throw new ExactFault(`${what} ${JSON.stringify(value)} is ${kind}, not rational`);
-  return rational;
+/** A rational in a polynomial number; `path` says which. */
+function rationalAt(value: string | number, path: string): Rational {
+  try {
+    const { rational, kind } = exactFromText(String(value));
+    if (rational !== undefined) return rational;
+    const found = kind === "algebraic" ? "an irrational number" : "a number that is not proved to be rational";
+    throw new ExactFault(found, 'a rational number: a text such as "1/2" or "0.25", or a JSON integer', path);
+  } catch (error) {
+    if (error instanceof ExactFault && error.path === "") throw new ExactFault(error.message, error.accepted, path);
+    throw error;
+  }
 }
 
 /** The shape of a polynomial number in the file. */
 export interface PolynomialNumber {
   readonly polynomial: readonly (string | number)[];
-  readonly between: readonly [string | number, string | number];
+  readonly between: readonly (string | number)[];
 }
 
 /**
  * An exact number from its form in the file: an expression, a safe integer, or a polynomial
- * with an interval. @throws ExactFault
+ * with an interval.
+ * @throws ExactFault
  */
 export function readExact(value: string | number | PolynomialNumber): ExactNumber {
-  if (typeof value === "number") return exactFromText(String(value));
-  if (typeof value === "string") return exactFromText(value);
-  const coefficients = value.polynomial.map((c) => rationalFrom(c, "the coefficient"));
+  if (typeof value === "number" || typeof value === "string") return exactFromText(String(value));
+  const coefficients = value.polynomial.map((c, i) => rationalAt(c, `/polynomial/${i}`));
   while (coefficients.length > 0 && coefficients[coefficients.length - 1].sign() === 0) coefficients.pop();
-  if (coefficients.length < 2) throw new ExactFault("the polynomial is constant");
+  const degrees = `a polynomial of degree 1 to ${POLYNOMIAL_DEGREE_LIMIT}`;
+  if (coefficients.length < 2) throw new ExactFault("a constant polynomial", degrees, "/polynomial");
   if (coefficients.length - 1 > POLYNOMIAL_DEGREE_LIMIT) {
-    throw new ExactFault(`the polynomial has degree ${coefficients.length - 1}, more than ${POLYNOMIAL_DEGREE_LIMIT}`);
+    throw new ExactFault(`degree ${coefficients.length - 1}`, degrees, "/polynomial");
   }
-  const [low, high] = value.between.map((end) => rationalFrom(end, "the end"));
-  if (low.compare(high) > 0) throw new ExactFault(`the interval from ${low} to ${high} is empty`);
+  const [low, high] = value.between.map((end, i) => rationalAt(end, `/between/${i}`));
+  if (low.compare(high) > 0) {
+    throw new ExactFault(`the empty interval from ${low} to ${high}`, "the lower end first", "/between");
+  }
   return polynomialRoot(coefficients, low, high);
 }

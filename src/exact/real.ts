@@ -17,6 +17,7 @@ import {
   TooCoarse,
 } from "./ball.js";
 import { eBall, piBall } from "./constants.js";
+import { ExactFault } from "./fault.js";
 import { exactCbrt, exactSqrt } from "./integer-roots.js";
 import { bitsBelowRoots, evaluateHomogeneous, type Polynomial, primitivePart, shifted } from "./polynomial.js";
 import { bitLength, Rational } from "./rational.js";
@@ -30,11 +31,6 @@ export interface Real {
   readonly constant?: Rational;
   /** Equal texts mean equal values. */
   readonly text: string;
-}
-
-/** What is wrong with an operation, in words; the parser adds where. */
-export class ExactFault extends Error {
-  override readonly name = "ExactFault";
 }
 
 /** Integers of expressions stay below 2^this, so that a short text cannot ask for a huge number. */

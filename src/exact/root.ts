@@ -1,4 +1,6 @@
 /** The one real root of an integer polynomial in an interval, to any number of bits. */
+
+import { ExactFault } from "./fault.js";
 import { type ExactNumber, exactRational, fixedToNumber } from "./number.js";
 import {
   countRealRoots,
@@ -10,7 +12,8 @@ import {
   squareFreePart,
 } from "./polynomial.js";
 import { floorDiv, Rational } from "./rational.js";
-import { ExactFault } from "./real.js";
+
+const ONE_ROOT = "an interval that holds exactly one real root of the polynomial";
 
 /** The root lies in [cell, cell + 1] / 2^bits, with different signs of f at the two ends. */
 interface Cell {
@@ -98,6 +101,7 @@ export function polynomialRoot(coefficients: readonly Rational[], low: Rational,
   if (count !== 1) {
     throw new ExactFault(
       `${polynomialText(coefficients)} has ${count === 0 ? "no real root" : `${count} real roots`} from ${low} to ${high}`,
+      ONE_ROOT,
     );
   }
   const rational = degree(f) === 1 ? Rational.of(-f[0], f[1]) : rationalRoot(f, low, high);
