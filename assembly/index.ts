@@ -43,6 +43,7 @@ export {
   windowPlan,
   windowProduct,
   windowRecordBytes,
+  windowReplay,
   windowStart,
   windowWorkBytes,
 } from "./trajectory/window";

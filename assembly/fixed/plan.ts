@@ -11,13 +11,15 @@
  * the last place of a number below 1).
  */
 import { alloc } from "../memory";
+import { ROOTS_BYTES, writeRoots } from "./roots";
 
 const TURN: f64 = 6.283185307179586476925286766559;
 /** Passes at most: lengths stay below 2^31. */
 const PASSES: usize = 32;
 
-/** Layout of a plan: M, number of passes, then per pass its radix and its table's address. */
-const HEAD: usize = 16;
+/** Layout of a plan: M, number of passes, the check's roots, then per pass its radix and its table's address. */
+const ROOTS: usize = 8;
+const HEAD: usize = ROOTS + ROOTS_BYTES;
 const SIZE: usize = HEAD + PASSES * 8;
 
 export function planLength(plan: usize): u32 {
@@ -25,6 +27,9 @@ export function planLength(plan: usize): u32 {
 }
 export function planPasses(plan: usize): i32 {
   return load<i32>(plan, 4);
+}
+export function planRoots(plan: usize): usize {
+  return plan + ROOTS;
 }
 export function passRadix(plan: usize, pass: i32): u32 {
   return load<u32>(plan + HEAD + ((<usize>pass) << 3));
@@ -79,6 +84,7 @@ export function makePlan(m: u32): usize {
   const plan = alloc(<u32>SIZE);
   if (plan == 0) return 0;
   store<u32>(plan, m);
+  writeRoots(plan + ROOTS, m);
   let rest = m >> 1;
   let passes = 0;
   const put = plan + HEAD;

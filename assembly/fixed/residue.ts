@@ -5,52 +5,14 @@
  * residue of the integer itself would say nothing). A wrong coefficient escapes where it
  * changes the polynomial by a multiple of both minimal factors: about once in 2^61.
  *
- * The four quarters of the digits are the four lanes; Horner's rule runs over a quarter,
- * with Montgomery's multiplication (R = 2^32).
+ * The four quarters of the digits are the four lanes; Horner's rule runs over a quarter.
  */
-import { planLength } from "./plan";
+import { planLength, planRoots } from "./plan";
+import { mont, ofPrime, P1, P2, quarterStep, rho, rhoQuotient, rhoSquared, rhoSquaredQuotient } from "./roots";
 
-/** 15 2^27 + 1 and 375 2^22 + 1: both leave roots of unity of order 4 M for M up to 5 2^20. */
-const P1: u32 = 2013265921;
-const P2: u32 = 1572864001;
-const G1: u64 = 31;
-const G2: u64 = 13;
 const MAGIC: f64 = 6755399441055744.0;
 const SPLIT: f64 = 4194304.0; // 2^22
 const UNSPLIT: f64 = 2.384185791015625e-7; // 2^-22
-
-/** The longest plan whose products can be checked. */
-export function longestChecked(): u32 {
-  return 5 << 20;
-}
-
-function power(b: u64, e: u64, p: u64): u64 {
-  let r: u64 = 1;
-  b %= p;
-  while (e) {
-    if (e & 1) r = (r * b) % p;
-    b = (b * b) % p;
-    e >>= 1;
-  }
-  return r;
-}
-
-/** The inverse of p modulo 2^32, by Newton's iteration. */
-function inverse32(p: u32): u32 {
-  let x = p;
-  for (let i = 0; i < 4; i++) x *= 2 - p * x;
-  return x;
-}
-
-/** A root of order 4 M. */
-function rootOf(m: u32, p: u64, g: u64): u64 {
-  return power(g, (p - 1) / (4 * <u64>m), p);
-}
-
-function mont(a: u32, w: u32, wp: u32, p: u32): u32 {
-  const t = <i64>((<u64>a * w) >> 32) - <i64>((<u64>(a * wp) * p) >> 32);
-  return <u32>(t < 0 ? t + p : t);
-}
 
 function montLanes(a: v128, w: v128, wp: v128, p: v128): v128 {
   const q = i32x4.mul(a, wp);
@@ -71,37 +33,28 @@ function toLanes(re: v128, im: v128): v128 {
   return v128.shuffle<i64>(i32x4.trunc_sat_f64x2_s_zero(re), i32x4.trunc_sat_f64x2_s_zero(im), 0, 2);
 }
 
-/** sum over quarters q of lane q times rho^{q H}, H digits a quarter. */
-function joinQuarters(e0: u64, e1: u64, e2: u64, e3: u64, m: u32, p: u64, g: u64): u64 {
-  const step = power(rootOf(m, p, g), m >> 1, p);
-  return (((((e3 * step + e2) % p) * step + e1) % p) * step + e0) % p;
-}
-
 /** The two residues of the digits in a transform that has not been evaluated, as one word. */
 export function digitResidues(plan: usize, at: usize): u64 {
-  return evaluate(plan, at, 0.0);
+  if (ASC_FEATURE_SIMD) return digitsLanes(planRoots(plan), at, planLength(plan));
+  return withoutLanes(plan, at, 0.0);
 }
 
 /** The two residues of the rounded coefficients (stored times M) of a transform that has come back. */
 export function coefficientResidues(plan: usize, at: usize): u64 {
-  return evaluate(plan, at, 1.0 / <f64>planLength(plan));
+  const scale = 1.0 / <f64>planLength(plan);
+  if (ASC_FEATURE_SIMD) return coefficientsLanes(planRoots(plan), at, planLength(plan), scale);
+  return withoutLanes(plan, at, scale);
 }
 
-function evaluate(plan: usize, at: usize, scale: f64): u64 {
-  const m = planLength(plan);
-  const rho1 = rootOf(m, P1, G1);
-  const rho2 = rootOf(m, P2, G2);
-  const w1 = <u32>((rho1 << 32) % P1);
-  const w2 = <u32>((rho2 << 32) % P2);
-  if (ASC_FEATURE_SIMD) {
-    return scale == 0.0 ? digitsLanes(at, m, w1, w2) : coefficientsLanes(at, m, w1, w2, scale);
-  }
+/** Both residues for the plain build; scale 0: digits, exact as they stand. */
+function withoutLanes(plan: usize, at: usize, scale: f64): u64 {
+  const roots = planRoots(plan);
+  const step1 = quarterStep(ofPrime(roots, false));
+  const step2 = quarterStep(ofPrime(roots, true));
   let r1: u64 = 0;
   let r2: u64 = 0;
-  const step1 = power(rho1, m >> 1, P1);
-  const step2 = power(rho2, m >> 1, P2);
   for (let q = 3; q >= 0; q--) {
-    const e = quarterPlain(at + ((<usize>q) << 3), m, w1, w2, scale);
+    const e = quarterPlain(roots, at + ((<usize>q) << 3), planLength(plan), scale);
     r1 = (r1 * step1 + (e >> 32)) % P1;
     r2 = (r2 * step2 + (e & 0xffffffff)) % P2;
   }
@@ -109,9 +62,13 @@ function evaluate(plan: usize, at: usize, scale: f64): u64 {
 }
 
 /** One quarter's polynomial at rho, both primes. */
-function quarterPlain(at: usize, m: u32, w1: u32, w2: u32, scale: f64): u64 {
-  const w1p = w1 * inverse32(P1);
-  const w2p = w2 * inverse32(P2);
+function quarterPlain(roots: usize, at: usize, m: u32, scale: f64): u64 {
+  const first = ofPrime(roots, false);
+  const second = ofPrime(roots, true);
+  const w1 = rho(first);
+  const w1p = rhoQuotient(first);
+  const w2 = rho(second);
+  const w2p = rhoQuotient(second);
   let a1: u32 = 0;
   let a2: u32 = 0;
   let s = at + ((<usize>m) << 4);
@@ -128,28 +85,24 @@ function quarterPlain(at: usize, m: u32, w1: u32, w2: u32, scale: f64): u64 {
   return ((<u64>a1) << 32) | a2;
 }
 
-function join(a: v128, m: u32, p: u64, g: u64): u64 {
-  return joinQuarters(
-    <u32>i32x4.extract_lane(a, 0),
-    <u32>i32x4.extract_lane(a, 1),
-    <u32>i32x4.extract_lane(a, 2),
-    <u32>i32x4.extract_lane(a, 3),
-    m,
-    p,
-    g,
-  );
+/** sum over quarters q of lane q times step^q. */
+function join(a: v128, step: u64, p: u64): u64 {
+  let r = <u64>(<u32>i32x4.extract_lane(a, 3)) % p;
+  r = (r * step + <u64>(<u32>i32x4.extract_lane(a, 2))) % p;
+  r = (r * step + <u64>(<u32>i32x4.extract_lane(a, 1))) % p;
+  return (r * step + <u64>(<u32>i32x4.extract_lane(a, 0))) % p;
 }
 
-function digitsLanes(at: usize, m: u32, w1: u32, w2: u32): u64 {
+function digitsLanes(roots: usize, at: usize, m: u32): u64 {
   // Even and odd positions apart, so that four chains of multiplications run side by side.
-  const s1 = <u32>(<u64>mont(w1, w1, w1 * inverse32(P1), P1) % P1);
-  const s2 = <u32>(<u64>mont(w2, w2, w2 * inverse32(P2), P2) % P2);
+  const first = ofPrime(roots, false);
+  const second = ofPrime(roots, true);
   const p1 = i32x4.splat(P1);
   const p2 = i32x4.splat(P2);
-  const v1 = i32x4.splat(s1);
-  const v2 = i32x4.splat(s2);
-  const v1p = i32x4.splat(s1 * inverse32(P1));
-  const v2p = i32x4.splat(s2 * inverse32(P2));
+  const v1 = i32x4.splat(rhoSquared(first));
+  const v1p = i32x4.splat(rhoSquaredQuotient(first));
+  const v2 = i32x4.splat(rhoSquared(second));
+  const v2p = i32x4.splat(rhoSquaredQuotient(second));
   let e1 = i32x4.splat(0);
   let e2 = i32x4.splat(0);
   let o1 = i32x4.splat(0);
@@ -164,22 +117,24 @@ function digitsLanes(at: usize, m: u32, w1: u32, w2: u32): u64 {
     o1 = addLanes(montLanes(o1, v1, v1p, p1), odd, p1);
     o2 = addLanes(montLanes(o2, v2, v2p, p2), odd, p2);
   } while (s > at);
-  const r1 = i32x4.splat(w1);
-  const r2 = i32x4.splat(w2);
-  o1 = montLanes(o1, r1, i32x4.splat(w1 * inverse32(P1)), p1);
-  o2 = montLanes(o2, r2, i32x4.splat(w2 * inverse32(P2)), p2);
-  const x1 = (join(e1, m, P1, G1) + join(o1, m, P1, G1)) % P1;
-  const x2 = (join(e2, m, P2, G2) + join(o2, m, P2, G2)) % P2;
+  o1 = montLanes(o1, i32x4.splat(rho(first)), i32x4.splat(rhoQuotient(first)), p1);
+  o2 = montLanes(o2, i32x4.splat(rho(second)), i32x4.splat(rhoQuotient(second)), p2);
+  const s1 = quarterStep(first);
+  const s2 = quarterStep(second);
+  const x1 = (join(e1, s1, P1) + join(o1, s1, P1)) % P1;
+  const x2 = (join(e2, s2, P2) + join(o2, s2, P2)) % P2;
   return (x1 << 32) | x2;
 }
 
-function coefficientsLanes(at: usize, m: u32, w1: u32, w2: u32, scale: f64): u64 {
+function coefficientsLanes(roots: usize, at: usize, m: u32, scale: f64): u64 {
+  const first = ofPrime(roots, false);
+  const second = ofPrime(roots, true);
   const p1 = i32x4.splat(P1);
   const p2 = i32x4.splat(P2);
-  const v1 = i32x4.splat(w1);
-  const v2 = i32x4.splat(w2);
-  const v1p = i32x4.splat(w1 * inverse32(P1));
-  const v2p = i32x4.splat(w2 * inverse32(P2));
+  const v1 = i32x4.splat(rho(first));
+  const v1p = i32x4.splat(rhoQuotient(first));
+  const v2 = i32x4.splat(rho(second));
+  const v2p = i32x4.splat(rhoQuotient(second));
   const by = f64x2.splat(scale);
   const magic = f64x2.splat(MAGIC);
   const split = f64x2.splat(SPLIT);
@@ -202,8 +157,10 @@ function coefficientsLanes(at: usize, m: u32, w1: u32, w2: u32, scale: f64): u64
     l1 = addLanes(montLanes(l1, v1, v1p, p1), low, p1);
     l2 = addLanes(montLanes(l2, v2, v2p, p2), low, p2);
   } while (s > at);
-  const x1 = ((join(h1, m, P1, G1) << 22) + join(l1, m, P1, G1)) % P1;
-  const x2 = ((join(h2, m, P2, G2) << 22) + join(l2, m, P2, G2)) % P2;
+  const s1 = quarterStep(first);
+  const s2 = quarterStep(second);
+  const x1 = ((join(h1, s1, P1) << 22) + join(l1, s1, P1)) % P1;
+  const x2 = ((join(h2, s2, P2) << 22) + join(l2, s2, P2)) % P2;
   return (x1 << 32) | x2;
 }
 

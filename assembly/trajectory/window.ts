@@ -200,7 +200,6 @@ function extend2(w: Window, batch: Batch, k: u32, end: u32): u32 {
 export function windowPlan(window: usize, choices: usize, steps: u32, records: usize, capacity: u32): i32 {
   const w = changetype<Window>(window);
   w.choices = choices;
-  w.records = records;
   const size = (<usize>(w.dimension * w.inputs)) << 3;
   const bytes = <usize>windowRecordBytes(w.dimension, w.inputs);
   const plain2 = w.inputs == 2;
@@ -225,7 +224,6 @@ export function windowPlan(window: usize, choices: usize, steps: u32, records: u
     count++;
     record += bytes;
   }
-  w.batches = count;
   let need: f64 = 0;
   for (let i = count; i > 0; i--) {
     record -= bytes;
@@ -233,11 +231,20 @@ export function windowPlan(window: usize, choices: usize, steps: u32, records: u
     need = max(NativeMath.log2(batch.most), NativeMath.log2(batch.need) + need) + MARGIN;
     batch.need = need;
   }
+  windowReplay(window, choices, records, count);
+  return OK;
+}
+
+/** Takes up a plan that `windowPlan` has made: `count` batches at `records`, for the moves at `choices`. */
+export function windowReplay(window: usize, choices: usize, records: usize, count: u32): void {
+  const w = changetype<Window>(window);
+  w.choices = choices;
+  w.records = records;
+  w.batches = count;
   w.base = <f64>(64 * w.words + 2) + NativeMath.log2(<f64>count + 2.0) + MARGIN;
   w.record = records;
   w.next = 0;
   w.step = 0;
-  return OK;
 }
 
 /** Number of batches of the plan. */

@@ -75,6 +75,8 @@ export interface TreeBlock {
 }
 
 const NOTE_BYTES = 16;
+/** Plans of batches are kept up to this, made anew beyond. */
+const KEPT_BYTES = 2 ** 26;
 /** Digit widths, widest first; narrower digits for longer products (see assembly/fixed/transform.ts). */
 const WIDTHS = [14, 12, 10, 8];
 /** What the proof asks a coefficient's error to stay below. */
@@ -94,8 +96,9 @@ export class TreeRun {
   private readonly inputs: number;
   private readonly window: number;
   private readonly choicesAt: number;
-  private readonly records: number;
-  private readonly capacity: number;
+  /** Each leaf's plan of batches, where they are kept: they are read two or three times. */
+  private readonly plansOfLeaves: { readonly at: number; readonly batches: number }[] = [];
+  private readonly spare: number;
   private readonly state: number;
   private readonly stateLimbs: number;
   private readonly out: number;
@@ -129,8 +132,8 @@ export class TreeRun {
     this.window = kernel.alloc(raw.windowBytes(), "a run's state");
     const work = kernel.alloc(raw.windowWorkBytes(dimension, inputs, words), "a run's work space");
     this.choicesAt = kernel.alloc(2 * this.steps, "the choices of moves");
-    this.capacity = leafMoves;
-    this.records = kernel.alloc(this.capacity * raw.windowRecordBytes(dimension, inputs), "the plan of batches");
+    const record = raw.windowRecordBytes(dimension, inputs);
+    this.spare = kernel.alloc(leafMoves * record, "the plan of batches");
     this.out = kernel.alloc(8 * (leafMoves + 1) * dimension * words, "a block of positions");
     kernel.i64(moves, matrices.length).set(matrices);
     kernel.f64(normsAt, norms.length).set(norms);
@@ -138,8 +141,16 @@ export class TreeRun {
     raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, work);
     let widest = 0;
     const leaves: { span: Span; rough: Rough }[] = [];
+    let kept = 0;
     for (let leaf = 0; leaf < this.leaves; leaf++) {
       this.planLeaf(leaf);
+      const batches = raw.windowBatches(this.window);
+      if (kept < KEPT_BYTES) {
+        const at = kernel.alloc(batches * record, "the plan of batches");
+        kernel.u8(at, batches * record).set(kernel.u8(this.spare, batches * record));
+        this.plansOfLeaves.push({ at, batches });
+        kept += batches * record;
+      }
       const limbs = raw.windowLimbs(this.window);
       widest = Math.max(widest, limbs);
       const rough = this.roughLeaf();
@@ -166,7 +177,12 @@ export class TreeRun {
   private planLeaf(leaf: number): void {
     const { raw } = this.kernel;
     const at = this.choicesAt + 2 * leaf * this.leafMoves;
-    const status = raw.windowPlan(this.window, at, this.count(leaf), this.records, this.capacity);
+    const kept = this.plansOfLeaves[leaf];
+    if (kept !== undefined) {
+      raw.windowReplay(this.window, at, kept.at, kept.batches);
+      return;
+    }
+    const status = raw.windowPlan(this.window, at, this.count(leaf), this.spare, this.leafMoves);
     if (status !== 0) throw new Error(`windowPlan: more batches than moves in leaf ${leaf}`);
   }
 
