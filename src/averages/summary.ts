@@ -119,7 +119,7 @@ export function summarise(input: SummaryInput, real: Real): SampledAverage {
         : `Kolmogorov distance of ${count} averages, standardised by the limit mean and the ${
             input.variance === undefined
               ? "batch-means variance (taken within replicates, not from these averages)"
-              : "limit variance"
+              : "limit variance as reported"
           }; Kolmogorov's law with Stephens' correction`,
     },
     coverage: estimatedQuantity(
