@@ -1,5 +1,6 @@
 /** The worker's entry: every module that defines jobs is imported here, and only here. */
 
+import "./averages/jobs.js";
 import { listen } from "#worker-port";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";
