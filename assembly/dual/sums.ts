@@ -41,18 +41,21 @@ function find(table: usize, key: usize, dimension: u32, width: u32): usize {
 
 /**
  * Sum over the slots of a_k times the conjugate of b_k, real part; writes it at `out`, and
- * the sum of |a_k| |b_k| (each taken as |real| + |imaginary|) after it. The second table is the one looked up.
+ * the sum of the products' absolute values, and the number of common frequencies, after it.
+ * The second table is the one looked up.
  */
 export function dualPair(out: usize, a: usize, b: usize, dimension: u32, width: u32): void {
   const stride = (<usize>(dimension + width)) << 3;
   const keyBytes = (<usize>dimension) << 3;
   const end = a + HEADER + <usize>slotsOf(a) * stride;
   let absolute: f64 = 0;
+  let met: f64 = 0;
   reset();
   for (let slot = a + HEADER; slot < end; slot += stride) {
     if (vacant(slot, dimension)) continue;
     const other = a == b ? slot : find(b, slot, dimension, width);
     if (other == 0) continue;
+    met += 1;
     const t = load<f64>(slot + keyBytes) * load<f64>(other + keyBytes);
     add0(t);
     absolute += abs(t);
@@ -64,6 +67,7 @@ export function dualPair(out: usize, a: usize, b: usize, dimension: u32, width: 
   }
   store<f64>(out, sum0 + lost0);
   store<f64>(out, absolute, 8);
+  store<f64>(out, met, 16);
 }
 
 /** Sum of c_k exp(2 pi i k.x), written as two doubles at `out`; `point`: d fractions of 128 bits. */

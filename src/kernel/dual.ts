@@ -191,14 +191,15 @@ export class DualTables {
 
   /**
    * `sum`: over the slots, of the real part of a_k conj(b_k); a fold's second halves are not
-   * counted. `absolute`: the same of absolute values, at least; both as computed (see dual-rounding.ts).
+   * counted. `absolute`: the products' absolute sum; both as computed (see dual-rounding.ts).
+   * `met`: the number of common frequencies; where it is 0 the sum is 0 exactly.
    */
-  pair(a: number, b: number): { sum: number; absolute: number } {
+  pair(a: number, b: number): { sum: number; absolute: number; met: number } {
     const [walked, sought] = this.count(a) <= this.count(b) ? [a, b] : [b, a];
     const { dimension, width } = this.shape;
     this.kernel.raw.dualPair(this.scratch, this.at[walked] as number, this.at[sought] as number, dimension, width);
-    const [sum, absolute] = this.kernel.f64(this.scratch, 2) as unknown as [number, number];
-    return { sum, absolute };
+    const [sum, absolute, met] = this.kernel.f64(this.scratch, 3) as unknown as [number, number, number];
+    return { sum, absolute, met };
   }
 
   /** The sum of c_k exp(2 pi i k.x) over the slots; `point`: d fractions in units of 2^-128. */
