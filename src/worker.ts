@@ -2,6 +2,7 @@
 
 import "./averages/jobs.js";
 import { listen } from "#worker-port";
+import "./averages/correlations.js";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";
 

@@ -49,6 +49,12 @@ export interface ObservableResult {
   readonly degenerate: Verdict;
   /** <f, P^n f> of the centred observable, n = 0, 1, ... */
   readonly correlations: readonly Quantity[];
+  /** The last correlations that went into the variance; absent where it is no partial sum. */
+  readonly lastTerms?: readonly { readonly step: number; readonly value: Quantity }[];
+  /** The last n of the correlations, and why it is the last. */
+  readonly reached?: { readonly step: number; readonly reason: string };
+  /** What a reader must know about this observable's numbers. */
+  readonly notes: readonly string[];
   /** Moves after which the interval at `level` has this half-width. */
   readonly stepsFor: readonly { readonly halfWidth: number; readonly steps: Quantity }[];
   readonly sampled: SampledAverage;
@@ -58,6 +64,8 @@ export interface ObservableResult {
 export interface AveragesResult {
   readonly torwend: string;
   readonly walk: string;
+  /** Present for a rational start whose finite orbit was listed: all findings are about the walk on it. */
+  readonly orbit?: { readonly denominator: number; readonly size: number };
   readonly observables: readonly ObservableResult[];
   readonly warnings: readonly string[];
 }

@@ -1,9 +1,11 @@
 import { describe, expect, it } from "vitest";
 import { correlationSums } from "../../src/averages/correlations.js";
+import { exactAverages } from "../../src/averages/exact.js";
 import { isSelfAdjoint } from "../../src/dual/adjoint.js";
 import { forwardMoves } from "../../src/dual/moves.js";
 import { polynomialOf, shapeOf, tableTerms } from "../../src/dual/polynomial.js";
 import { Rational } from "../../src/exact/rational.js";
+import { withSession } from "../../src/session.js";
 import { move, number, r, walkOf } from "../dual/naive.js";
 
 /**
@@ -96,5 +98,28 @@ describe("correlations of a free group's walk", () => {
         expect(errors[n]!).toBeLessThan(1e-14);
       }
     }
+  });
+
+  it("add up to 5/2, which partial sums approach by what is left of the exact series", async () => {
+    // At x = 1/16 (two steps weigh 4^-2): E = (1 - sqrt(1 - 12 x)) / 6 = 1/12, so that the sum of all
+    // return probabilities is G = 1 / (1 - 2/4 - 2 E) = 3 and the variance (2 G - 1) / 2 = 5/2.
+    const G = 1 / (1 - 1 / 2 - (2 * (1 - Math.sqrt(1 - 12 / 16))) / 6);
+    expect((2 * G - 1) / 2).toBeCloseTo(2.5, 14);
+    const cosine = {
+      type: "terms",
+      label: "",
+      terms: [{ frequency: [1n, 0n], cos: number(1), sin: number(0) }],
+    } as const;
+    const { findings } = await withSession({ effort: "quick", workers: 0 }, (session) =>
+      exactAverages({ ...walk, observables: [cosine] }, session),
+    );
+    const { variance, reached, degenerate } = findings[0]!;
+    const known = returnProbabilities(reached!.step).reduce((s, p) => s + p.toNumber(), 0);
+    expect(reached!.step).toBeGreaterThan(22);
+    expect(variance!.standing).toBe("estimated");
+    expect(variance!.value).toBeCloseTo((2 * known - 1) / 2, 12);
+    expect(2.5 - Number(variance!.value)).toBeCloseTo(3 - known, 12);
+    expect(3 - known).toBeLessThan(0.05);
+    expect(degenerate.verdict).toBe("fails");
   });
 });

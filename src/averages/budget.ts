@@ -1,0 +1,19 @@
+/** What the exact part may spend, in work rather than time, so that answers are the same everywhere. */
+import type { Effort } from "../session.js";
+
+export interface ExactBudget {
+  /** Frequencies that one table may hold. */
+  readonly entries: number;
+  /** Products of the dual walk, all observables together. */
+  readonly products: number;
+  /** Largest n of <f, P^n f>. */
+  readonly last: number;
+  /** Points of a finite orbit. */
+  readonly points: number;
+}
+
+export const EXACT_BUDGET: Readonly<Record<Effort, ExactBudget>> = {
+  quick: { entries: 2 ** 21, products: 6e6, last: 100, points: 20_000 },
+  standard: { entries: 2 ** 23, products: 5e7, last: 200, points: 100_000 },
+  thorough: { entries: 2 ** 24, products: 4e8, last: 400, points: 500_000 },
+};

@@ -1,0 +1,226 @@
+/**
+ * Is the limit variance 0? Write T_i x = A_i x + b_i and m for the mean of f.
+ *
+ * Sufficient, everywhere: a trigonometric polynomial g with f - m = g - g o T_1 and all
+ * g o T_i equal. Then S_n - n m = g(x_0) - g(x_n) stays bounded.
+ *
+ * Necessary, in dimension 2 under strong irreducibility: some P^n then contracts functions
+ * of mean zero (the differences w w'^-1 of equally long words generate a group that is not
+ * amenable, while stabilisers of non-zero integer vectors are), so f - m = g - P g for a g in
+ * L2, with variance |g|^2 - |P g|^2. That is 0 exactly if all g o T_i are equal, so g is
+ * invariant under all T_i T_j^-1, and |coefficients| are constant on the orbits of covectors under
+ * the group D of the A_i A_j^-1: g lives on finite orbits. There are three cases.
+ * - D has none: the variance is positive for every f that is not constant.
+ * - D is infinite and keeps a rational line L of covectors up to sign: f - m = g - g o T_1 with
+ *   g on L and g o T_1 on A_1^T L, another line; so g is the part of f on L, and one looks.
+ * - D is finite: g is sought along the orbits of single moves; not found proves nothing here.
+ */
+import {
+  compose,
+  composeEntry,
+  type ExactEntry,
+  type ExactFunction,
+  functionOf,
+  polynomialFrom,
+  provedNonZero,
+  subtract,
+} from "../dual/function.js";
+import { apply, inverse, multiply, transpose } from "../dual/matrix.js";
+import { isStronglyIrreducible, type PlaneGroup, planeGroup } from "../dual/plane.js";
+import { canonical, type TrigPolynomial } from "../dual/polynomial.js";
+import type { Verdict } from "../quantity/quantity.js";
+import type { Move, Walk } from "../walk/walk.js";
+
+/** What the moves alone decide, for all observables. */
+export interface Differences {
+  /** In dimension 2: proved strongly irreducible; elsewhere undefined. */
+  readonly stronglyIrreducible: boolean | undefined;
+  /** In dimension 2: the group of the A_i A_j^-1 on covectors. */
+  readonly group: PlaneGroup | undefined;
+}
+
+export interface Degeneracy {
+  readonly verdict: Verdict;
+  /** The g that was found: the time average is off by at most 2 sup|g| / n. */
+  readonly g?: TrigPolynomial;
+}
+
+export function differencesOf(walk: Walk): Differences {
+  if (walk.dimension !== 2) return { stronglyIrreducible: undefined, group: undefined };
+  const first = inverse((walk.moves[0] as Move).matrix);
+  return {
+    stronglyIrreducible: isStronglyIrreducible(walk.moves.map((m) => m.matrix)),
+    group: planeGroup(walk.moves.map((m) => transpose(multiply(m.matrix, first)))),
+  };
+}
+
+const LONGEST_CHAIN = 200;
+
+/**
+ * For each frequency of f the later ones on its orbit under one move; undefined where an
+ * orbit is finite, so that g would not be determined. The orbit is followed far beyond what
+ * frequencies of a file need, but a later one that is missed only means that no g is found.
+ */
+function laterOnes(f: ExactFunction, move: Move): Map<string, Set<string>> | undefined {
+  const step = transpose(move.matrix);
+  const later = new Map<string, Set<string>>();
+  for (const [key, { frequency }] of f) {
+    const met = new Set<string>();
+    let k = frequency;
+    for (let n = 0; n < LONGEST_CHAIN; n++) {
+      k = canonical(apply(step, k))?.frequency as readonly bigint[];
+      const name = k.join();
+      if (name === key) return undefined;
+      if (f.has(name)) met.add(name);
+    }
+    later.set(key, met);
+  }
+  return later;
+}
+
+/** g with f = g - g o T for one move, by summing along its orbits; undefined where none was found. */
+function telescoped(f: ExactFunction, move: Move): ExactFunction | undefined {
+  const later = laterOnes(f, move);
+  if (later === undefined) return undefined;
+  const g = new Map<string, ExactEntry>();
+  const left = new Map(f);
+  while (left.size > 0) {
+    // One that comes after no other: orbits are infinite, so there is one.
+    const first =
+      [...left].find(([key]) => ![...left.keys()].some((other) => later.get(other)?.has(key))) ?? [...left][0];
+    let entry = (first as [string, ExactEntry])[1];
+    left.delete(entry.frequency.join());
+    for (let n = 0; !(entry.re.isZero && entry.im.isZero); n++) {
+      if (n > 2 * LONGEST_CHAIN) return undefined;
+      g.set(entry.frequency.join(), entry);
+      const image = composeEntry(entry, move);
+      if (image === undefined) return undefined;
+      const own = f.get(image.frequency.join());
+      left.delete(image.frequency.join());
+      entry = own === undefined ? image : { ...image, re: own.re.add(image.re), im: own.im.add(image.im) };
+    }
+  }
+  return g;
+}
+
+/** Whether f = g - g o T_i for every i: both answers proved; unknown where a phase or a difference is not decided. */
+function solves(f: ExactFunction, g: ExactFunction, walk: Walk): "yes" | "no" | "unknown" {
+  let answer: "yes" | "unknown" = "yes";
+  for (const move of walk.moves) {
+    const moved = compose(g, move);
+    const off = moved === undefined ? undefined : [...subtract(subtract(g, moved), f).values()];
+    if (off?.some(provedNonZero)) return "no";
+    if (off === undefined || off.length > 0) answer = "unknown";
+  }
+  return answer;
+}
+
+function show(g: TrigPolynomial) {
+  return g.harmonics.map(({ frequency, cos, sin }) => ({
+    frequency: frequency.map(String),
+    cos: cos.rational?.toString() ?? cos.toDouble().value,
+    sin: sin.rational?.toString() ?? sin.toDouble().value,
+  }));
+}
+
+function found(g: ExactFunction): Degeneracy {
+  const polynomial = polynomialFrom(g);
+  const reason = "f - mean = g - g(A_i x + b_i) for every move i, so that sums of f - mean stay bounded.";
+  return { verdict: { verdict: "holds", reason, evidence: { g: show(polynomial) } }, g: polynomial };
+}
+
+const fails = (reason: string, evidence: Record<string, unknown>): Degeneracy => ({
+  verdict: { verdict: "fails", reason, evidence },
+});
+const undecided = (reason: string, evidence: Record<string, unknown>): Degeneracy => ({
+  verdict: { verdict: "undecided", reason, evidence },
+});
+
+/** The verdict for a trigonometric polynomial under Haar measure. */
+export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differences): Degeneracy {
+  if (f.harmonics.length === 0) {
+    return {
+      verdict: { verdict: "holds", reason: "The observable is constant.", evidence: {} },
+      g: { ...f, harmonics: [] },
+    };
+  }
+  const exact = functionOf(f);
+  const tried: string[] = [];
+  for (const move of walk.moves) {
+    const g = telescoped(exact, move);
+    if (g !== undefined && solves(exact, g, walk) === "yes") return found(g);
+    tried.push(`sums along the orbits of "${move.label}"`);
+  }
+  const { stronglyIrreducible, group } = differences;
+  if (walk.dimension !== 2 || group === undefined || stronglyIrreducible !== true) {
+    const why =
+      walk.dimension === 2
+        ? "The moves are not strongly irreducible: no contraction is at hand that would turn variance 0 into an equation."
+        : "In dimension 3 and more the finite orbits of the differences are not decided here.";
+    return undecided(`${why} No g with f - mean = g - g(A_i x + b_i) was found.`, { tried });
+  }
+  if (group.kind === "none") return withoutFiniteOrbit();
+  if (group.kind === "finite") {
+    const order = group.elements.length;
+    return undecided(
+      `The A_i A_j^-1 generate a finite group (order ${order}), so that the variance may be 0; no g was found.`,
+      { tried, order },
+    );
+  }
+  const line = group.line;
+  const onLine = new Map(
+    [...exact].filter(
+      ([
+        ,
+        {
+          frequency: [x, y],
+        },
+      ]) => x! * line[1] === y! * line[0],
+    ),
+  );
+  const evidence = { line: line.map(String), partOnLine: show(polynomialFrom(onLine)) };
+  const answer = solves(exact, onLine, walk);
+  if (answer === "yes") return found(onLine);
+  const image = apply(transpose((walk.moves[0] as Move).matrix), line) as [bigint, bigint];
+  const outside = [...exact.values()].find(
+    (e) =>
+      e.frequency[0]! * line[1] !== e.frequency[1]! * line[0] &&
+      e.frequency[0]! * image[1] !== e.frequency[1]! * image[0] &&
+      provedNonZero(e),
+  );
+  if (outside !== undefined || answer === "no") {
+    return fails(
+      "Variance 0 would need f - mean = g - g(A_1 x + b_1) with g the part of f on the one line of frequencies that the A_i A_j^-1 keep; it is not so.",
+      { ...evidence, ...(outside === undefined ? {} : { frequencyOutside: outside.frequency.map(String) }) },
+    );
+  }
+  return undecided("Equality of irrational coefficients or phases could not be decided.", evidence);
+}
+
+function withoutFiniteOrbit(): Degeneracy {
+  return fails(
+    "The A_i A_j^-1 have no finite orbit on non-zero frequencies, so that no observable but a constant has variance 0.",
+    { group: "infinite, and no rational line of frequencies is kept up to sign" },
+  );
+}
+
+/**
+ * The verdict for the indicator of a box under Haar measure. Its frequencies fill a
+ * coordinate axis (one side is not whole) or infinitely many lines, never a line and its image alone.
+ */
+export function boxDegeneracy(whole: boolean, walk: Walk, { stronglyIrreducible, group }: Differences): Degeneracy {
+  if (whole) {
+    const g = polynomialFrom(new Map());
+    return { verdict: { verdict: "holds", reason: "The box is the whole torus.", evidence: {} }, g };
+  }
+  if (walk.dimension === 2 && stronglyIrreducible === true && group !== undefined) {
+    if (group.kind === "none") return withoutFiniteOrbit();
+    if (group.kind === "line") {
+      return fails(
+        "Variance 0 would need a g whose frequencies, and the box's, lie on one line and its image under A_1^T; a box's never do.",
+        { line: group.line.map(String) },
+      );
+    }
+  }
+  return undecided("A box has infinitely many frequencies; the criterion for its variance is not decided here.", {});
+}

@@ -1,0 +1,77 @@
+/** What is known of time averages without sampling: under Haar measure, or on a rational start's finite orbit. */
+import { isStronglyIrreducible } from "../dual/plane.js";
+import { estimatedQuantity, quantityNumber } from "../quantity/quantity.js";
+import type { Session } from "../session.js";
+import type { Walk } from "../walk/walk.js";
+import { EXACT_BUDGET, type ExactBudget } from "./budget.js";
+import type { ExactFinding } from "./finding.js";
+import { haarFindings } from "./haar.js";
+import { finiteOrbit, orbitDenominator } from "./orbit.js";
+import { orbitFindings } from "./orbital.js";
+
+export interface ExactAverages {
+  readonly findings: readonly ExactFinding[];
+  readonly orbit?: { readonly denominator: number; readonly size: number };
+  readonly warnings: readonly string[];
+}
+
+/** Means of an orbit that was not listed: the integral, and no claim beyond that. */
+function asEstimate(finding: ExactFinding): ExactFinding {
+  const method = "integral, in place of the mean over a finite orbit too large to list";
+  const mean = estimatedQuantity(quantityNumber(finding.mean), method);
+  const value = finding.variance === undefined ? undefined : quantityNumber(finding.variance);
+  return {
+    ...finding,
+    mean,
+    ...(value === undefined
+      ? {}
+      : { variance: estimatedQuantity(value, "Haar measure's, in place of the finite orbit's") }),
+    degenerate: {
+      verdict: "undecided",
+      reason: "The start's finite orbit is too large to list.",
+      evidence: { underHaarMeasure: finding.degenerate },
+    },
+    notes: [...finding.notes, "Correlations are those of Haar measure, not of the start's finite orbit."],
+  };
+}
+
+/** Exact part of `averages`, in the observables' order. @throws StoppedError, LimitError */
+export async function exactAverages(
+  walk: Walk,
+  session: Session,
+  budget: ExactBudget = EXACT_BUDGET[session.effort],
+): Promise<ExactAverages> {
+  const denominator = orbitDenominator(walk);
+  if (denominator !== undefined) {
+    const orbit = finiteOrbit(walk, budget.points);
+    if (orbit !== undefined) {
+      const { size } = orbit;
+      return {
+        findings: await orbitFindings(walk, orbit, session, budget),
+        orbit: { denominator: Number(denominator), size },
+        warnings: [
+          `The start is rational: the walk stays on an orbit of ${size} points with denominator ${denominator}, and averages converge to its mean, not to the integral.`,
+        ],
+      };
+    }
+    return {
+      findings: (await haarFindings(walk, session, budget)).map(asEstimate),
+      warnings: [
+        `The start is rational with denominator ${denominator}: averages converge to the mean over a finite orbit, which has more points than this effort lists (${budget.points}); integrals are given in its place.`,
+      ],
+    };
+  }
+  const warnings: string[] = [];
+  const moves = walk.moves.map((m) => m.matrix);
+  if (walk.dimension === 2 && isStronglyIrreducible(moves) !== true) {
+    warnings.push(
+      "The moves are not strongly irreducible: the numbers are those of Haar measure, which time averages from this start need not follow.",
+    );
+  }
+  if (walk.start.type === "point" && walk.start.point.some((x) => x.kind === "unproved")) {
+    warnings.push(
+      "A coordinate of the start is not proved irrational: if all are rational, the limit is a finite orbit's mean.",
+    );
+  }
+  return { findings: await haarFindings(walk, session, budget), warnings };
+}
