@@ -6,7 +6,7 @@ import type { ExactNumber } from "../src/exact/number.js";
 import { exactRational } from "../src/exact/number.js";
 import { Rational } from "../src/exact/rational.js";
 import { loadKernel } from "../src/kernel/kernel.js";
-import { ResidueRun } from "../src/kernel/trajectory.js";
+import { ResidueRun } from "../src/kernel/residue.js";
 import { rationalWalk, residueTable } from "../src/trajectory/table.js";
 import { prepareWalker } from "../src/trajectory/walker.js";
 import type { Walk } from "../src/walk/walk.js";

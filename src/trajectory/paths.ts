@@ -4,7 +4,8 @@
  */
 import { cumulativeWeights, drawMoves } from "../kernel/draws.js";
 import { type Kernel, loadKernel } from "../kernel/kernel.js";
-import { ResidueRun, WindowRun } from "../kernel/trajectory.js";
+import { ResidueRun } from "../kernel/residue.js";
+import { WindowRun } from "../kernel/trajectory.js";
 import type { Walk } from "../walk/walk.js";
 import { FractionBlock, type PositionBlock, WordBlock, wordsFor } from "./block.js";
 import { startDigits } from "./digits.js";

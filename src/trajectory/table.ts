@@ -2,7 +2,8 @@
 import { LimitError } from "../errors.js";
 import type { ExactNumber } from "../exact/number.js";
 import { floorDiv, gcdBig, type Rational } from "../exact/rational.js";
-import type { ResidueTable, WindowTable } from "../kernel/trajectory.js";
+import type { ResidueTable } from "../kernel/residue.js";
+import type { WindowTable } from "../kernel/trajectory.js";
 import type { Walk } from "../walk/walk.js";
 
 function absolute(x: bigint): bigint {
