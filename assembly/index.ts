@@ -26,24 +26,21 @@ export { drawMoves, drawStart } from "./random/choices";
 export { philoxBlock } from "./random/philox";
 export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
 export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";
-// Trajectories
-export { residueWalk, residueWalk2 } from "./trajectory/residue";
-export { scatterStart } from "./trajectory/start";
-export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
 export {
-  windowAdvance,
   windowBatches,
   windowBytes,
-  windowCarry,
   windowConsumes,
-  windowEmit,
   windowLimbs,
   windowLongest,
   windowOpen,
   windowPlan,
-  windowProduct,
   windowRecordBytes,
   windowReplay,
-  windowStart,
   windowWorkBytes,
-} from "./trajectory/window";
+} from "./trajectory/batches";
+// Trajectories
+export { residueWalk, residueWalk2 } from "./trajectory/residue";
+export { windowProduct } from "./trajectory/rough";
+export { scatterStart } from "./trajectory/start";
+export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
+export { windowAdvance, windowCarry, windowEmit, windowStart } from "./trajectory/window";

@@ -3,12 +3,11 @@
  * the same way, and the residue kernel against plain numbers.
  */
 import type { ExactNumber } from "../src/exact/number.js";
-import { exactRational } from "../src/exact/number.js";
-import { Rational } from "../src/exact/rational.js";
 import { loadKernel } from "../src/kernel/kernel.js";
 import { ResidueRun } from "../src/kernel/residue.js";
 import { rationalWalk, residueTable } from "../src/trajectory/table.js";
 import { prepareWalker } from "../src/trajectory/walker.js";
+import { parseWalk } from "../src/walk/parse.js";
 import type { Walk } from "../src/walk/walk.js";
 import { type Comparison, compare } from "./compare.js";
 
@@ -17,29 +16,14 @@ const matrices = [
   [3, 1, 2, 1],
 ] as const;
 
-/** The fraction part of the square root of a small integer that is not a square. */
-function root(n: bigint): ExactNumber {
-  const toFixed = (bits: number) => {
-    const target = n << BigInt(2 * bits);
-    let x = 2n << BigInt(bits);
-    for (let y = x; ; x = y) if ((y = (x + target / x) >> 1n) >= x) return x - (1n << BigInt(bits));
-  };
-  return { text: `sqrt(${n})-1`, kind: "algebraic", toFixed, toNumber: () => Number(toFixed(60)) / 2 ** 60 };
-}
-
-function pair(point: readonly ExactNumber[]): Walk {
-  const half = Rational.of(1, 2);
-  const moves = matrices.map(([a, b, c, d], i) => ({
-    label: `stroke ${i}`,
-    weight: half,
-    probability: half,
+function pair(start: readonly string[]): Walk {
+  const moves = matrices.map(([a, b, c, d]) => ({
     matrix: [
-      [BigInt(a), BigInt(b)],
-      [BigInt(c), BigInt(d)],
+      [a, b],
+      [c, d],
     ],
-    determinant: 1 as const,
   }));
-  return { title: "tray", dimension: 2, moves, start: { type: "point", point }, observables: [], document: {} };
+  return parseWalk({ torwend: 1, title: "tray", dimension: 2, moves, start });
 }
 
 /**
@@ -82,10 +66,11 @@ function bigintWalk(choices: Uint16Array, x0: bigint, y0: bigint, held: number, 
 }
 
 async function windowAgainstBigInt(steps: number): Promise<Comparison> {
-  const point = [root(2n), root(3n)];
-  const walker = await prepareWalker(pair(point), { seed: 1n, steps });
+  const walk = pair(["sqrt(2)-1", "sqrt(3)-1"]);
+  const walker = await prepareWalker(walk, { seed: 1n, steps });
   const choices = walker.run(0).choices.slice();
   const bits = Math.ceil(1.75 * steps) + 256;
+  const { point } = walk.start as { point: readonly ExactNumber[] };
   const [x, y] = point.map((p) => p.toFixed(bits)) as [bigint, bigint];
   const out = new BigUint64Array(2 * steps + 2);
   return compare(
@@ -112,7 +97,7 @@ function plainResidues(choices: Uint16Array, out: Float64Array): Float64Array {
 }
 
 async function residuesAgainstNumbers(steps: number): Promise<Comparison> {
-  const walk = pair([5, 7].map((a) => exactRational(Rational.of(a, q))));
+  const walk = pair([`5/${q}`, `7/${q}`]);
   const table = residueTable(walk, rationalWalk(walk)!)!;
   const run = new ResidueRun(await loadKernel(), table, steps);
   const choices = new Uint16Array(steps).map((_, i) => ((i * 40_503) >> 7) & 1);

@@ -1,4 +1,4 @@
-/** Walks from fixed-point starts: the border of assembly/trajectory/window. */
+/** Walks from fixed-point starts: the border of assembly/trajectory/batches and window. */
 import type { Kernel } from "./kernel.js";
 
 /** Moves as the window kernel takes them: see src/trajectory/table.ts. */
@@ -21,7 +21,7 @@ export interface StartDigits {
 /**
  * One window run after another in one arena: `choices`, `plan`, `start…`, then `advance`
  * until the moves are made. Every 64-bit word of a position is floor(x 2^64...) up to one
- * unit of the last: see assembly/trajectory/window.ts for the proof.
+ * unit of the last: see assembly/trajectory/batches.ts for the proof.
  */
 export class WindowRun {
   private readonly window: number;

@@ -442,7 +442,7 @@ function rowNorm(entries: Float64Array, inputs: number): number {
   return norm;
 }
 
-/** right left in doubles; the radius as in windowProduct (assembly/trajectory/window.ts). */
+/** right left in doubles; the radius as in windowProduct (assembly/trajectory/rough.ts). */
 function multiplyRough(right: Rough, left: Rough, d: number, inputs: number): Rough {
   const unit = (d + 4) * 2 ** -53;
   const shrink = 2 ** -left.exponent; // what right's constants' columns are scaled by

@@ -1,7 +1,7 @@
 /** Where exactly is the walk? Positions of one walk, every digit proved. */
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
-import type { Walk } from "../walk/walk.js";
+import { asWalk, type WalkInput } from "../walk/parse.js";
 import { consumedBits } from "./consumed.js";
 import { type PositionSink, readOptions, type TrajectoryOptions } from "./options.js";
 import { openPath, type Path } from "./paths.js";
@@ -59,14 +59,15 @@ async function collect(
  * Moves are the draws of (seed, replicate 0), or `choices`. Time grows with the square of
  * the number of moves (some seconds for a million small moves); a rational walk's with the number.
  *
- * @throws OptionsError for wrong options and for a density start
+ * @throws WalkError for a faulty walk, OptionsError for wrong options and for a density start
  * @throws LimitError where the memory would not suffice (before anything is run), or a row of a matrix passes 2^62
  */
 export async function trajectory(
-  walk: Walk,
+  input: WalkInput,
   options: TrajectoryOptions & SharedSession = {},
 ): Promise<TrajectoryResult> {
   return withSession(options, async (session) => {
+    const walk = asWalk(input);
     refuseDensity(walk);
     const request = readOptions(walk, options);
     const { steps, at, digits } = request;

@@ -51,7 +51,7 @@ describe("trajectories against decimal.js", () => {
         matrix: rows.map((row) => row.map(BigInt)),
         ...(i === 1 ? { translation: translation.map((n) => (n === 0 ? fraction(0) : squareRoot(BigInt(n)))) } : {}),
       })),
-      { type: "point", point: radicands.map((n) => squareRoot(BigInt(n))) },
+      radicands.map((n) => squareRoot(BigInt(n))),
     );
     for (const digits of [15, 60]) {
       const { positions, bitsConsumed } = await trajectory(walk, {
@@ -86,11 +86,11 @@ const integral = (rows: readonly (readonly number[])[]) => rows.map((row) => row
 describe("rational starts", () => {
   it("0 stays; (1/2, 0) runs through the three points of order 2 under one move", async () => {
     const both = pair.map((rows) => ({ matrix: integral(rows) }));
-    const zero = makeWalk(both, { type: "point", point: [fraction(0), fraction(0)] });
+    const zero = makeWalk(both, [fraction(0), fraction(0)]);
     for (const { fractions } of (await trajectory(zero, { steps: 50 })).positions)
       expect(fractions).toEqual(["0", "0"]);
     // (2 x + y, x + y) of (1/2, 0) is (1, 1/2), of (0, 1/2) is (1/2, 1/2), of that (3/2, 1).
-    const half = makeWalk([{ matrix: integral(pair[0]!) }], { type: "point", point: [fraction(1, 2), fraction(0)] });
+    const half = makeWalk([{ matrix: integral(pair[0]!) }], [fraction(1, 2), fraction(0)]);
     expect((await trajectory(half, { steps: 3 })).positions.map((p) => p.fractions)).toEqual([
       ["1/2", "0"],
       ["0", "1/2"],
@@ -98,10 +98,10 @@ describe("rational starts", () => {
       ["1/2", "0"],
     ]);
     // A fixed point of [[2,1],[1,1]] with the translation (1/3, 1/3): (I - A) x = b has x = (-1/3, 0).
-    const fixed = makeWalk([{ matrix: integral(pair[0]!), translation: [fraction(1, 3), fraction(1, 3)] }], {
-      type: "point",
-      point: [fraction(2, 3), fraction(0)],
-    });
+    const fixed = makeWalk(
+      [{ matrix: integral(pair[0]!), translation: [fraction(1, 3), fraction(1, 3)] }],
+      [fraction(2, 3), fraction(0)],
+    );
     const { positions } = await trajectory(fixed, { steps: 9 });
     for (const { fractions } of positions) expect(fractions).toEqual(["2/3", "0"]);
   });
@@ -116,7 +116,7 @@ describe("rational starts", () => {
       ] as const) {
         const walk = makeWalk(
           [{ matrix: integral(pair[0]!) }, { matrix: integral(pair[1]!), translation: [fraction(1, q), fraction(0)] }],
-          { type: "point", point: [fraction(a, q), fraction(b, q)] },
+          [fraction(a, q), fraction(b, q)],
         );
         const { positions, choices } = (await prepareWalker(walk, { seed: BigInt(q), steps })).run(0);
         let [x, y] = [a % q, b % q];

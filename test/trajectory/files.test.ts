@@ -15,7 +15,7 @@ const matrix = [
   [0n, 1n, 1n],
 ];
 const point = [2n, 3n, 5n].map(squareRoot);
-const walk = makeWalk([{ matrix }, { matrix, translation: point }], { type: "point", point });
+const walk = makeWalk([{ matrix }, { matrix, translation: point }], point);
 
 let folder = "";
 beforeAll(async () => {
@@ -58,7 +58,7 @@ describe("files of positions", () => {
   });
 
   it("csv and npy of a rational walk", async () => {
-    const rational = makeWalk([{ matrix }], { type: "point", point: [fraction(1, 2), fraction(0), fraction(1, 3)] });
+    const rational = makeWalk([{ matrix }], [fraction(1, 2), fraction(0), fraction(1, 3)]);
     const file = join(folder, "rational.npy");
     await trajectory(rational, { steps: 1, out: positionFile(file) });
     const third = Math.floor(2 ** 53 / 3) / 2 ** 53;

@@ -32,7 +32,7 @@ for (const target of ["simd", "plain"] as const) {
               ...randomUnimodular(dice, d, size, d),
               ...(i === 1 ? {} : { translation: Array.from({ length: d }, numerator) }),
             }));
-            const walk = makeWalk(moves, { type: "point", point });
+            const walk = makeWalk(moves, point);
             if (residueTable(walk, rationalWalk(walk)!) !== undefined) await agrees(walk, 40, target);
             else expect(q).toBeGreaterThan(1n << 31n);
           }
@@ -51,7 +51,7 @@ for (const target of ["simd", "plain"] as const) {
         [q - 1n, q - 1n],
         [q / 2n, 1n],
       ] as const) {
-        const walk = makeWalk([{ matrix: swap }], { type: "point", point: [fraction(a, q), fraction(b, q)] });
+        const walk = makeWalk([{ matrix: swap }], [fraction(a, q), fraction(b, q)]);
         await agrees(walk, 9, target);
       }
     });
@@ -67,13 +67,11 @@ describe("which kernel", () => {
     const rational = [fraction(1, 2), fraction(0)];
     const huge = [fraction(1n, (1n << 70n) + 1n), fraction(0)];
     const method = async (walk: Walk) => (await prepareWalker(walk, { seed: 1n, steps: 3 })).method;
-    expect(await method(makeWalk([{ matrix }], { type: "point", point: rational }))).toBe("residue");
-    expect(await method(makeWalk([{ matrix }], { type: "point", point: huge }))).toBe("window");
-    expect(await method(makeWalk([{ matrix }], { type: "point", point: [squareRoot(2n), fraction(0)] }))).toBe(
-      "window",
-    );
+    expect(await method(makeWalk([{ matrix }], rational))).toBe("residue");
+    expect(await method(makeWalk([{ matrix }], huge))).toBe("window");
+    expect(await method(makeWalk([{ matrix }], [squareRoot(2n), fraction(0)]))).toBe("window");
     const translation = [squareRoot(2n), fraction(0)];
-    expect(await method(makeWalk([{ matrix, translation }], { type: "point", point: rational }))).toBe("window");
-    expect(await method(makeWalk([{ matrix }], { type: "uniform" }))).toBe("window");
+    expect(await method(makeWalk([{ matrix, translation }], rational))).toBe("window");
+    expect(await method(makeWalk([{ matrix }], "uniform"))).toBe("window");
   });
 });

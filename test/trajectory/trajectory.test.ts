@@ -16,7 +16,7 @@ const short = [
   [2n, 1n],
 ];
 const point = [squareRoot(2n), squareRoot(3n)];
-const tray = makeWalk([{ matrix: long }, { matrix: short }], { type: "point", point });
+const tray = makeWalk([{ matrix: long }, { matrix: short }], point);
 
 /** |a - b| on the circle, of decimals as integers over 10^places. */
 function apart(a: string, value: bigint, bits: number, digits: number): bigint {
@@ -51,10 +51,10 @@ describe("trajectory", () => {
 
   it("gives fractions from a rational start, small and large denominators alike", async () => {
     for (const q of [60n, 10n ** 9n + 7n, 10n ** 40n + 1n]) {
-      const walk = makeWalk([{ matrix: long, translation: [fraction(1, 3), fraction(0)] }, { matrix: short }], {
-        type: "point",
-        point: [fraction(5n, q), fraction(q - 1n, q)],
-      });
+      const walk = makeWalk(
+        [{ matrix: long, translation: [fraction(1, 3), fraction(0)] }, { matrix: short }],
+        [fraction(5n, q), fraction(q - 1n, q)],
+      );
       const choices = Array.from({ length: 3000 }, (_, i) => (i % 3 === 0 ? 1 : 0));
       const result = await trajectory(walk, { choices, at: [0, 1, 1024, 2999, 3000] });
       expect(result.standing).toBe("exact");
@@ -92,7 +92,7 @@ describe("trajectory", () => {
     ]);
     const walk = makeWalk(
       moves.map((matrix) => ({ matrix })),
-      { type: "point", point },
+      point,
     );
     const { bitsConsumed, bitsHeld } = await trajectory(walk, { steps: 8000, at: [8000] });
     const sumOfNorms = 8000 * Math.log2(3);
@@ -117,7 +117,7 @@ describe("trajectory", () => {
     );
     await expect(trajectory(tray, { steps: 3, choices: [0] })).rejects.toThrow("found 1 moves; accepted: at least 3");
     await expect(trajectory(tray, {})).rejects.toThrow("--steps: found nothing");
-    const density = makeWalk([{ matrix: long }], { type: "density", terms: [] });
+    const density = makeWalk([{ matrix: long }], "density");
     await expect(trajectory(density, { steps: 1 })).rejects.toThrow("/start: found a density");
   });
 

@@ -2,7 +2,8 @@
 import type { ExactNumber } from "../../src/exact/number.js";
 import { exactRational } from "../../src/exact/number.js";
 import { floorDiv, Rational } from "../../src/exact/rational.js";
-import type { Move, Start, Walk } from "../../src/walk/walk.js";
+import { parseWalk } from "../../src/walk/parse.js";
+import type { Walk } from "../../src/walk/walk.js";
 
 export type Matrix = readonly (readonly bigint[])[];
 
@@ -44,36 +45,34 @@ export function fraction(num: number | bigint, den: number | bigint = 1): ExactN
   return exactRational(Rational.of(num, den));
 }
 
+type Point = readonly ExactNumber[];
+
+/** A walk with equal weights, through its document. */
 export function makeWalk(
-  moves: readonly { matrix: Matrix; determinant?: 1 | -1; translation?: readonly ExactNumber[] }[],
-  start: Start,
+  moves: readonly { readonly matrix: Matrix; readonly translation?: Point }[],
+  start: Point | "uniform" | "density",
 ): Walk {
-  const weight = Rational.ONE;
-  return {
-    title: "made for a test",
-    dimension: moves[0]!.matrix.length,
-    moves: moves.map(
-      (m, i): Move => ({
-        label: `m${i}`,
-        weight,
-        probability: Rational.of(1, moves.length),
-        determinant: 1,
-        ...m,
-      }),
-    ),
-    start,
-    observables: [],
-    document: {},
+  const dimension = moves[0]!.matrix.length;
+  const named = {
+    uniform: { uniform: true },
+    density: { density: [{ frequency: new Array(dimension).fill(0), cos: "1" }] },
   };
+  const texts = (point: Point) => point.map((x) => x.text);
+  return parseWalk({
+    torwend: 1,
+    title: "made for a test",
+    dimension,
+    moves: moves.map(({ matrix, translation }, i) => ({
+      label: `m${i}`,
+      matrix,
+      ...(translation === undefined ? {} : { translation: texts(translation) }),
+    })),
+    start: typeof start === "string" ? named[start] : texts(start),
+  });
 }
 
 /** A product of elementary matrices with factors up to `size`, determinant 1 or -1. */
-export function randomUnimodular(
-  dice: Dice,
-  d: number,
-  size: bigint,
-  factors: number,
-): { matrix: Matrix; determinant: 1 | -1 } {
+export function randomUnimodular(dice: Dice, d: number, size: bigint, factors: number): { matrix: Matrix } {
   const m = Array.from({ length: d }, (_, i) => Array.from({ length: d }, (_, j): bigint => (i === j ? 1n : 0n)));
   for (let f = 0; f < factors; f++) {
     const i = dice.below(d);
@@ -81,9 +80,8 @@ export function randomUnimodular(
     const c = (dice.word() % (2n * size + 1n)) - size;
     for (let k = 0; k < d; k++) m[i]![k]! += c * m[j]![k]!;
   }
-  const flip = dice.below(2) === 1;
-  if (flip) m[0] = m[0]!.map((x) => -x);
-  return { matrix: m, determinant: flip ? -1 : 1 };
+  if (dice.below(2) === 1) m[0] = m[0]!.map((x) => -x);
+  return { matrix: m };
 }
 
 /** Positions 0, ..., n as integers over 2^bits, within a whole walk's error of about |product| n 2^-bits. */

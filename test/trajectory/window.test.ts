@@ -62,7 +62,7 @@ const pair = [
 for (const target of targets) {
   describe(`window kernel, ${target}`, () => {
     it("agrees with BigInt on the positive pair, 2000 moves", async () => {
-      await agrees(makeWalk(pair, { type: "point", point: roots.slice(0, 2) }), 2000, target);
+      await agrees(makeWalk(pair, roots.slice(0, 2)), 2000, target);
     });
 
     it("agrees on a group walk whose products cancel, in exact bits", async () => {
@@ -85,7 +85,7 @@ for (const target of targets) {
             [-2n, 1n],
           ],
         ].map((matrix) => ({ matrix })),
-        { type: "point", point: roots.slice(0, 2) },
+        roots.slice(0, 2),
       );
       await agrees(walk, 1500, target);
     });
@@ -96,11 +96,11 @@ for (const target of targets) {
         for (const size of [1n, 3n, 1000n]) {
           const moves = Array.from({ length: 3 }, () => randomUnimodular(dice, d, size, d));
           const point = roots.slice(0, d);
-          await agrees(makeWalk(moves, { type: "point", point }), 120, target);
+          await agrees(makeWalk(moves, point), 120, target);
           const translated = moves.map((m, i) =>
             i === 1 ? m : { ...m, translation: point.map((_, j) => (j === i ? fraction(0) : roots[(i + j) % 8]!)) },
           );
-          await agrees(makeWalk(translated, { type: "uniform" }), 120, target, 5n);
+          await agrees(makeWalk(translated, "uniform"), 120, target, 5n);
         }
       });
     }
@@ -111,10 +111,7 @@ for (const target of targets) {
         for (const d of [2, 3, 8]) {
           const moves = Array.from({ length: 2 }, () => randomUnimodular(dice, d, size, 1));
           const small = randomUnimodular(dice, d, 1n, 3);
-          const walk = makeWalk([...moves, { ...small, translation: roots.slice(0, d) }], {
-            type: "point",
-            point: roots.slice(8 - d),
-          });
+          const walk = makeWalk([...moves, { ...small, translation: roots.slice(0, d) }], roots.slice(8 - d));
           await agrees(walk, 60, target);
         }
       }
@@ -127,10 +124,7 @@ for (const target of targets) {
         [zero, zero],
         [nearOne, nearOne],
       ]) {
-        const walk = makeWalk([{ ...pair[0]!, translation: [squareRoot(2n), zero] }, pair[1]!], {
-          type: "point",
-          point,
-        });
+        const walk = makeWalk([{ ...pair[0]!, translation: [squareRoot(2n), zero] }, pair[1]!], point);
         await agrees(walk, 300, target);
       }
     });
@@ -147,19 +141,18 @@ for (const target of targets) {
           [0n, 1n],
           [1n, 0n],
         ],
-        determinant: -1 as const,
       };
       const point = roots.slice(0, 2);
-      await agrees(makeWalk([pair[0]!], { type: "point", point }), 400, target);
-      await agrees(makeWalk(pair, { type: "uniform" }), 0, target);
-      await agrees(makeWalk([turn, mirror], { type: "point", point }), 1000, target);
+      await agrees(makeWalk([pair[0]!], point), 400, target);
+      await agrees(makeWalk(pair, "uniform"), 0, target);
+      await agrees(makeWalk([turn, mirror], point), 1000, target);
     });
   });
 }
 
 describe("exact walkers", () => {
   it("give both targets the same bits, and more words that extend them", async () => {
-    const walk = makeWalk(pair, { type: "uniform" });
+    const walk = makeWalk(pair, "uniform");
     const [a, b, wide] = await Promise.all([
       prepareWalker(walk, { seed: 4n, steps: 500, target: "simd" }),
       prepareWalker(walk, { seed: 4n, steps: 500, target: "plain" }),
@@ -175,7 +168,7 @@ describe("exact walkers", () => {
   });
 
   it("do not depend on which replicates ran before", async () => {
-    const walk = makeWalk(pair, { type: "point", point: roots.slice(0, 2) });
+    const walk = makeWalk(pair, roots.slice(0, 2));
     const one = await prepareWalker(walk, { seed: 4n, steps: 300 });
     const other = await prepareWalker(walk, { seed: 4n, steps: 300 });
     for (const r of [5, 3, 9]) one.run(r);
@@ -183,7 +176,7 @@ describe("exact walkers", () => {
   });
 
   it("take given choices in place of draws", async () => {
-    const walk = makeWalk(pair, { type: "point", point: roots.slice(0, 2) });
+    const walk = makeWalk(pair, roots.slice(0, 2));
     const walker = await prepareWalker(walk, { seed: 4n, steps: 50 });
     const drawn = walker.run(1);
     const choices = drawn.choices.slice();
@@ -193,7 +186,7 @@ describe("exact walkers", () => {
   });
 
   it("refuse a density, rows beyond 2^62, and memory beyond the limit", async () => {
-    const density = makeWalk(pair, { type: "density", terms: [] });
+    const density = makeWalk(pair, "density");
     await expect(prepareWalker(density, { seed: 1n, steps: 5 })).rejects.toThrow(OptionsError);
     const huge = makeWalk(
       [
@@ -204,10 +197,10 @@ describe("exact walkers", () => {
           ],
         },
       ],
-      { type: "uniform" },
+      "uniform",
     );
     await expect(prepareWalker(huge, { seed: 1n, steps: 5 })).rejects.toThrow(/move 0 .*at most 2\^62/);
-    const walk = makeWalk(pair, { type: "uniform" });
+    const walk = makeWalk(pair, "uniform");
     await expect(prepareWalker(walk, { seed: 1n, steps: 1e6, memoryLimit: 2 ** 22 })).rejects.toThrow(LimitError);
   });
 });
