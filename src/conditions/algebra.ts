@@ -105,3 +105,13 @@ export function isDefinite(s: IntegerMatrix): boolean {
   }
   return true;
 }
+
+/** A positive definite form that every move keeps, looked for among small combinations of a basis of the forms. */
+export function definiteForm(moves: readonly Move[]): bigint[][] | undefined {
+  const forms = invariantForms(moves, 1n);
+  const candidates = forms.flatMap((f, i) =>
+    forms.slice(i).flatMap((g, j) => (j === 0 ? [f] : [combine(1n, f, 1n, g), combine(1n, f, -1n, g)])),
+  );
+  const sum = forms.slice(1).reduce((total, f) => combine(1n, total, 1n, f), forms[0] ?? []);
+  return [...candidates, ...(forms.length > 0 ? [sum] : [])].find(isDefinite);
+}

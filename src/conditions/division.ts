@@ -10,8 +10,8 @@ const abs = (a: bigint) => (a < 0n ? -a : a);
 
 /** Distinct real roots of a monic integer polynomial, counted by Sturm's theorem, and a whole one where there is one. */
 export function realRoots(f: readonly bigint[]): { count: number; integer?: bigint } {
-  // Cauchy: every root has modulus at most 1 + max |c_j|.
-  const bound = 1n + f.slice(0, -1).reduce((most, c) => (abs(c) > most ? abs(c) : most), 0n);
+  // Every root has modulus at most 1 + the sum of the |c_j|.
+  const bound = f.slice(0, -1).reduce((sum, c) => sum + abs(c), 1n);
   const count = (low: bigint, high: bigint) => countRealRoots(f, Rational.of(low), Rational.of(high));
   const total = count(-bound, bound);
   if (total === 0) return { count: 0 };

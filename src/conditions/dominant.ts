@@ -58,7 +58,7 @@ export function dominance(matrix: IntegerMatrix, rounds: number): Dominance | un
 /** The first word that is proved proximal: a quick look at all, then a close one at the shortest. */
 export function proximalWord(words: readonly Word[]): { word: Word; proof: Dominance } | undefined {
   for (const [most, rounds] of [
-    [400, 3],
+    [words.length, 3],
     [80, 8],
   ]) {
     for (const word of words.slice(0, most)) {

@@ -12,7 +12,7 @@ function formEvidence([a, b, c]: Form): Record<string, unknown> {
 
 /** The slopes y / x of the two zeros of a x^2 + b x y + c y^2, as text; c is not 0 where they are irrational. */
 function slopes([a, b, c]: Form): string[] {
-  const g = gcdBig(gcdBig(a, b), c);
+  const g = gcdBig(gcdBig(a, b), c) * (c < 0n ? -1n : 1n);
   const [p, q, r] = [a / g, b / g, c / g];
   const root = `sqrt(${q * q - 4n * p * r})`;
   return [`(${-q} + ${root}) / ${2n * r}`, `(${-q} - ${root}) / ${2n * r}`];
@@ -27,10 +27,12 @@ function wordText(word: Word, moves: readonly Move[]): string {
   return `${several ? "the product of the moves" : "the move"} ${names(word.indices, moves)}`;
 }
 
+const capital = (text: string) => text.charAt(0).toUpperCase() + text.slice(1);
+
 function dominantRoot(word: Word, moves: readonly Move[]) {
   const t = plain(trace(word.matrix));
   return holds(
-    `${wordText(word, moves)} has determinant ${word.determinant} and trace ${t}, hence two real eigenvalues of different modulus.`,
+    `${capital(wordText(word, moves))} has determinant ${word.determinant} and trace ${t}, hence two real eigenvalues of different modulus.`,
     {
       word: wordEvidence(word, moves),
       rule: word.determinant === 1 ? "determinant 1 and |trace| > 2" : "determinant -1 and trace not 0",

@@ -6,6 +6,8 @@
  * 2. A is semisimple, its commutant C over Q. V is irreducible exactly if C (over R) is a
  *    division algebra: R, the complex numbers or the quaternions (Frobenius). A matrix of C
  *    that is not scalar and has a real eigenvalue has an invariant eigenspace.
+ *    (Before: a group that keeps a definite form is finite; looked for where no product has
+ *    |trace| > d, which a finite group has not.)
  * 3. C = Q. The group is finite exactly if it keeps a definite form (an average of one is
  *    kept, and the form is unique up to a factor). If infinite, the Lie algebra of its
  *    Zariski closure is not 0 and invariant under the adjoint action: where that is
@@ -16,7 +18,7 @@
  */
 import { transpose } from "../dual/matrix.js";
 import type { Move } from "../walk/walk.js";
-import { algebraBasis, commutant, imageOf, invariantForms, isDefinite, radical } from "./algebra.js";
+import { algebraBasis, commutant, definiteForm, imageOf, invariantForms, radical } from "./algebra.js";
 import { isDivisionAlgebra, realRoots } from "./division.js";
 import { dominanceEvidence, proximalWord } from "./dominant.js";
 import { nullSpace } from "./elimination.js";
@@ -25,7 +27,7 @@ import { characteristicPolynomial, combine, identity, plain, plainMatrix, plainV
 import { fullAlgebraPrime } from "./norton.js";
 import { adjoint, square } from "./representations.js";
 import { permutedSubspaces, signedFlag } from "./subspaces.js";
-import { type Products, productsOf, type Word, wordEvidence } from "./words.js";
+import { longProducts, type Products, productsOf, type Word, wordEvidence } from "./words.js";
 
 type Irreducibility = Pick<GroupFinding, "stronglyIrreducible" | "obstruction"> & {
   /** A proof that every real eigenspace of every product has dimension 2 or more. */
@@ -113,17 +115,8 @@ function permuted(union: bigint[][][]): Irreducibility {
 function absolutely(moves: readonly Move[], products: Products, algebra: Record<string, unknown>): Irreducibility {
   const d = moves[0].matrix.length;
   const matrices = moves.map((move) => move.matrix);
+  // Not definite: that was tried before.
   const [symmetric] = invariantForms(moves, 1n);
-  if (symmetric !== undefined && isDefinite(symmetric)) {
-    return {
-      stronglyIrreducible: fails("Every move keeps a definite quadratic form, so the group is finite.", {
-        form: plainMatrix(symmetric),
-        algebra,
-        ...(products.closed ? { order: products.words.length } : {}),
-      }),
-      obstruction: { type: "finite group" },
-    };
-  }
   const irreducibleBy = "irreducible: products of moves span all matrices";
   const infinite = infiniteEvidence(products, moves);
   const alternating = symmetric === undefined ? invariantForms(moves, -1n)[0] : undefined;
@@ -160,10 +153,15 @@ function absolutely(moves: readonly Move[], products: Products, algebra: Record<
   };
 }
 
+/** A product with |trace| > d, which no finite group has. */
+function largeTrace({ words }: Products): Word | undefined {
+  const d = BigInt(words[0].matrix.length);
+  return words.find(({ matrix }) => trace(matrix) > d || trace(matrix) < -d);
+}
+
 /** A product that no finite group has, or the reason why the group is infinite. */
 function infiniteEvidence(products: Products, moves: readonly Move[]): Record<string, unknown> {
-  const d = BigInt(moves[0].matrix.length);
-  const word = products.words.find(({ matrix }) => trace(matrix) > d || trace(matrix) < -d);
+  const word = largeTrace(products);
   if (word === undefined)
     return { reason: "an irreducible finite group keeps a definite form, and this one keeps none" };
   return { word: wordEvidence(word, moves), reason: "|trace| > d: some eigenvalue is not of modulus 1" };
@@ -178,7 +176,7 @@ function proximality(
   products: Products,
   found: Irreducibility,
 ): Pick<GroupFinding, "proximal" | "slow"> {
-  const proximal = proximalWord(products.words);
+  const proximal = proximalWord([...products.words, ...longProducts(moves, 60)]);
   if (proximal !== undefined) {
     const { word, proof } = proximal;
     return {
@@ -188,9 +186,6 @@ function proximality(
       ),
       slow: false,
     };
-  }
-  if (found.obstruction?.type === "finite group") {
-    return { proximal: fails("The group is finite.", found.stronglyIrreducible.evidence), slow: true };
   }
   const flag = signedFlag(moves) ?? signedFlag(transposedMoves(moves));
   if (flag !== undefined) {
@@ -226,8 +221,21 @@ function longest(words: readonly Word[]): number {
 export function spaceVerdicts(moves: readonly Move[]): GroupFinding {
   const products = productsOf(moves, MOST_PRODUCTS);
   if (products.closed) return finiteGroup(products, moves);
+  const form = largeTrace(products) === undefined ? definiteForm(moves) : undefined;
+  if (form !== undefined) return orthogonalGroup(form);
   const found = irreducibility(moves, products);
   return { ...found, ...proximality(moves, products, found) };
+}
+
+function orthogonalGroup(form: bigint[][]): GroupFinding {
+  const reason = "Every move keeps a definite quadratic form with whole coefficients, so the group is finite";
+  const evidence = { form: plainMatrix(form), check: "A^T S A = S for every move A" };
+  return {
+    stronglyIrreducible: fails(`${reason}, and the images of any subspace are finitely many.`, evidence),
+    proximal: fails(`${reason}, and every eigenvalue of every product has modulus 1.`, evidence),
+    obstruction: { type: "finite group" },
+    slow: true,
+  };
 }
 
 function finiteGroup({ words }: Products, moves: readonly Move[]): GroupFinding {

@@ -54,6 +54,21 @@ export function productsOf(moves: readonly Move[], most: number): Products {
   return { words, closed: true };
 }
 
+/** `count` longer products, of up to 40 moves in a fixed irregular order, the same in every run. */
+export function longProducts(moves: readonly Move[], count: number): Word[] {
+  const alphabet = letters(moves);
+  let state = 1;
+  const next = () => {
+    state = (Math.imul(state, 1664525) + 1013904223) >>> 0;
+    return alphabet[(state >>> 12) % alphabet.length];
+  };
+  return Array.from({ length: count }, (_, i) => {
+    let word = next();
+    for (let n = 8 + (i % 33); n > 1; n--) word = followed(word, next());
+    return word;
+  });
+}
+
 /** A word as evidence: moves in the order in which they act, and their product. */
 export function wordEvidence(word: Word, moves: readonly Move[]): Record<string, unknown> {
   return {
