@@ -1,0 +1,104 @@
+/** Time averages: limit, variance, error bars and how many moves they take, one block an observable. */
+import type { ObservableResult } from "../../averages/result.js";
+import { quantityNumber } from "../../quantity/quantity.js";
+import { type Html, html, type Piece } from "../html.js";
+import { brief, percent, shown } from "../numbers.js";
+import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.js";
+import { pair } from "../plots/figure.js";
+import { type Dossier, isAnswered } from "../result.js";
+import { evidence } from "./evidence.js";
+import { missing, plural, quantity, quantityColumn, table, verdict, warning } from "./parts.js";
+
+/** Observables that get plots of their own; the table has them all. */
+const PLOTTED = 4;
+
+/** The stated half-width nearest to a hundredth, for the summary. */
+function needed(o: ObservableResult): Piece {
+  const options = o.stepsFor.filter((s) => Number.isFinite(quantityNumber(s.steps)));
+  if (options.length === 0) return "–";
+  const distance = (h: number) => Math.abs(Math.log(h / 0.01));
+  const s = options.reduce((a, b) => (distance(b.halfWidth) < distance(a.halfWidth) ? b : a));
+  return html`<span class="value">${shown(s.steps, true).value}</span> <span class="standing">for ±${brief(s.halfWidth)}, ${shown(s.steps, true).standing}</span>`;
+}
+
+export function averagesSummary(dossier: Dossier): Html {
+  const averages = dossier.averages;
+  if (!isAnswered(averages)) return missing(averages) as Html;
+  const limit = quantityColumn(
+    "limit",
+    averages.observables.map((o) => o.mean),
+  );
+  const variance = quantityColumn(
+    html`variance <i>v</i>`,
+    averages.observables.map((o) => o.variance),
+  );
+  return table(
+    html`Limit of each time average; <i>v</i> = lim <i>n</i> Var(average over <i>n</i> moves), so that its error after <i>n</i> moves is about √(<i>v</i>/<i>n</i>); moves until the ${percent(dossier.level)} interval has the half-width named.`,
+    [{ name: "observable" }, limit.column, variance.column, { name: "moves" }],
+    averages.observables.map(
+      (o) =>
+        html`<th scope="row">${o.label}</th>${limit.show(o.mean)}${variance.show(o.variance)}<td>${needed(o)}</td>`,
+    ),
+  );
+}
+
+function sampledTable(o: ObservableResult): Html {
+  const s = o.sampled;
+  const sampled = quantityColumn("sampled", [s.mean, s.variance, s.batchMeansVariance, s.coverage]);
+  const row = (name: Piece, found: Piece) => html`<th scope="row">${name}</th>${found}`;
+  return table(
+    html`What ${plural(s.replicates, "exact walk")} of ${plural(s.moves, "move")} showed.`,
+    [{ name: "" }, sampled.column],
+    [
+      row("mean of the time averages", sampled.show(s.mean)),
+      row(html`<i>n</i> × variance of the time average, over walks`, sampled.show(s.variance)),
+      row("the same by batch means", sampled.show(s.batchMeansVariance)),
+      row("share of walks whose interval covers the limit", sampled.show(s.coverage)),
+      row(
+        html`largest |<i>S<sub>n</sub></i> − <i>n m</i>| / √(2 <i>n v</i> log log <i>n</i>) in the second half: median walk; most extreme walk`,
+        html`<td class="n">${brief(s.iteratedLogarithm.median, 3)}; ${brief(s.iteratedLogarithm.largest, 3)}</td>`,
+      ),
+    ],
+  );
+}
+
+function block(o: ObservableResult, index: number, level: number): Html {
+  const last = o.correlations.slice(-3);
+  const steps = quantityColumn(
+    "moves",
+    o.stepsFor.map((s) => s.steps),
+    true,
+  );
+  return html`<h3>${o.label}</h3>
+<p>Limit ${quantity(o.mean)}; ${o.mean.method}.</p>
+<p>Variance ${quantity(o.variance)}; ${o.variance.method}.${last.length === 3 && o.variance.standing === "estimated" && html` The last correlations used, which show how much may be missing: ${last.map((q) => shown(q).value).join(", ")}.`}</p>
+<p>Is the variance zero? ${verdict(o.degenerate)}. ${o.degenerate.reason}</p>
+${o.degenerate.verdict === "holds" && evidence(o.degenerate.evidence)}
+${
+  o.stepsFor.length > 0 &&
+  table(
+    html`Moves after which the ${percent(level)} interval has this half-width.`,
+    [{ name: "half-width", n: true }, steps.column],
+    o.stepsFor.map((s) => html`<td class="n">±${brief(s.halfWidth)}</td>${steps.show(s.steps)}`),
+  )
+}
+${runningPlot(o, index, level)}
+${pair(correlationsPlot(o, index), histogramPlot(o, index))}
+${sampledTable(o)}
+`;
+}
+
+export function averagesSection(dossier: Dossier): Html {
+  const averages = dossier.averages;
+  if (!isAnswered(averages))
+    return html`<section id="averages"><h2>What do time averages converge to?</h2>
+${missing(averages)}</section>
+`;
+  const rest = averages.observables.length - PLOTTED;
+  return html`<section id="averages"><h2>What do time averages converge to?</h2>
+${averages.warnings.map((w) => warning(w))}
+${averages.observables.slice(0, PLOTTED).map((o, i) => block(o, i + 1, dossier.level))}
+${rest > 0 && html`<p>The other ${plural(rest, "observable")} are in the summary's table, and in full in dossier.json.</p>`}
+</section>
+`;
+}

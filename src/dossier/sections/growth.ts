@@ -1,0 +1,69 @@
+/** Growth: exponents, the variance of the log norm, pressure, large deviations. */
+
+import { quantityNumber } from "../../quantity/quantity.js";
+import { type Html, html } from "../html.js";
+import { brief, significant } from "../numbers.js";
+import { pair } from "../plots/figure.js";
+import { growthCurve, pressurePlot, ratePlot } from "../plots/growth.js";
+import { type Dossier, isAnswered } from "../result.js";
+import { missing, number, quantity, quantityColumn, table, warning } from "./parts.js";
+
+export function growthSummary(dossier: Dossier): Html {
+  const growth = dossier.growth;
+  if (!isAnswered(growth)) return missing(growth) as Html;
+  const first = growth.exponents[0];
+  if (first === undefined) return html`<p>No exponent was found.</p>`;
+  const lambda = quantityNumber(first);
+  const factor = Math.exp(lambda);
+  return html`<p>λ<sub>1</sub> = ${quantity(first, "natural logs per move")}: lengths grow by a factor of about ${significant(factor, 3)} a move.</p>
+<p>Around it log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>| spreads with variance ${quantity(growth.logNormVariance, "per move")}.</p>
+`;
+}
+
+export function growthSection(dossier: Dossier): Html {
+  const growth = dossier.growth;
+  if (!isAnswered(growth))
+    return html`<section id="growth"><h2>How fast do products grow?</h2>
+${missing(growth)}</section>
+`;
+  const exponents = quantityColumn("value", growth.exponents);
+  const pressure = quantityColumn(
+    html`Λ(<i>s</i>)`,
+    growth.pressure.map((p) => p.value),
+  );
+  const rate = quantityColumn(
+    "rate",
+    growth.rate.map((r) => r.rate),
+  );
+  return html`<section id="growth"><h2>How fast do products grow?</h2>
+${growth.warnings.map((w) => warning(w))}
+${table(
+  "Exponents, largest first, in natural logs per move.",
+  [{ name: "" }, exponents.column, { name: "method" }],
+  growth.exponents.map(
+    (q, i) => html`<th scope="row">λ<sub>${i + 1}</sub></th>${exponents.show(q)}<td>${q.method}</td>`,
+  ),
+)}
+<p>Limit of Var(log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|)/<i>n</i>: ${quantity(growth.logNormVariance, "squared logs per move")}; ${growth.logNormVariance.method}.</p>
+${growthCurve(growth, dossier.level)}
+${
+  growth.pressure.length > 0 &&
+  table(
+    html`Pressure Λ(<i>s</i>) = lim (1/<i>n</i>) log E |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|<sup><i>s</i></sup>, in natural logs per move.`,
+    [{ name: html`<i>s</i>`, n: true }, pressure.column, { name: "method" }],
+    growth.pressure.map((p) => html`${number(p.s)}${pressure.show(p.value)}<td>${p.value.method}</td>`),
+  )
+}
+${
+  growth.rate.length > 0 &&
+  table(
+    "Large deviations: the chance of a speed other than λ₁ over n moves falls like exp(−n × rate).",
+    [{ name: "speed", n: true }, rate.column, { name: "method" }],
+    growth.rate.map((r) => html`${number(r.speed)}${rate.show(r.rate)}<td>${r.rate.method}</td>`),
+  )
+}
+${pair(pressurePlot(growth), ratePlot(growth))}
+<p class="note">Sampled: ${brief(growth.replicates)} independent products of ${brief(growth.moves)} moves.</p>
+</section>
+`;
+}

@@ -1,0 +1,78 @@
+/** The start: its kind, its verdict, the rational traps beside it. */
+import { type Html, html } from "../html.js";
+import { brief, shown } from "../numbers.js";
+import { moves, trapsPlot } from "../plots/traps.js";
+import { type Dossier, isAnswered } from "../result.js";
+import { evidence } from "./evidence.js";
+import { missing, number, quantity, quantityColumn, standing, table, verdict } from "./parts.js";
+
+const KINDS = {
+  rational: "every coordinate is rational",
+  algebraic: "some coordinate is proved to be an irrational algebraic number, and every coordinate is algebraic",
+  unproved: "some coordinate could be proved neither rational nor algebraic",
+  uniform: "drawn from the uniform (Haar) measure",
+  density: "drawn from a given density",
+} as const;
+
+export function startSummary(dossier: Dossier): Html {
+  const start = dossier.start;
+  if (!isAnswered(start)) return missing(start) as Html;
+  const trap = start.traps[0];
+  return html`<p>Equidistribution from this start: ${verdict(start.verdict)}. ${start.verdict.reason}</p>
+${start.orbit !== undefined && html`<p>Its denominator is ${start.orbit.denominator}; it stays on a finite orbit of size ${quantity(start.orbit.size, "points")}.</p>\n`}
+${
+  trap !== undefined &&
+  html`<p>Strongest trap: a point with denominator ${brief(trap.denominator)} at distance ${shown(trap.distance).value}, predicted to hold the walk for about ${moves(trap.hold)} moves <span class="standing">(</span>${standing(trap.hold)}<span class="standing">)</span>.</p>\n`
+}`;
+}
+
+function trapsTable(dossier: Dossier): Html | undefined {
+  const start = dossier.start;
+  if (!isAnswered(start) || start.traps.length === 0) return undefined;
+  const sampled = start.traps.some((t) => t.sampledHold !== undefined);
+  const most = 12;
+  const distance = quantityColumn(
+    "distance",
+    start.traps.map((t) => t.distance),
+  );
+  const hold = quantityColumn(
+    "hold",
+    start.traps.map((t) => t.hold),
+  );
+  const rows = start.traps.slice(0, most).map((t) => {
+    const s = t.sampledHold;
+    return html`${number(t.denominator)}<td>(${t.numerators.map((n) => brief(n)).join(", ")})</td>${distance.show(t.distance)}${hold.show(t.hold)}${
+      sampled &&
+      html`<td class="n">${s === undefined ? "–" : `${brief(s.median)} (${brief(s.low)} to ${brief(s.high)})`}</td>`
+    }`;
+  });
+  const left = start.traps.length - rows.length;
+  return table(
+    html`Rational points near the start, by predicted hold${left > 0 ? `; the ${most} strongest of ${start.traps.length}` : ""}. Hold in moves${sampled ? "; sampled hold: median (quantiles) over exact walks" : ""}.`,
+    [
+      { name: "denominator", n: true },
+      { name: "numerators" },
+      distance.column,
+      hold.column,
+      ...(sampled ? [{ name: "sampled hold", n: true }] : []),
+    ],
+    rows,
+  );
+}
+
+export function startSection(dossier: Dossier, dimension: number): Html {
+  const start = dossier.start;
+  if (!isAnswered(start))
+    return html`<section id="start"><h2>Is the start safe?</h2>
+${missing(start)}</section>
+`;
+  const shownEvidence = evidence(start.verdict.evidence);
+  return html`<section id="start"><h2>Is the start safe?</h2>
+<p>Kind: <b>${start.kind}</b> (${KINDS[start.kind]}). Equidistribution: ${verdict(start.verdict)}. ${start.verdict.reason}</p>
+${shownEvidence !== undefined && html`<details open><summary>Evidence</summary>${shownEvidence}</details>\n`}
+${start.orbit !== undefined && html`<p>Denominator ${start.orbit.denominator}, orbit of size ${quantity(start.orbit.size, "points")}: time averages converge to the orbit's mean, not to the integral over the torus.</p>\n`}
+${trapsTable(dossier)}
+${trapsPlot(start, dimension)}
+</section>
+`;
+}
