@@ -76,6 +76,7 @@ sub, sup { font-size: .72em; line-height: 0; }
 .warning b { font-family: var(--sans); font-size: .88em; }
 .note { font-size: .9rem; color: var(--soft); line-height: 1.5; }
 .matrices { display: flex; flex-wrap: wrap; gap: 1.3rem 2.4rem; margin: 1rem 0; }
+.matrices.tight { gap: .6rem 1rem; margin: 0; }
 .move { break-inside: avoid; max-width: 100%; }
 .move .name { font: 600 .92rem/1.35 var(--sans); margin: 0; overflow-wrap: anywhere; max-width: 18rem; }
 .move .chance { font: .86rem/1.35 var(--sans); color: var(--soft); margin: 0 0 .35rem; }
@@ -101,11 +102,12 @@ footer.colophon { margin-top: 4rem; padding-bottom: 3rem; font: .86rem/1.5 var(-
 @media print {
   :root { color-scheme: light; --paper: #fff; --ink: #000; --soft: #444; --rule: #bbb; --wash: #f4f4f4; --c1: #00568f; --c2: #a34200; --c3: #00684e; --c4: #7a3168; }
   @page { margin: 18mm 16mm; }
-  body { font-size: 10.2pt; }
+  html { font-size: 9.4pt; }
   header.title { padding-top: 0; } nav { display: none; }
   header.title, main, footer.colophon { max-width: none; padding: 0; }
   h2, h3, p.caption { break-after: avoid; } h2 { margin-top: 1.8rem; }
-  tr, .warning, pre, .move { break-inside: avoid; }
+  tr, .warning, pre, .matrices.tight { gap: .6rem 1rem; margin: 0; }
+.move { break-inside: avoid; }
   .scroll, .formula, pre { overflow: visible; }
   pre { white-space: pre-wrap; }
   figure svg.wide { max-height: 11cm; width: auto; }

@@ -132,11 +132,20 @@ export function histogramPlot(o: ObservableResult, index: number): Html | undefi
   const y: [number, number] = [0, 1.08 * Math.max(NORMAL_PEAK, ...bars.map((b) => b.density))];
   const x: [number, number] = [-reach, reach];
   const { statistic, pValue } = o.sampled.normalDistance;
-  const p = pValue < 0.001 ? "p < 0.001" : `p = ${pValue.toFixed(pValue < 0.1 ? 3 : 2)}`;
+  const p =
+    pValue === null
+      ? ""
+      : pValue < 0.001
+        ? ", p\u202f<\u202f0.001"
+        : `, p\u202f=\u202f${pValue.toFixed(pValue < 0.1 ? 3 : 2)}`;
+  const told =
+    statistic === null
+      ? undefined
+      : html` Largest distance between the two distribution functions: ${statistic.toFixed(3)}${p}.`;
   return smallFigure({
     id: `plot-histogram-${index}`,
     label: `Histogram of ${values.length} standardised time averages of the observable ${o.label} with the normal density.`,
-    caption: html`<b>Is the error normal?</b> Time averages of “${o.label}” over ${brief(o.sampled.moves)} moves in ${values.length} independent walks, less their limit and divided by their standard error (bars), and the normal density (line). Largest distance between the two distribution functions: ${statistic.toFixed(3)} (${p}).`,
+    caption: html`<b>Is the error normal?</b> Time averages of “${o.label}” over ${brief(o.sampled.moves)} moves in ${values.length} independent walks, less their limit and divided by their standard error (bars), and the normal density (line).${told}`,
     draw: (size) => ({
       ...MARGINS,
       height: size.narrow ? 220 : 250,

@@ -25,7 +25,7 @@ export function growthCurve(growth: GrowthResult, level: number): Html | undefin
     "log",
     0.01,
   );
-  const y = padded([...rows.flatMap((r) => [r.low, r.high]), limit]);
+  const y = padded([...rows.flatMap((r) => [r.low, r.high]), limit], "linear", 0.12);
   return figure({
     id: "plot-growth",
     label: `Mean of log norm over n against the number of moves n, approaching lambda 1 = ${shown(lambda).value}.`,

@@ -44,6 +44,7 @@ export function averagesSummary(dossier: Dossier): Html {
 
 function sampledTable(o: ObservableResult): Html {
   const s = o.sampled;
+  const { median, largest } = s.iteratedLogarithm;
   const sampled = quantityColumn("sampled", [s.mean, s.variance, s.batchMeansVariance, s.coverage]);
   const row = (name: Piece, found: Piece) => html`<th scope="row">${name}</th>${found}`;
   return table(
@@ -54,10 +55,12 @@ function sampledTable(o: ObservableResult): Html {
       row(html`<i>n</i> × variance of the time average, over walks`, sampled.show(s.variance)),
       row("the same by batch means", sampled.show(s.batchMeansVariance)),
       row("share of walks whose interval covers the limit", sampled.show(s.coverage)),
-      row(
-        html`largest |<i>S<sub>n</sub></i> − <i>n m</i>| / √(2 <i>n v</i> log log <i>n</i>) in the second half: median walk; most extreme walk`,
-        html`<td class="n">${brief(s.iteratedLogarithm.median, 3)}; ${brief(s.iteratedLogarithm.largest, 3)}</td>`,
-      ),
+      median !== null &&
+        largest !== null &&
+        row(
+          html`largest |<i>S<sub>n</sub></i> − <i>n m</i>| / √(2 <i>n v</i> log log <i>n</i>) in the second half: median walk; most extreme walk`,
+          html`<td class="n">${brief(median, 3)}; ${brief(largest, 3)}</td>`,
+        ),
     ],
   );
 }

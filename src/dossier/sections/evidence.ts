@@ -38,6 +38,7 @@ function show(value: unknown, depth: number): Piece {
       const numbers = value.every((v) => typeof v !== "string" || /^-?[\d./]+$/.test(v));
       return numbers ? `(${value.map(entry).join(", ")})` : value.map(entry).join(", ");
     }
+    if (value.every(isMatrix)) return html`<div class="matrices tight">${value.map(matrixGrid)}</div>`;
     return value.map((v) => html`<div>${show(v, depth + 1)}</div>`);
   }
   return html`<dl class="plain">${Object.entries(value).map(

@@ -63,7 +63,7 @@ export function table(caption: Piece, columns: readonly Column[], rows: readonly
 <div class="scroll" tabindex="0"><table>
 <thead><tr>${columns.map((c) => html`<th scope="col"${c.n === true && html` class="n"`}>${c.name}</th>`)}</tr></thead>
 <tbody>
-${rows.map((r) => html`<tr>${r}</tr>\n`)}</tbody>
+${rows.map((r) => r !== undefined && r !== false && html`<tr>${r}</tr>\n`)}</tbody>
 </table></div></div>
 `;
 }
