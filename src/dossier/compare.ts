@@ -20,7 +20,7 @@ export async function compareWithDoubles(walk: Walk, session: Session): Promise<
   const exact = await trajectory(walk, {
     [SESSION]: session,
     steps: moves,
-    choices: [...choices],
+    choices,
     at: Array.from({ length: moves + 1 }, (_, step) => step),
     digits,
   });

@@ -63,7 +63,7 @@ export interface Dossier {
   readonly effort: Effort;
   readonly level: number;
   /** The walk file's content. */
-  readonly document: unknown;
+  readonly document: object;
   readonly conditions: Answer<ConditionsResult>;
   readonly growth: Answer<GrowthResult>;
   readonly start: Answer<StartResult>;
