@@ -47,6 +47,9 @@ function observable(label: string, seed: number): ObservableResult {
       ...Array.from({ length: 14 }, (_, n) => estimated((n % 3 === 1 ? -1 : 1) * 0.3 * 0.6 ** n, 1e-9)),
       exact(0),
     ],
+    lastTerms: [13, 14].map((step) => ({ step, value: estimated(0.3 * 0.6 ** step, 1e-9) })),
+    reached: { step: 15, reason: "invented" },
+    notes: [],
     stepsFor: [0.1, 0.01, 0.001].map((halfWidth) => ({ halfWidth, steps: estimated(2.81 / halfWidth ** 2, 9) })),
     sampled: {
       replicates: 400,

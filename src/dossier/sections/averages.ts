@@ -1,7 +1,7 @@
 /** Time averages: limit, variance, error bars and how many moves they take, one block an observable. */
 import type { ObservableResult } from "../../averages/result.js";
 import { quantityNumber } from "../../quantity/quantity.js";
-import { type Html, html, type Piece } from "../html.js";
+import { type Html, html, joined, type Piece } from "../html.js";
 import { brief, percent, shown } from "../numbers.js";
 import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.js";
 import { pair } from "../plots/figure.js";
@@ -66,7 +66,7 @@ function sampledTable(o: ObservableResult): Html {
 }
 
 function block(o: ObservableResult, index: number, level: number): Html {
-  const last = o.correlations.slice(-3);
+  const last = o.lastTerms ?? [];
   const steps = quantityColumn(
     "moves",
     o.stepsFor.map((s) => s.steps),
@@ -74,8 +74,15 @@ function block(o: ObservableResult, index: number, level: number): Html {
   );
   return html`<h3>${o.label}</h3>
 <p>Limit ${quantity(o.mean)}; ${o.mean.method}.</p>
-<p>Variance ${quantity(o.variance)}; ${o.variance.method}.${last.length === 3 && o.variance.standing === "estimated" && html` The last correlations used, which show how much may be missing: ${last.map((q) => shown(q).value).join(", ")}.`}</p>
+<p>Variance ${quantity(o.variance)}; ${o.variance.method}.${
+    last.length > 0 &&
+    html` The last correlations that went into it, which show how much may be missing: ${joined(
+      last.map((t) => `${shown(t.value).value} (n = ${t.step})`),
+      ", ",
+    )}.`
+  }${o.reached !== undefined && html` They end at <i>n</i> = ${o.reached.step}: ${o.reached.reason}.`}</p>
 <p>Is the variance zero? ${verdict(o.degenerate)}. ${o.degenerate.reason}</p>
+${o.notes.map((n) => warning(n))}
 ${o.degenerate.verdict === "holds" && evidence(o.degenerate.evidence)}
 ${
   o.stepsFor.length > 0 &&
@@ -99,6 +106,7 @@ ${missing(averages)}</section>
 `;
   const rest = averages.observables.length - PLOTTED;
   return html`<section id="averages"><h2>What do time averages converge to?</h2>
+${averages.orbit !== undefined && html`<p>The start is rational: all findings below are about the walk on its finite orbit of ${plural(averages.orbit.size, "point")} with denominator ${averages.orbit.denominator}.</p>`}
 ${averages.warnings.map((w) => warning(w))}
 ${averages.observables.slice(0, PLOTTED).map((o, i) => block(o, i + 1, dossier.level))}
 ${rest > 0 && html`<p>The other ${plural(rest, "observable")} are in the summary's table, and in full in dossier.json.</p>`}
