@@ -25,10 +25,11 @@ import {
   provedNonZero,
   subtract,
 } from "../dual/function.js";
-import { apply, inverse, multiply, transpose } from "../dual/matrix.js";
+import { apply } from "../dual/matrix.js";
 import { isStronglyIrreducible, type PlaneGroup, planeGroup } from "../dual/plane.js";
 import { canonical, type TrigPolynomial } from "../dual/polynomial.js";
 import type { Verdict } from "../quantity/quantity.js";
+import { inverseMatrix, multiplyMatrices, transpose } from "../walk/integers.js";
 import type { Move, Walk } from "../walk/walk.js";
 
 /** What the moves alone decide, for all observables. */
@@ -47,10 +48,10 @@ export interface Degeneracy {
 
 export function differencesOf(walk: Walk): Differences {
   if (walk.dimension !== 2) return { stronglyIrreducible: undefined, group: undefined };
-  const first = inverse((walk.moves[0] as Move).matrix);
+  const first = inverseMatrix((walk.moves[0] as Move).matrix);
   return {
     stronglyIrreducible: isStronglyIrreducible(walk.moves.map((m) => m.matrix)),
-    group: planeGroup(walk.moves.map((m) => transpose(multiply(m.matrix, first)))),
+    group: planeGroup(walk.moves.map((m) => transpose(multiplyMatrices(m.matrix, first)))),
   };
 }
 

@@ -84,9 +84,10 @@ function ofTerms(
   }
   const value = partialSum(sums.values);
   const tail = 2 * sums.values.slice(-LAST_SHOWN).reduce((s, x) => s + Math.abs(x), 0);
-  if (tail > 0.05 * value) {
+  const share = tail / sums.values[0]!;
+  if (share > 0.05) {
     notes.push(
-      `The last ${lastTerms.length} of the computed correlations still make up ${((100 * tail) / value).toFixed(0)} % of the variance: the partial sum may be far from the limit.`,
+      `The last ${lastTerms.length} correlations computed still add ${(100 * share).toFixed(0)} % of <f, f>: the partial sum may be far from the limit.`,
     );
   }
   const variance = estimatedQuantity(

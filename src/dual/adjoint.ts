@@ -1,7 +1,7 @@
 /** Whether the averaging operator is its own adjoint: the moves and their inverses, with weights, are one list. */
 import { Rational } from "../exact/rational.js";
+import { type IntegerMatrix, inverseMatrix } from "../walk/integers.js";
 import type { Walk } from "../walk/walk.js";
-import { type IntegerMatrix, inverse } from "./matrix.js";
 
 function describe(matrix: IntegerMatrix, translation: readonly Rational[]): string {
   return `${matrix.join(";")}|${translation.map((x) => x.mod1()).join(";")}`;
@@ -15,7 +15,7 @@ export function isSelfAdjoint(walk: Walk): boolean {
     const b = translation?.map((x) => x.rational) ?? matrix.map(() => Rational.ZERO);
     if (b.some((x) => x === undefined)) return false;
     const exact = b as Rational[];
-    const back = inverse(matrix);
+    const back = inverseMatrix(matrix);
     const shift = back.map((row) =>
       row.reduce((s, e, j) => s.sub(Rational.of(e).mul(exact[j] as Rational)), Rational.ZERO),
     );

@@ -3,9 +3,10 @@
  * are complex, at the representative of +-k; a move's phase must be a quarter turn.
  */
 import { Rational } from "../exact/rational.js";
+import { transpose } from "../walk/integers.js";
 import type { Move } from "../walk/walk.js";
 import { ExactForm } from "./form.js";
-import { apply, transpose } from "./matrix.js";
+import { apply } from "./matrix.js";
 import { canonical, type TrigPolynomial } from "./polynomial.js";
 
 export interface ExactEntry {

@@ -2,8 +2,8 @@
 import type { ExactNumber } from "../exact/number.js";
 import { floorDiv } from "../exact/rational.js";
 import type { DualMove } from "../kernel/dual.js";
+import { type IntegerMatrix, identityMatrix, inverseMatrix, transpose } from "../walk/integers.js";
 import type { Walk } from "../walk/walk.js";
-import { type IntegerMatrix, inverse, transpose } from "./matrix.js";
 
 const BITS = 128;
 const GUARD = 80;
@@ -23,13 +23,9 @@ function fractions(x: readonly ExactNumber[], rows: IntegerMatrix): bigint[] {
   });
 }
 
-function unit(d: number): bigint[][] {
-  return Array.from({ length: d }, (_, i) => Array.from({ length: d }, (_, j) => (i === j ? 1n : 0n)));
-}
-
 /** A point of the torus in units of 2^-128, each coordinate off by at most one unit. */
 export function pointFractions(point: readonly ExactNumber[]): bigint[] {
-  return fractions(point, unit(point.length));
+  return fractions(point, identityMatrix(point.length));
 }
 
 /** P: e_k goes to the sum of p_i exp(2 pi i k.b_i) e_{A_i^T k}. */
@@ -44,7 +40,7 @@ export function forwardMoves(walk: Walk): DualMove[] {
 /** P*, by the inverse moves x -> A_i^-1 (x - b_i): e_k goes to the sum of p_i exp(-2 pi i k.A_i^-1 b_i) e_{A_i^-T k}. */
 export function adjointMoves(walk: Walk): DualMove[] {
   return walk.moves.map((move) => {
-    const back = inverse(move.matrix);
+    const back = inverseMatrix(move.matrix);
     const minus = back.map((row) => row.map((e) => -e));
     return {
       matrix: transpose(back),

@@ -3,7 +3,8 @@
  * integer vectors: what has a finite orbit there, and whether the group is strongly irreducible.
  */
 import { gcdBig } from "../exact/rational.js";
-import { apply, type IntegerMatrix, inverse, multiply } from "./matrix.js";
+import { type IntegerMatrix, identityMatrix, inverseMatrix, multiplyMatrices } from "../walk/integers.js";
+import { apply } from "./matrix.js";
 
 /** The largest finite subgroups of GL_2(Z) have 12 elements (from memory: Newman, Integral Matrices, 1972). */
 const LARGEST_FINITE = 12;
@@ -17,15 +18,12 @@ export type PlaneGroup =
 
 /** All elements of the group, or undefined where there are more than the largest finite group has. */
 function closure(generators: readonly IntegerMatrix[]): IntegerMatrix[] | undefined {
-  const identity: IntegerMatrix = [
-    [1n, 0n],
-    [0n, 1n],
-  ];
+  const identity: IntegerMatrix = identityMatrix(2);
   const found = new Map([[identity.join(), identity]]);
   const queue = [identity];
   for (const g of queue) {
     for (const s of generators) {
-      const product = multiply(s, g);
+      const product = multiplyMatrices(s, g);
       if (found.has(product.join())) continue;
       if (found.size === LARGEST_FINITE) return undefined;
       found.set(product.join(), product);
@@ -106,7 +104,9 @@ export function isStronglyIrreducible(generators: readonly IntegerMatrix[]): boo
         return moved.some((x, i) => x !== own[i]) && moved.some((x, i) => x !== -own[i]!);
       });
     }
-    const longer = words.flatMap((w) => [...generators, ...generators.map(inverse)].map((g) => multiply(g, w)));
+    const longer = words.flatMap((w) =>
+      [...generators, ...generators.map(inverseMatrix)].map((g) => multiplyMatrices(g, w)),
+    );
     words = [...new Map(longer.map((w) => [w.join(), w])).values()].slice(0, 4000);
   }
   return undefined;

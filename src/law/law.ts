@@ -9,6 +9,7 @@ import { afterStep, type TableBound } from "../kernel/dual-rounding.js";
 import { loadKernel } from "../kernel/kernel.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
+import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { LAW_BUDGET, type LawOptions, type LawRequest, readOptions } from "./options.js";
 import { type ComplexQuantity, exactly, readerOf } from "./readers.js";
@@ -96,10 +97,12 @@ interface LawEnd {
 /**
  * E exp(2 pi i k.x_n) for n = 0, 1, ..., as far as the budget of the effort allows; each
  * part is enclosed with a proved bound on rounding, or exact where nothing has to be computed.
+ * @throws WalkError for a walk that is wrong.
  * @throws OptionsError for a frequency or a number of steps that does not fit.
  * @throws LimitError where the memory limit is too small for any table.
  */
-export async function law(walk: Walk, options: LawOptions & SharedSession): Promise<LawResult> {
+export async function law(input: WalkInput, options: LawOptions & SharedSession): Promise<LawResult> {
+  const walk = asWalk(input);
   return withSession(options, async (session) => {
     const request = readOptions(options, walk.dimension);
     const q = commonDenominator(walk);

@@ -296,7 +296,7 @@ describe("a rational start", () => {
           1,
           [r(1, 2), r(0)],
         ),
-      ].map((m) => ({ ...m, probability: r(1, 3) })),
+      ].map((m) => ({ ...m, weight: r(1, 3) })),
       point([1, 3], [0, 1]),
       [east, corner],
     );

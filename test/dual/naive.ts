@@ -1,7 +1,8 @@
 /** The dual walk in plain TypeScript, on exact frequencies and with phases from exact fractions: for comparison. */
 import { exactRational } from "../../src/exact/number.js";
 import { Rational } from "../../src/exact/rational.js";
-import type { Move, Observable, Start, Walk } from "../../src/walk/walk.js";
+import { parseWalk } from "../../src/walk/parse.js";
+import type { Move, Observable, Start, Term, Walk } from "../../src/walk/walk.js";
 
 export interface Complex {
   re: number;
@@ -77,9 +78,38 @@ export function move(
   };
 }
 
+const written = (terms: readonly Term[]) =>
+  terms.map((t) => ({ frequency: t.frequency, cos: t.cos.text, sin: t.sin.text }));
+const texts = (xs: readonly { text: string }[]) => xs.map((x) => x.text);
+
+/** A walk as parseWalk makes it. */
 export function walkOf(moves: Move[], start: Start = { type: "uniform" }, observables: Observable[] = []): Walk {
-  const dimension = moves[0]!.matrix.length;
-  return { title: "stirred tray", dimension, moves, start, observables, document: null };
+  return parseWalk({
+    torwend: 1,
+    title: "stirred tray",
+    dimension: moves[0]!.matrix.length,
+    moves: moves.map((m, i) => ({
+      label: `stroke ${i}`,
+      weight: m.weight.toString(),
+      matrix: m.matrix,
+      ...(m.translation === undefined ? {} : { translation: texts(m.translation) }),
+    })),
+    start:
+      start.type === "point"
+        ? texts(start.point)
+        : start.type === "density"
+          ? { density: written(start.terms) }
+          : { uniform: true },
+    ...(observables.length === 0
+      ? {}
+      : {
+          observables: observables.map((f) =>
+            f.type === "terms"
+              ? { label: f.label, terms: written(f.terms) }
+              : { label: f.label, box: { low: texts(f.low), high: texts(f.high) } },
+          ),
+        }),
+  });
 }
 
 export const point = (...xs: [number, number][]): Start => ({

@@ -1,0 +1,46 @@
+/**
+ * Time averages of observables along the walk: their limit, the limit variance, whether it
+ * is 0, and the moves that a given accuracy takes; the exact part beside what replicates show.
+ */
+import { quantityNumber } from "../quantity/quantity.js";
+import { type SharedSession, withSession } from "../session.js";
+import { VERSION } from "../version.js";
+import { asWalk, type WalkInput } from "../walk/parse.js";
+import { exactAverages } from "./exact.js";
+import { type AveragesOptions, samplingOf } from "./options.js";
+import type { AveragesResult } from "./result.js";
+import { sampleAverages } from "./sampled.js";
+import { stepsFor } from "./steps.js";
+
+export type { AveragesOptions } from "./options.js";
+
+/**
+ * Findings for every observable of the walk, in its order; averages run over positions 0 to n - 1.
+ * @throws WalkError, OptionsError; LimitError where memory does not suffice; StoppedError
+ */
+export async function averages(
+  input: WalkInput,
+  options: AveragesOptions & SharedSession = {},
+): Promise<AveragesResult> {
+  const walk = asWalk(input);
+  return withSession(options, async (session) => {
+    const sampling = samplingOf(options, session, walk.dimension);
+    const { findings, orbit, warnings } = await exactAverages(walk, session);
+    const sampled = await sampleAverages(walk, session, {
+      ...sampling,
+      means: findings.map((f) => quantityNumber(f.mean)),
+      variances: findings.map((f) => (f.variance === undefined ? undefined : quantityNumber(f.variance))),
+    });
+    return {
+      torwend: VERSION,
+      walk: walk.title,
+      ...(orbit === undefined ? {} : { orbit }),
+      observables: findings.map(({ spread, variance: known, ...finding }, i) => {
+        const seen = sampled[i]!;
+        const variance = known ?? seen.variance;
+        return { ...finding, variance, stepsFor: stepsFor(variance, session.level, spread), sampled: seen };
+      }),
+      warnings,
+    };
+  });
+}

@@ -1,0 +1,122 @@
+import { readFileSync } from "node:fs";
+import { describe, expect, it } from "vitest";
+import { averages } from "../../src/averages/averages.js";
+import { OptionsError, StoppedError, WalkError } from "../../src/errors.js";
+import { quantityNumber } from "../../src/quantity/quantity.js";
+import { move, number, point, r, walkOf } from "../dual/naive.js";
+
+const example = (name: string) => readFileSync(new URL(`../../examples/${name}.json`, import.meta.url), "utf8");
+const small = { effort: "quick", workers: 0, steps: 400, replicates: 60 } as const;
+
+describe("averages", () => {
+  it("puts exact and sampled findings of every observable side by side", async () => {
+    const result = await averages(example("tray-symmetric"), small);
+    expect(result.observables.map((f) => f.label)).toEqual(["east probe", "diagonal ripple", "west half"]);
+    expect(result.warnings).toEqual([]);
+    for (const f of result.observables) {
+      const sampled = quantityNumber(f.sampled.variance);
+      expect(quantityNumber(f.variance) / sampled).toBeGreaterThan(0.4);
+      expect(quantityNumber(f.variance) / sampled).toBeLessThan(2.5);
+      expect(f.degenerate.verdict).toBe("fails");
+      const [wide, middle, narrow] = f.stepsFor.map((s) => quantityNumber(s.steps)) as [number, number, number];
+      // n = z^2 variance / h^2 at level 0.95.
+      expect(Math.abs(wide - (1.959963984540054 ** 2 * quantityNumber(f.variance)) / 0.01)).toBeLessThan(1);
+      expect(narrow / middle).toBeCloseTo(100, 1);
+    }
+    const [probe, , west] = result.observables;
+    expect(probe!.mean).toMatchObject({ value: 0, standing: "exact" });
+    expect(probe!.variance.standing).toBe("estimated");
+    expect(probe!.lastTerms!.at(-1)!.step).toBe(probe!.reached!.step);
+    expect(west!.mean).toMatchObject({ value: "1/2", standing: "exact" });
+    expect(west!.variance).toEqual(west!.sampled.variance);
+    expect(west!.correlations).toMatchObject([{ value: "1/4", standing: "exact" }]);
+  });
+
+  it("recognises variance 0, and then counts moves by the bounded sums", async () => {
+    const moves = [
+      move(
+        [
+          [2, 1],
+          [1, 1],
+        ],
+        r(1, 2),
+      ),
+      move(
+        [
+          [2, 1],
+          [3, 2],
+        ],
+        r(1, 2),
+      ),
+    ];
+    const terms = [
+      { frequency: [1n, 0n], cos: number(1), sin: number(0) },
+      { frequency: [2n, 1n], cos: number(-1), sin: number(0) },
+    ];
+    const { observables } = await averages(
+      walkOf(moves, { type: "uniform" }, [{ type: "terms", label: "probe", terms }]),
+      small,
+    );
+    const f = observables[0]!;
+    expect(f.variance).toMatchObject({ value: 0, standing: "exact" });
+    expect(f.stepsFor.map((s) => s.steps.value)).toEqual([20, 200, 2000].map((n) => n + 1));
+    expect(f.degenerate.verdict).toBe("holds");
+    expect(Math.abs(quantityNumber(f.sampled.variance))).toBeLessThan(0.1);
+  });
+
+  it("speaks of the finite orbit for a rational start", async () => {
+    const moves = [
+      move(
+        [
+          [2, 1],
+          [1, 1],
+        ],
+        r(1, 2),
+      ),
+      move(
+        [
+          [1, 0],
+          [1, 1],
+        ],
+        r(1, 2),
+      ),
+    ];
+    const result = await averages(walkOf(moves, point([1, 5], [0, 1])), small);
+    expect(result.orbit).toEqual({ denominator: 5, size: 24 });
+    expect(result.warnings[0]).toMatch(/24 points/);
+    for (const f of result.observables) {
+      const { low, high } = f.sampled.mean;
+      const slack = Number(high) - Number(low);
+      expect(quantityNumber(f.mean)).toBeGreaterThan(Number(low) - slack);
+      expect(quantityNumber(f.mean)).toBeLessThan(Number(high) + slack);
+    }
+  });
+
+  it("warns where the moves are not strongly irreducible", async () => {
+    const result = await averages(
+      walkOf([
+        move(
+          [
+            [1, 1],
+            [0, 1],
+          ],
+          r(1),
+        ),
+      ]),
+      { ...small, steps: 50 },
+    );
+    expect(result.warnings[0]).toMatch(/not strongly irreducible/);
+    // The cosine of x_2 is kept by the move, so that its correlations do not decay.
+    expect(result.observables[2]!.notes[0]).toMatch(/may be far from the limit/);
+  });
+
+  it("names faults of options and walks, and stops when asked", async () => {
+    const walk = example("tray");
+    await expect(averages(walk, { ...small, steps: 1.5, replicates: 0 })).rejects.toThrow(
+      /--steps: found 1.5.*\n--replicates: found 0/,
+    );
+    await expect(averages(walk, { ...small, steps: 0 })).rejects.toThrow(OptionsError);
+    await expect(averages("{}", small)).rejects.toThrow(WalkError);
+    await expect(averages(walk, { ...small, signal: AbortSignal.abort() })).rejects.toThrow(StoppedError);
+  });
+});
