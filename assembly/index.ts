@@ -19,6 +19,8 @@ export {
 export { multiply, productPlan } from "./fixed/multiply";
 export { lengthFor, makePlan, planBytes } from "./fixed/plan";
 export { errorFactor } from "./fixed/transform";
+// Growth
+export { advanceFrames, advanceVectors, frameLogs, vectorLogs } from "./growth/norms";
 // The border itself
 export { alloc, mark, release, setCeiling } from "./memory";
 export { drawMoves, drawStart } from "./random/choices";

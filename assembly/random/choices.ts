@@ -65,12 +65,12 @@ export function drawMoves(
   const k1 = <u32>(seed >> 32);
   const total = load<u64>(cumulative + ((<usize>(moves - 1)) << 3));
   const wide = total >> 32 != 0;
-  const per: u64 = wide ? 2 : 4;
+  const shift: u64 = wide ? 1 : 2; // two or four moves a block
   const reject: u64 = wide ? (0 - total) % total : ((<u64>1) << 32) % total;
   let held: u64 = u64.MAX_VALUE;
   for (let i: u32 = 0; i < count; i++) {
     const n = first + i;
-    const at = n / per;
+    const at = n >> shift;
     if (at != held) {
       philoxBlock(block, <u32>at, <u32>(at >> 32), replicate, STREAM_MOVES, k0, k1);
       held = at;
