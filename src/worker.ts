@@ -3,6 +3,7 @@
 import "./averages/jobs.js";
 import { listen } from "#worker-port";
 import "./averages/correlations.js";
+import "./growth/jobs.js";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";
 

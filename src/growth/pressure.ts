@@ -1,0 +1,96 @@
+/** Lambda(s) at the s that were asked for: proved where symmetric powers prove it, else estimated. */
+import { cumulativeWeights } from "../kernel/draws.js";
+import type { Real } from "../kernel/real.js";
+import { estimatedQuantity, type Quantity } from "../quantity/quantity.js";
+import type { Effort, Session } from "../session.js";
+import { meanEstimate } from "../statistics/intervals.js";
+import type { Walk } from "../walk/walk.js";
+import { populationJob } from "./jobs.js";
+import { DirectionOperator } from "./operator.js";
+import { provedPressure } from "./symmetric.js";
+
+/** Lambda at one s, as a number or with its standing. */
+export interface PressureEstimator {
+  /** Estimates, in the order of `values`. */
+  estimate(values: readonly number[]): Promise<Quantity[]>;
+}
+
+const GRID: Record<Effort, number> = { quick: 512, standard: 1024, thorough: 4096 };
+const PARTICLES: Record<Effort, number> = { quick: 256, standard: 1024, thorough: 4096 };
+const STEPS = 256;
+const POPULATIONS = 8;
+
+/** Dimension 2: the operator on directions, at two sizes of grid. */
+function planar(walk: Walk, session: Session, real: Real): PressureEstimator {
+  const most = Math.max(128, Math.floor(2 ** 17 / walk.moves.length));
+  const size = 2 * Math.floor(Math.min(GRID[session.effort], most) / 2);
+  const fine = new DirectionOperator(walk, size, real);
+  const coarse = new DirectionOperator(walk, size / 2, real);
+  return {
+    async estimate(values) {
+      const out: Quantity[] = [];
+      for (const [i, s] of values.entries()) {
+        session.checkStop();
+        session.progress("pressure", i, values.length);
+        const [a, b] = [fine.leading(s), coarse.leading(s)];
+        const gap = Math.abs(a.value - b.value) + a.spread;
+        out.push(
+          estimatedQuantity(
+            a.value,
+            `weighted operator on ${size} directions; half the grid differs by ${gap.toPrecision(2)}`,
+          ),
+        );
+      }
+      return out;
+    },
+  };
+}
+
+/** Dimension 3 and more: independent populations. */
+function spatial(walk: Walk, session: Session): PressureEstimator {
+  const entries = Float64Array.from(
+    walk.moves.flatMap((m) => m.matrix.flat()),
+    Number,
+  );
+  const cumulative = cumulativeWeights(walk.moves.map((m) => m.probability));
+  const particles = PARTICLES[session.effort];
+  return {
+    async estimate(values) {
+      const runs = values.map((s) => ({
+        s,
+        seed: session.seed,
+        populations: POPULATIONS,
+        particles,
+        steps: STEPS,
+        dimension: walk.dimension,
+        entries,
+        cumulative,
+      }));
+      const answers = await session.pool.map(populationJob, runs, {
+        signal: session.signal,
+        onDone: (done) => session.progress("pressure", done, values.length),
+      });
+      return answers.map((answer) => {
+        const { value, interval } = meanEstimate(answer, session.level);
+        const method = `${POPULATIONS} populations of ${particles} directions, ${STEPS} moves, Student's interval (bias of order 1/${particles} not included)`;
+        return estimatedQuantity(value, method, interval, session.level);
+      });
+    },
+  };
+}
+
+export function pressureEstimator(walk: Walk, session: Session, real: Real): PressureEstimator {
+  return walk.dimension === 2 ? planar(walk, session, real) : spatial(walk, session);
+}
+
+export async function pressureTable(
+  walk: Walk,
+  values: readonly number[],
+  estimator: PressureEstimator,
+  real: Real,
+): Promise<{ s: number; value: Quantity }[]> {
+  const proved = new Map(values.map((s) => [s, provedPressure(walk, s, real)]));
+  const open = values.filter((s) => proved.get(s) === undefined);
+  const estimates = await estimator.estimate(open);
+  return values.map((s) => ({ s, value: proved.get(s) ?? (estimates[open.indexOf(s)] as Quantity) }));
+}
