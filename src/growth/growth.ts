@@ -1,17 +1,22 @@
 /** `growth`: how fast do products grow? */
+import { bitLength } from "../exact/rational.js";
 import { cumulativeWeights } from "../kernel/draws.js";
 import { growthTable } from "../kernel/growth.js";
-import { loadReal } from "../kernel/real.js";
+import { loadReal, type Real } from "../kernel/real.js";
 import { estimatedQuantity, type Quantity } from "../quantity/quantity.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { meanEstimate } from "../statistics/intervals.js";
 import { VERSION } from "../version.js";
 
 import type { Walk } from "../walk/walk.js";
+import { checkDoubles } from "./check.js";
+import { flatGrowth, lineGrowth } from "./exceptional.js";
 import { exponentEstimates, logNormVariance, type RateEstimate } from "./intervals.js";
+import { type PlanarGroup, planarGroup } from "./lines.js";
 import { type GrowthOptions, type GrowthWishes, readOptions } from "./options.js";
 import { samplingPlan } from "./plan.js";
-import { pressureEstimator, pressureTable } from "./pressure.js";
+import { type PressureEstimator, pressureEstimator, pressureTable } from "./pressure.js";
+import { exactLogNorms } from "./products.js";
 import { rateTable } from "./rate.js";
 import type { GrowthResult } from "./result.js";
 import { type GrowthSamples, logAt, sampleReplicates } from "./sample.js";
@@ -37,26 +42,66 @@ export async function growth(walk: Walk, options: GrowthOptions & SharedSession 
 /** The same for a walk that is parsed and a session that is open. */
 export async function growthOf(walk: Walk, wishes: GrowthWishes, session: Session): Promise<GrowthResult> {
   const real = await loadReal();
-  const matrices = walk.moves.map((m) => m.matrix);
-  const table = growthTable(matrices, cumulativeWeights(walk.moves.map((m) => m.probability)));
+  const group = walk.dimension === 2 ? planarGroup(walk) : undefined;
+  const found =
+    group === undefined ? await sampled(walk, wishes, session, real) : await known(walk, group, session, real);
+  const { estimator, ...rest } = found;
+  return {
+    torwend: VERSION,
+    walk: walk.title,
+    ...rest,
+    pressure: await pressureTable(walk, wishes.pressure, estimator, real),
+    rate: await rateTable(estimator),
+  };
+}
+
+type Findings = Omit<GrowthResult, "torwend" | "walk" | "pressure" | "rate"> & {
+  readonly estimator: PressureEstimator;
+};
+
+/** Exponents and variance from sampled products. */
+async function sampled(walk: Walk, wishes: GrowthWishes, session: Session, real: Real): Promise<Findings> {
+  const table = growthTable(
+    walk.moves.map((m) => m.matrix),
+    cumulativeWeights(walk.moves.map((m) => m.probability)),
+  );
   const plan = samplingPlan(table, session.effort, wishes.steps);
   const samples = await sampleReplicates(session, table, plan, wishes.tolerance);
   const { estimates, residual } = exponentEstimates(samples, session.level);
   const variance = logNormVariance(samples, session.level, real);
-  const estimator = pressureEstimator(walk, session, real);
-  const pressure = await pressureTable(walk, wishes.pressure, estimator, real);
-  const rate = await rateTable(estimator);
+  const check = await checkDoubles(walk, table, session, estimates[0]?.value ?? 0, real);
+  const lost = check.worst > 1e-6;
+  const widened = lost ? estimates.map((e) => ({ ...e, halfWidth: e.halfWidth + 2 * check.rate })) : estimates;
+  const warnings = warningsOf(widened, residual, variance.irregular, wishes);
+  if (lost) {
+    warnings.push(
+      `rounding: over ${check.moves} moves, doubles and exact integers differ by ${check.worst.toPrecision(2)} in log norm; sampled exponents may be biased`,
+    );
+  }
   return {
-    torwend: VERSION,
-    walk: walk.title,
-    exponents: exponentQuantities(walk.dimension, estimates, samples, session.level),
+    exponents: exponentQuantities(walk.dimension, widened, samples, session.level),
     logNormVariance: estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
-    pressure,
-    rate,
-    curve: curveOf(samples, session.level),
+    curve: curveOf(plan.checkpoints, samples.replicates, (r, c) => logAt(samples, r, c, 0), session.level),
     replicates: samples.replicates,
     moves: plan.steps,
-    warnings: warningsOf(estimates, residual, variance.irregular, wishes),
+    warnings,
+    estimator: pressureEstimator(walk, session, real),
+  };
+}
+
+/** Dimension 2, group finite or keeping lines: no sampling but for the curve, in exact integers. */
+async function known(walk: Walk, group: PlanarGroup, session: Session, real: Real): Promise<Findings> {
+  const found = group.kind === "two lines" ? lineGrowth(walk, group, real) : flatGrowth(group);
+  const replicates = 64;
+  const bits = Math.max(...walk.moves.flatMap((m) => m.matrix.flat().map(bitLength)));
+  const powers = Array.from({ length: 10 }, (_, k) => 2 ** (k + 1));
+  const checkpoints = powers.filter((n) => n <= Math.max(8, 4096 / bits));
+  const logs = await exactLogNorms(walk, session.seed, replicates, checkpoints, real);
+  return {
+    ...found,
+    curve: curveOf(checkpoints, replicates, (r, c) => logs[r]?.[c] as number, session.level),
+    replicates,
+    moves: checkpoints.at(-1) as number,
   };
 }
 
@@ -81,9 +126,15 @@ function exponentQuantities(
   ];
 }
 
-function curveOf(samples: GrowthSamples, level: number): GrowthResult["curve"] {
-  return samples.plan.checkpoints.map((moves, c) => {
-    const rates = Array.from({ length: samples.replicates }, (_, r) => logAt(samples, r, c, 0) / moves);
+/** Means of (1/n) log norm over replicates, with Student's interval; `log(r, c)`: replicate r at checkpoints[c]. */
+function curveOf(
+  checkpoints: readonly number[],
+  replicates: number,
+  log: (r: number, c: number) => number,
+  level: number,
+): GrowthResult["curve"] {
+  return checkpoints.map((moves, c) => {
+    const rates = Array.from({ length: replicates }, (_, r) => log(r, c) / moves);
     const { value, interval } = meanEstimate(rates, level);
     return { moves, mean: value, low: interval?.low ?? value, high: interval?.high ?? value };
   });

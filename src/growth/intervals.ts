@@ -6,7 +6,7 @@
  * mean, up to what the warm-up left, and Student's interval applies. Two things widen it:
  * - rounding: each product errs by some units of 2^-53, which bounds how well a rate is known;
  * - drift: where the second half of the replicates grew at another rate than the first, beyond
- *   four standard errors, growth had not settled (polynomial growth, symmetric walks on one
+ *   five standard errors, growth had not settled (polynomial growth, symmetric walks on one
  *   line), and twice the difference is added.
  */
 
@@ -54,7 +54,7 @@ export function exponentEstimates(
     const gap = Math.abs(mean(gaps));
     const error = Math.sqrt(variance(gaps) / replicates);
     const rounding = dimension * 2 ** -51;
-    const drift = gap > 4 * error + rounding;
+    const drift = gap > 5 * error + rounding;
     const student = ((interval as Interval).high - (interval as Interval).low) / 2;
     return { value, halfWidth: student + rounding + (drift ? 2 * gap : 0), drift };
   });

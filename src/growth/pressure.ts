@@ -16,9 +16,9 @@ export interface PressureEstimator {
 }
 
 const GRID: Record<Effort, number> = { quick: 512, standard: 1024, thorough: 4096 };
-const PARTICLES: Record<Effort, number> = { quick: 256, standard: 1024, thorough: 4096 };
-const STEPS = 256;
-const POPULATIONS = 8;
+const PARTICLES: Record<Effort, number> = { quick: 128, standard: 1024, thorough: 4096 };
+const STEPS: Record<Effort, number> = { quick: 128, standard: 256, thorough: 256 };
+const POPULATIONS = 6;
 
 /** Dimension 2: the operator on directions, at two sizes of grid. */
 function planar(walk: Walk, session: Session, real: Real): PressureEstimator {
@@ -54,6 +54,7 @@ function spatial(walk: Walk, session: Session): PressureEstimator {
   );
   const cumulative = cumulativeWeights(walk.moves.map((m) => m.probability));
   const particles = PARTICLES[session.effort];
+  const steps = STEPS[session.effort];
   return {
     async estimate(values) {
       const runs = values.map((s) => ({
@@ -61,7 +62,7 @@ function spatial(walk: Walk, session: Session): PressureEstimator {
         seed: session.seed,
         populations: POPULATIONS,
         particles,
-        steps: STEPS,
+        steps,
         dimension: walk.dimension,
         entries,
         cumulative,
@@ -72,7 +73,7 @@ function spatial(walk: Walk, session: Session): PressureEstimator {
       });
       return answers.map((answer) => {
         const { value, interval } = meanEstimate(answer, session.level);
-        const method = `${POPULATIONS} populations of ${particles} directions, ${STEPS} moves, Student's interval (bias of order 1/${particles} not included)`;
+        const method = `${POPULATIONS} populations of ${particles} directions, ${steps} moves, Student's interval (bias of order 1/${particles} not included)`;
         return estimatedQuantity(value, method, interval, session.level);
       });
     },
