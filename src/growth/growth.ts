@@ -8,6 +8,7 @@ import { type Session, type SharedSession, withSession } from "../session.js";
 import { meanEstimate } from "../statistics/intervals.js";
 import { VERSION } from "../version.js";
 
+import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { checkDoubles } from "./check.js";
 import { flatGrowth, lineGrowth } from "./exceptional.js";
@@ -33,8 +34,8 @@ export type { GrowthResult } from "./result.js";
  * @throws WalkError, OptionsError for wrong input; LimitError where memory or the draws'
  * 63 bits do not suffice; StoppedError when the signal fires.
  */
-export async function growth(walk: Walk, options: GrowthOptions & SharedSession = {}): Promise<GrowthResult> {
-  const parsed = walk;
+export async function growth(walk: WalkInput, options: GrowthOptions & SharedSession = {}): Promise<GrowthResult> {
+  const parsed = asWalk(walk);
   const wishes = readOptions(options);
   return withSession(options, (session) => growthOf(parsed, wishes, session));
 }

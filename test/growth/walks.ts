@@ -1,7 +1,7 @@
 /** Walks for the tests of growth, from matrices and integer weights. */
-import { Rational } from "../../src/exact/rational.js";
 import { cumulativeWeights } from "../../src/kernel/draws.js";
 import { type GrowthTable, growthTable } from "../../src/kernel/growth.js";
+import { parseWalk } from "../../src/walk/parse.js";
 import type { Walk } from "../../src/walk/walk.js";
 
 export type Numbers = readonly (readonly number[])[];
@@ -16,26 +16,12 @@ export function determinant(m: readonly (readonly bigint[])[]): bigint {
 }
 
 export function walkOf(matrices: readonly Numbers[], weights: readonly number[] = matrices.map(() => 1)): Walk {
-  const total = weights.reduce((a, b) => a + b, 0);
-  return {
+  return parseWalk({
+    torwend: 1,
     title: "a test",
     dimension: matrices[0]!.length,
-    moves: matrices.map((m, i) => {
-      const matrix = m.map((row) => row.map(BigInt));
-      const det = Number(determinant(matrix));
-      if (det !== 1 && det !== -1) throw new Error(`walkOf: matrix ${i} has determinant ${det}`);
-      return {
-        label: `move ${i}`,
-        weight: Rational.of(weights[i]!),
-        probability: Rational.of(weights[i]!, total),
-        matrix,
-        determinant: det,
-      };
-    }),
-    start: { type: "uniform" },
-    observables: [],
-    document: {},
-  };
+    moves: matrices.map((matrix, i) => ({ weight: weights[i]!, matrix })),
+  });
 }
 
 export function tableOf(walk: Walk): GrowthTable {
