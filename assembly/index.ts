@@ -15,6 +15,18 @@ export {
   dualHeaderBytes,
   dualLargest,
 } from "./dual/table";
+// Orbits
+export {
+  orbitAdd,
+  orbitApply,
+  orbitCentre,
+  orbitLanczos,
+  orbitProject,
+  orbitRotate,
+  orbitScale,
+  orbitSpread,
+} from "./finite/krylov";
+export { orbitLabel, orbitLocal, orbitMatch, orbitTables } from "./finite/tables";
 // Trajectory: big integers
 export { multiply, productPlan } from "./fixed/multiply";
 export { lengthFor, makePlan, planBytes } from "./fixed/plan";

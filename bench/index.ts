@@ -6,6 +6,7 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   draws: () => import("./draws.js"),
   sampling: () => import("./sampling.js"),
   dual: () => import("./dual.js"),
+  orbits: () => import("./orbits.js"),
   trajectory: () => import("./trajectory.js"),
 };
 

@@ -3,6 +3,8 @@ export type { Fault } from "./errors.js";
 export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
 export { exactRational } from "./exact/number.js";
 export { loadKernel } from "./kernel/kernel.js";
+export { type OrbitsOptions, orbits } from "./orbits/orbits.js";
+export type { OrbitKind, OrbitsResult } from "./orbits/result.js";
 export type { Quantity, Standing, Verdict } from "./quantity/quantity.js";
 export { quantityNumber } from "./quantity/quantity.js";
 export { type CommonOptions, type Effort, type Progress, withSession } from "./session.js";

@@ -1,6 +1,7 @@
 /** The worker's entry: every module that defines jobs is imported here, and only here. */
 
 import "./averages/jobs.js";
+import "./orbits/jobs.js";
 import { listen } from "#worker-port";
 import "./averages/correlations.js";
 import "./growth/jobs.js";
