@@ -99,16 +99,29 @@ function orbits(modulus: number): OrbitsResult {
     torwend: "0.1.0",
     walk: "t",
     modulus,
+    points: modulus * modulus,
+    symmetric: false,
+    warnings: [],
     orbits: [
       {
         size: modulus * modulus - 1,
         count: 1,
         representative: [0, 1],
+        denominators: [modulus],
+        period: 1,
         secondEigenvalue: estimated(0.5 + 0.3 / modulus, 1e-9),
         gap: estimated(0.5 - 0.3 / modulus, 1e-9),
         residual: 3.2e-11,
       },
-      { size: 1, count: 1, representative: [0, 0], secondEigenvalue: exact(0), gap: exact(1) },
+      {
+        size: 1,
+        count: 1,
+        representative: [0, 0],
+        denominators: [1],
+        period: 1,
+        secondEigenvalue: exact(0),
+        gap: exact(1),
+      },
     ],
   };
 }
