@@ -21,7 +21,7 @@ export function degree(f: Polynomial): number {
 
 /** f over the (positive) greatest common divisor of its coefficients; signs are kept. */
 export function primitivePart(f: Polynomial): Polynomial {
-  const g = f.reduce(gcdBig, 0n);
+  const g = f.reduceRight(gcdBig, 0n);
   return g <= 1n ? f : f.map((c) => c / g);
 }
 
@@ -78,9 +78,42 @@ export function gcdPolynomials(f: Polynomial, g: Polynomial): Polynomial {
   return a;
 }
 
+/** 2^31 - 1, a prime. */
+const PRIME = 2147483647n;
+
+function inverseModPrime(a: bigint): bigint {
+  let [r, s, u, v] = [PRIME, a, 0n, 1n];
+  while (s !== 0n) {
+    const q = r / s;
+    [r, s, u, v] = [s, r - q * s, v, u - q * v];
+  }
+  return u;
+}
+
+/**
+ * True proves that f has no multiple factor: f and f' have no common factor modulo a prime
+ * that does not divide the leading coefficient. False proves nothing.
+ */
+export function isSquareFree(f: Polynomial): boolean {
+  const residue = (c: bigint) => ((c % PRIME) + PRIME) % PRIME;
+  let a = f.map(residue);
+  if (a.length === 0 || a[a.length - 1] === 0n) return false;
+  let b = trimmed(derivative(f).map(residue)).slice();
+  while (b.length > 0) {
+    const inverse = inverseModPrime(b[b.length - 1]);
+    const rest = [...a];
+    for (let k = a.length - b.length; k >= 0; k--) {
+      const q = residue(rest[k + b.length - 1] * inverse);
+      for (let i = 0; i < b.length; i++) rest[k + i] = residue(rest[k + i] - q * b[i]);
+    }
+    [a, b] = [b, [...trimmed(rest)]];
+  }
+  return a.length === 1;
+}
+
 /** The product of the distinct irreducible factors, primitive, with a positive leading coefficient. */
 export function squareFreePart(f: Polynomial): Polynomial {
-  const g = f.length > 1 ? gcdPolynomials(f, derivative(f)) : [1n];
+  const g = f.length > 1 && !isSquareFree(f) ? gcdPolynomials(f, derivative(f)) : [1n];
   const part = g.length > 1 ? exactQuotient(f, g) : primitivePart(f);
   return part[part.length - 1] < 0n ? part.map((c) => -c) : part;
 }

@@ -105,21 +105,25 @@ export class Builder {
     let element: Element | undefined;
     if (x.element !== undefined && y.element !== undefined) {
       const v: Element = { num: y.element.num, den: 1n };
-      const inverse = this.tower.reciprocal(v, this.tower.annihilator(v));
-      element = this.tower.multiply(x.element, scaleElement(inverse, Rational.of(y.element.den)));
+      const f = this.tower.annihilator(v);
+      if (f !== undefined) {
+        const inverse = this.tower.reciprocal(v, f);
+        element = this.tower.multiply(x.element, scaleElement(inverse, Rational.of(y.element.den)));
+      }
     }
     return this.node(`(${x.text}/${y.text})`, (p) => divideBalls(x.ball(p), y.ball(p), p), element);
   }
 
-  /** x^n, |n| at most POWER_LIMIT; x^0 = 1. */
+  /** x^n, |n| at most POWER_LIMIT; x^0 = 1. @throws ExactFault where the result is too large */
   power(x: Real, n: number): Real {
     if (n < 0) return this.divide(this.constant(Rational.ONE), this.power(x, -n));
     if (n === 0) return this.constant(Rational.ONE);
     let element = x.element;
+    const coordinates = element === undefined ? [enclose(x, 0).mid] : [...element.num, element.den];
+    if (Math.max(...coordinates.map(bitLength)) * n > 4 * SIZE_LIMIT) {
+      throw new ExactFault(`a number of more than ${SIZE_LIMIT} bits comes up`);
+    }
     if (element !== undefined) {
-      if (Math.max(...element.num.map(bitLength), bitLength(element.den)) * n > 4 * SIZE_LIMIT) {
-        throw new ExactFault(`a number of more than ${SIZE_LIMIT} bits comes up`);
-      }
       for (const bit of n.toString(2).slice(1)) {
         element = this.tower.multiply(element, element);
         if (bit === "1") element = this.tower.multiply(element, x.element as Element);
@@ -172,10 +176,11 @@ export class Builder {
     if (whole !== undefined) return this.constant(Rational.of(whole, x.den));
     let element: Element | undefined;
     for (const m of this.tower.rationalRadicands(3)) {
-      const common = exactCbrt(n * m * m);
-      // cbrt(n) = cbrt(n m^2) / m cbrt(m).
-      if (common !== undefined)
-        element = scaleElement(this.tower.adjoin(3, { num: [m], den: 1n })!, Rational.of(common, m * x.den));
+      const root = this.tower.adjoin(3, { num: [m], den: 1n }) as Element;
+      // cbrt(n) = cbrt(n m^2) cbrt(m) / m, and = cbrt(n m) cbrt(m)^2 / m.
+      const [one, two] = [exactCbrt(n * m * m), exactCbrt(n * m)];
+      if (one !== undefined) element = scaleElement(root, Rational.of(one, m * x.den));
+      else if (two !== undefined) element = scaleElement(this.tower.multiply(root, root), Rational.of(two, m * x.den));
     }
     element ??= this.adjoin(3, { num: [x.num], den: x.den });
     return this.node(`cbrt(${x})`, (p) => cbrtOfBall(ballOf(x, p), p), element);
@@ -192,6 +197,7 @@ export class Builder {
     const { num, den } = x.element;
     const y: Real = { text: "", ball: (p) => scaleBall(x.ball(p), den) };
     let f = this.tower.annihilator({ num, den: 1n });
+    if (f === undefined) return {};
     const near = enclose(y, 4);
     const m = (near.mid + 8n) >> 4n;
     if (evaluateHomogeneous(f, m, 1n) === 0n) {

@@ -4,11 +4,14 @@
  * computed exactly. It need not be a field (r1 = sqrt(2), r2 = sqrt(8) is allowed); what it
  * proves about a real number is drawn from an integer polynomial that vanishes there.
  */
-import { multiplyPolynomials, type Polynomial, squareFreePart, trimmed } from "./polynomial.js";
-import { gcdBig, Rational } from "./rational.js";
+import { isSquareFree, multiplyPolynomials, type Polynomial, squareFreePart, trimmed } from "./polynomial.js";
+import { bitLength, gcdBig, Rational } from "./rational.js";
 
 /** Beyond this dimension over Q an expression's kind is left unproved. */
 export const TOWER_LIMIT = 64;
+
+/** Degree times bits up to which the square-free part of a characteristic polynomial is sought. */
+const GCD_LIMIT = 1 << 16;
 
 /**
  * sum num[i] m_i / den over the monomials m_i in the radicals: the first radical's power
@@ -31,6 +34,8 @@ type Vector = readonly Polynomial[];
 const constant = (c: bigint): Polynomial => (c === 0n ? [] : [c]);
 const vector = (num: readonly bigint[], length: number): Vector =>
   Array.from({ length }, (_, i) => constant(num[i] ?? 0n));
+
+const isZero = (x: Vector) => x.every((f) => f.length === 0);
 
 function addPolynomials(f: Polynomial, g: Polynomial): Polynomial {
   if (f.length < g.length) return addPolynomials(g, f);
@@ -115,8 +120,9 @@ export class Tower {
     const [xs, ys] = [this.parts(x, level), this.parts(y, level)];
     const slots: Vector[] = Array.from({ length: 2 * degree - 1 }, () => vector([], below));
     xs.forEach((u, i) => {
+      if (isZero(u)) return;
       ys.forEach((v, j) => {
-        slots[i + j] = sum(slots[i + j], this.product(u, v, level - 1));
+        if (!isZero(v)) slots[i + j] = sum(slots[i + j], this.product(u, v, level - 1));
       });
     });
     // r^(degree + i) = value r^i.
@@ -144,11 +150,14 @@ export class Tower {
    * A monic square-free integer polynomial that vanishes at den times the number: the
    * square-free part of the characteristic polynomial, norm(t - v), of the multiplication
    * by v = den times the element (v is integral, so the coefficients are integers).
+   * Undefined where that part would take too long to find.
    */
-  annihilator(a: Element): Polynomial {
+  annihilator(a: Element): Polynomial | undefined {
     const level = this.level(a.num.length);
     const v = vector(a.num, this.dims[level]).map((f) => multiplyPolynomials([-1n], f));
-    return squareFreePart(this.norm(sum(v, [[0n, 1n], ...vector([], v.length - 1)]), level));
+    const f = this.norm(sum(v, [[0n, 1n], ...vector([], v.length - 1)]), level);
+    if (isSquareFree(f)) return f;
+    return f.length * Math.max(...f.map(bitLength)) > GCD_LIMIT ? undefined : squareFreePart(f);
   }
 
   /**
