@@ -121,8 +121,8 @@ export function readObservables(
     const at = (field: string) => below("/observables", i, field);
     const name = label ?? `observable ${i}`;
     if (box !== undefined && !findings.at(at("box"))) {
-      const low = box.low && numbersAt(box.low, below(at("box"), "low"), d, findings);
-      const high = box.high && numbersAt(box.high, below(at("box"), "high"), d, findings);
+      const low = box.low ? numbersAt(box.low, below(at("box"), "low"), d, findings) : undefined;
+      const high = box.high ? numbersAt(box.high, below(at("box"), "high"), d, findings) : undefined;
       if (low !== undefined && high?.length === low.length) checkBox(box, low, high, at("box"), findings);
       return { type: "box", label: name, low: low ?? [], high: high ?? [] };
     }

@@ -82,9 +82,9 @@ const isWhole = (x: ExactNumber) => x.rational?.isInteger() === true;
 export function readMoves(moves: readonly WrittenMove[], d: number | undefined, findings: Findings): Move[] {
   const read = moves.map((move, i) => {
     const at = (field: string) => below("/moves", i, field);
-    const matrix = move.matrix && matrixAt(move.matrix, at("matrix"), d, findings);
+    const matrix = move.matrix ? matrixAt(move.matrix, at("matrix"), d, findings) : undefined;
     const weight = move.weight === undefined ? Rational.ONE : weightAt(move.weight, at("weight"), findings);
-    const translation = move.translation && numbersAt(move.translation, at("translation"), d, findings);
+    const translation = move.translation ? numbersAt(move.translation, at("translation"), d, findings) : undefined;
     return { label: move.label ?? `move ${i}`, matrix, weight, translation };
   });
   checkMixture(moves, findings);
