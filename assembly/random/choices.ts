@@ -28,10 +28,17 @@ export function mulHigh(a: u64, b: u64): u64 {
   return ah * bh + (m >> 32) + ((al * bh + (m & 0xffffffff)) >> 32);
 }
 
-/** The index i with cumulative[i - 1] <= t < cumulative[i]; linear, since lists are short. */
-function locate(cumulative: usize, t: u64): u32 {
+/**
+ * The index i with cumulative[i - 1] <= t < cumulative[i]. Short lists are counted through:
+ * a draw's outcome is what a processor cannot predict, so a branch on it would cost more.
+ */
+function locate(cumulative: usize, t: u64, moves: u32): u32 {
   let i: u32 = 0;
-  while (load<u64>(cumulative + ((<usize>i) << 3)) <= t) i++;
+  if (moves <= 8) {
+    for (let j: u32 = 0; j + 1 < moves; j++) i += u32(load<u64>(cumulative + ((<usize>j) << 3)) <= t);
+  } else {
+    while (load<u64>(cumulative + ((<usize>i) << 3)) <= t) i++;
+  }
   return i;
 }
 
@@ -83,7 +90,7 @@ export function drawMoves(
       const m = <u64>load<u32>(block + ((<usize>(n & 3)) << 2)) * total;
       t = (m & 0xffffffff) >= reject ? m >> 32 : redraw(total, n, replicate, k0, k1);
     }
-    store<u16>(out + ((<usize>i) << 1), <u16>locate(cumulative, t));
+    store<u16>(out + ((<usize>i) << 1), <u16>locate(cumulative, t, moves));
   }
 }
 
