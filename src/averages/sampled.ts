@@ -24,16 +24,17 @@ const MOST_STEPS = 2 ** 31;
 const MOST_REPLICATES = 2 ** 20;
 
 /**
- * Moves and replicates that an effort affords on two cores: quick about 2 s, standard 15 s,
- * thorough 2 min in dimension 2. A move costs more in higher dimensions, so paths get
+ * Moves and replicates that an effort affords on two cores in dimension 2, at most: quick
+ * about 2 s, standard 15 s, thorough 2 min; translations cost the most, a walk without them
+ * takes about a third. A move costs more in higher dimensions, so paths get
  * shorter there, by (2/d)^(3/2); the number of replicates decides what coverage and
  * distance can tell, and stays.
  */
 export function defaultSampling(effort: Effort, dimension: number): { steps: number; replicates: number } {
   const table = {
     quick: { steps: 16_000, replicates: 500 },
-    standard: { steps: 64_000, replicates: 800 },
-    thorough: { steps: 256_000, replicates: 1000 },
+    standard: { steps: 48_000, replicates: 800 },
+    thorough: { steps: 160_000, replicates: 1000 },
   };
   const { steps, replicates } = table[effort];
   const share = 2 / dimension;
