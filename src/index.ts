@@ -2,6 +2,7 @@
 export type { Fault } from "./errors.js";
 export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
 export { exactRational } from "./exact/number.js";
+export { type GrowthOptions, type GrowthResult, growth } from "./growth/growth.js";
 export { loadKernel } from "./kernel/kernel.js";
 export { type OrbitsOptions, orbits } from "./orbits/orbits.js";
 export type { OrbitKind, OrbitsResult } from "./orbits/result.js";

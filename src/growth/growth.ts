@@ -16,7 +16,7 @@ import { exponentEstimates, logNormVariance, type RateEstimate } from "./interva
 import { type PlanarGroup, planarGroup } from "./lines.js";
 import { type GrowthOptions, type GrowthWishes, readOptions } from "./options.js";
 import { samplingPlan } from "./plan.js";
-import { type PressureEstimator, pressureEstimator, pressureTable } from "./pressure.js";
+import { type PressureEstimator, pressureEstimator, pressureTable, singleEstimator } from "./pressure.js";
 import { exactLogNorms } from "./products.js";
 import { rateTable } from "./rate.js";
 import type { GrowthResult } from "./result.js";
@@ -86,7 +86,10 @@ async function sampled(walk: Walk, wishes: GrowthWishes, session: Session, real:
     replicates: samples.replicates,
     moves: plan.steps,
     warnings,
-    estimator: pressureEstimator(walk, session, real),
+    estimator:
+      walk.moves.length > 1
+        ? pressureEstimator(walk, session, real)
+        : singleEstimator(widened[0] as RateEstimate, session.level),
   };
 }
 

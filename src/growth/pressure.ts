@@ -80,6 +80,16 @@ function spatial(walk: Walk, session: Session): PressureEstimator {
   };
 }
 
+/** One move: nothing is random, Lambda(s) = s lambda_1. */
+export function singleEstimator(top: { value: number; halfWidth: number }, level: number): PressureEstimator {
+  const quantity = (s: number) => {
+    const half = Math.abs(s) * top.halfWidth;
+    const interval = { low: s * top.value - half, high: s * top.value + half };
+    return estimatedQuantity(s * top.value, "one move: s times the first exponent", interval, level);
+  };
+  return { estimate: async (values) => values.map(quantity) };
+}
+
 export function pressureEstimator(walk: Walk, session: Session, real: Real): PressureEstimator {
   return walk.dimension === 2 ? planar(walk, session, real) : spatial(walk, session);
 }

@@ -191,6 +191,7 @@ describe("growth where the conditions fail", () => {
     const root = real.log(1.324717957244746);
     expect(top).toBeCloseTo(root, 12);
     expect(quantityNumber(result.exponents[2]!)).toBeCloseTo(-root / 2, 3);
+    for (const { s, value } of result.pressure) expect(quantityNumber(value)).toBeCloseTo(s * root, 10);
     const blocks = Array.from({ length: 8 }, (_, i) =>
       Array.from({ length: 8 }, (_, j) => (i >> 1 !== j >> 1 ? 0 : M[i & 1]![j & 1]!)),
     );
