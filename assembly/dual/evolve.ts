@@ -2,8 +2,8 @@
  * One move of the dual walk: sum of c_k e_k goes to the sum of p_i exp(2 pi i k.b_i) c_k
  * at M_i k over all moves i, equal frequencies merged.
  *
- * Products are made in blocks: first all images, phases and hashes of a block, with a look
- * at each home slot, so that the memory's answers overlap; then the insertions, in the
+ * Products are made in blocks: first all images, phases and hashes of a block, then a look
+ * at each home slot, so that the memory's answers overlap, then the insertions, in the
  * order of the source table. The order of every addition is fixed by the two tables'
  * sizes, so the result has the same bits everywhere.
  *
@@ -28,7 +28,7 @@ import {
 } from "./table";
 
 const BLOCK: u32 = 256;
-/** A staged product: 8 components, two doubles, the home slot's address, and the word seen there (so that the look is kept). */
+/** A staged product: 8 components, two doubles, the home slot's address, a spare word. */
 const STAGED: usize = 96;
 const stage = memory.data(24576, 16);
 /** Components stay below this: 2^63 less 2^16, more than the bound's own rounding, (d + 2) 2^-53 2^63. */
@@ -69,8 +69,19 @@ function image(out: usize, key: usize, matrix: usize, dimension: u32, modulus: i
   }
 }
 
+/**
+ * A tight loop of independent looks at the home slots, so that the memory's answers overlap;
+ * what was seen is stored, or the compiler would leave the looks out.
+ */
+function lookAhead(count: u32): void {
+  let seen: u64 = 0;
+  for (let i: u32 = 0; i < count; i++) seen ^= load<u64>(<usize>load<u64>(stage + STAGED * i, 80));
+  store<u64>(stage, seen, 88);
+}
+
 /** Adds the staged products to the table; false where it is full. */
 function insertStaged(to: usize, count: u32, dimension: u32, width: u32): bool {
+  lookAhead(count);
   const stride = (<usize>(dimension + width)) << 3;
   const keyBytes = (<usize>dimension) << 3;
   const limit = load<u32>(to, 8);
@@ -120,7 +131,7 @@ function insertStaged(to: usize, count: u32, dimension: u32, width: u32): bool {
   return true;
 }
 
-/** Folds the staged key, flips the coefficient where the fold asks, finds and looks at the home slot. */
+/** Folds the staged key, flips the coefficient where the fold asks, finds the home slot. */
 function settle(to: usize, at: usize, dimension: u32, width: u32, fold: u32): void {
   if (fold != FOLD_NONE && foldKey(at, dimension) && fold != FOLD_EVEN) {
     const last = at + 64 + ((<usize>(width - 1)) << 3);
@@ -129,7 +140,6 @@ function settle(to: usize, at: usize, dimension: u32, width: u32, fold: u32): vo
   const h = dimension == 2 ? hash2(load<i64>(at), load<i64>(at, 8)) : hashKey(at, dimension);
   const slot = to + HEADER + <usize>home(h, slotsOf(to)) * ((<usize>(dimension + width)) << 3);
   store<u64>(at, slot, 80);
-  store<u64>(at, load<u64>(slot), 88);
 }
 
 /** Puts `count` given terms (d components, two doubles each) into the table. OK or FULL. */

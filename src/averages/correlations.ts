@@ -40,9 +40,11 @@ export interface CorrelationSums {
   readonly frequencies: number;
 }
 
-/** One side of the pairing: the table it is in, what is proved of it, and its depth. */
+/** One side of the pairing: the table it is in, what is proved of it. */
 interface Side {
   table: number;
+  /** Frequencies one step earlier. */
+  before: number;
   bound: TableBound;
 }
 
@@ -54,9 +56,9 @@ export async function correlationSums(payload: CorrelationsPayload): Promise<Cor
   const tables = new DualTables(kernel, shape, entries, tableCount);
   const phases = [...forward, ...(backward ?? [])].some((m) => m.translation !== undefined);
   const movesOf = { ahead: tables.place(forward), back: tables.place(backward ?? forward) };
-  const ahead: Side = { table: 0, bound: payload.bound };
+  const ahead: Side = { table: 0, before: terms.length, bound: payload.bound };
   tables.fill(0, terms);
-  const back: Side = backward === undefined ? { ...ahead } : { table: 1, bound: payload.bound };
+  const back: Side = backward === undefined ? { ...ahead } : { table: 1, before: terms.length, bound: payload.bound };
   if (backward !== undefined) tables.fill(1, terms);
   let spare = tableCount - 1;
 
@@ -73,8 +75,10 @@ export async function correlationSums(payload: CorrelationsPayload): Promise<Cor
   const advance = (side: Side, moves: typeof movesOf.ahead): StepEnd | "budget" => {
     spent += tables.count(side.table) * moves.count;
     if (spent > payload.products) return "budget";
+    if (tables.wouldFill(side.table, side.before, moves)) return "full";
     const end = tables.evolve(side.table, spare, moves);
     if (end !== "done") return end;
+    side.before = tables.count(side.table);
     const left = side.table;
     side.table = spare;
     side.bound = afterStep(side.bound, moves.count, phases);

@@ -15,6 +15,8 @@
  *   g on L and g o T_1 on A_1^T L, another line; so g is the part of f on L, and one looks.
  * - D is finite: g is sought along the orbits of single moves; not found proves nothing here.
  */
+
+import { decidePlane, type PlaneFinding } from "../conditions/plane.js";
 import {
   compose,
   composeEntry,
@@ -26,18 +28,16 @@ import {
   subtract,
 } from "../dual/function.js";
 import { apply } from "../dual/matrix.js";
-import { isStronglyIrreducible, type PlaneGroup, planeGroup } from "../dual/plane.js";
 import { canonical, type TrigPolynomial } from "../dual/polynomial.js";
 import type { Verdict } from "../quantity/quantity.js";
 import { inverseMatrix, multiplyMatrices, transpose } from "../walk/integers.js";
 import type { Move, Walk } from "../walk/walk.js";
 
-/** What the moves alone decide, for all observables. */
+/** What the moves alone decide, for all observables; in dimension 2 only. */
 export interface Differences {
-  /** In dimension 2: proved strongly irreducible; elsewhere undefined. */
-  readonly stronglyIrreducible: boolean | undefined;
-  /** In dimension 2: the group of the A_i A_j^-1 on covectors. */
-  readonly group: PlaneGroup | undefined;
+  readonly moves: PlaneFinding;
+  /** The group D on covectors: it has finite orbits there where it is finite or keeps a rational line. */
+  readonly group: PlaneFinding;
 }
 
 export interface Degeneracy {
@@ -46,13 +46,18 @@ export interface Degeneracy {
   readonly g?: TrigPolynomial;
 }
 
-export function differencesOf(walk: Walk): Differences {
-  if (walk.dimension !== 2) return { stronglyIrreducible: undefined, group: undefined };
-  const first = inverseMatrix((walk.moves[0] as Move).matrix);
-  return {
-    stronglyIrreducible: isStronglyIrreducible(walk.moves.map((m) => m.matrix)),
-    group: planeGroup(walk.moves.map((m) => transpose(multiplyMatrices(m.matrix, first)))),
-  };
+export function differencesOf(walk: Walk): Differences | undefined {
+  if (walk.dimension !== 2) return undefined;
+  const first = walk.moves[0] as Move;
+  const back = inverseMatrix(first.matrix);
+  const differences = walk.moves.map(
+    (m): Move => ({
+      ...m,
+      matrix: transpose(multiplyMatrices(m.matrix, back)),
+      determinant: m.determinant === first.determinant ? 1 : -1,
+    }),
+  );
+  return { moves: decidePlane(walk.moves), group: decidePlane(differences) };
 }
 
 const LONGEST_CHAIN = 200;
@@ -138,7 +143,7 @@ const undecided = (reason: string, evidence: Record<string, unknown>): Degenerac
 });
 
 /** The verdict for a trigonometric polynomial under Haar measure. */
-export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differences): Degeneracy {
+export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differences | undefined): Degeneracy {
   if (f.harmonics.length === 0) {
     return {
       verdict: { verdict: "holds", reason: "The observable is constant.", evidence: {} },
@@ -152,23 +157,23 @@ export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differe
     if (g !== undefined && solves(exact, g, walk) === "yes") return found(g);
     tried.push(`sums along the orbits of "${move.label}"`);
   }
-  const { stronglyIrreducible, group } = differences;
-  if (walk.dimension !== 2 || group === undefined || stronglyIrreducible !== true) {
+  if (differences?.moves.type !== "strongly irreducible") {
     const why =
-      walk.dimension === 2
+      differences !== undefined
         ? "The moves are not strongly irreducible: no contraction is at hand that would turn variance 0 into an equation."
         : "In dimension 3 and more the finite orbits of the differences are not decided here.";
     return undecided(`${why} No g with f - mean = g - g(A_i x + b_i) was found.`, { tried });
   }
-  if (group.kind === "none") return withoutFiniteOrbit();
-  if (group.kind === "finite") {
+  const { group } = differences;
+  if (group.type === "irrational lines" || group.type === "strongly irreducible") return withoutFiniteOrbit(group);
+  if (group.type === "finite") {
     const order = group.elements.length;
     return undecided(
       `The A_i A_j^-1 generate a finite group (order ${order}), so that the variance may be 0; no g was found.`,
       { tried, order },
     );
   }
-  const line = group.line;
+  const line = group.line as [bigint, bigint];
   const onLine = new Map(
     [...exact].filter(
       ([
@@ -198,10 +203,16 @@ export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differe
   return undecided("Equality of irrational coefficients or phases could not be decided.", evidence);
 }
 
-function withoutFiniteOrbit(): Degeneracy {
+function withoutFiniteOrbit(group: PlaneFinding & { type: "irrational lines" | "strongly irreducible" }): Degeneracy {
+  const { word } = group;
   return fails(
     "The A_i A_j^-1 have no finite orbit on non-zero frequencies, so that no observable but a constant has variance 0.",
-    { group: "infinite, and no rational line of frequencies is kept up to sign" },
+    {
+      hyperbolicElement: {
+        productOf: word.indices.map((i) => `transpose of A_${i} A_0^-1`),
+        matrix: word.matrix.map((row) => row.map(String)),
+      },
+    },
   );
 }
 
@@ -209,14 +220,15 @@ function withoutFiniteOrbit(): Degeneracy {
  * The verdict for the indicator of a box under Haar measure. Its frequencies fill a
  * coordinate axis (one side is not whole) or infinitely many lines, never a line and its image alone.
  */
-export function boxDegeneracy(whole: boolean, walk: Walk, { stronglyIrreducible, group }: Differences): Degeneracy {
+export function boxDegeneracy(whole: boolean, differences: Differences | undefined): Degeneracy {
   if (whole) {
     const g = polynomialFrom(new Map());
     return { verdict: { verdict: "holds", reason: "The box is the whole torus.", evidence: {} }, g };
   }
-  if (walk.dimension === 2 && stronglyIrreducible === true && group !== undefined) {
-    if (group.kind === "none") return withoutFiniteOrbit();
-    if (group.kind === "line") {
+  if (differences?.moves.type === "strongly irreducible") {
+    const { group } = differences;
+    if (group.type === "irrational lines" || group.type === "strongly irreducible") return withoutFiniteOrbit(group);
+    if (group.type === "rational line") {
       return fails(
         "Variance 0 would need a g whose frequencies, and the box's, lie on one line and its image under A_1^T; a box's never do.",
         { line: group.line.map(String) },

@@ -1,5 +1,5 @@
 /** What is known of time averages without sampling: under Haar measure, or on a rational start's finite orbit. */
-import { isStronglyIrreducible } from "../dual/plane.js";
+import { decidePlane } from "../conditions/plane.js";
 import { estimatedQuantity, quantityNumber } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
 import type { Walk } from "../walk/walk.js";
@@ -62,8 +62,7 @@ export async function exactAverages(
     };
   }
   const warnings: string[] = [];
-  const moves = walk.moves.map((m) => m.matrix);
-  if (walk.dimension === 2 && isStronglyIrreducible(moves) !== true) {
+  if (walk.dimension === 2 && decidePlane(walk.moves).type !== "strongly irreducible") {
     warnings.push(
       "The moves are not strongly irreducible: the numbers are those of Haar measure, which time averages from this start need not follow.",
     );

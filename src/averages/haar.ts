@@ -20,7 +20,7 @@ const LAST_SHOWN = 5;
 
 const END: Readonly<Record<CorrelationSums["end"], string>> = {
   done: "as many terms as are ever computed",
-  full: "the frequency table is full; a higher effort allows a larger one",
+  full: "the frequency table would be full; a higher effort allows a larger one",
   overflow: "a frequency of the next term needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher effort allows more",
 };
@@ -97,9 +97,9 @@ function ofTerms(
   return { label, mean, variance, degenerate, correlations, lastTerms, reached, notes };
 }
 
-function ofBox(box: Box, walk: Walk, differences: Differences): ExactFinding {
+function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
   const whole = isWholeTorus(box);
-  const { verdict } = boxDegeneracy(whole, walk, differences);
+  const { verdict } = boxDegeneracy(whole, differences);
   const norm = boxSquareNorm(box);
   return {
     label: box.label,
@@ -149,7 +149,7 @@ export async function haarFindings(walk: Walk, session: Session, budget: ExactBu
   session.checkStop();
   return parts.map((part) => {
     const { label } = part.observable as Observable;
-    if (part.f === undefined) return ofBox(part.observable as Box, walk, differences);
+    if (part.f === undefined) return ofBox(part.observable as Box, differences);
     const at = followed.indexOf(part as (typeof followed)[number]);
     return ofTerms(label, part.f, part.degeneracy, sums[at]);
   });

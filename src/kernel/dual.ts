@@ -180,6 +180,15 @@ export class DualTables {
     throw new Error(`dualEvolve answered ${status}`);
   }
 
+  /**
+   * Whether the next step from `table` would fill the tables by far, were it to grow like the last one
+   * (from `before` frequencies): a step that ends `full` costs as much as one that is of use.
+   */
+  wouldFill(table: number, before: number, moves: PlacedMoves): boolean {
+    const count = this.count(table);
+    return count * Math.min(moves.count, count / Math.max(1, before)) > 1.2 * this.entries;
+  }
+
   count(table: number): number {
     return this.kernel.raw.dualCount(this.at[table] as number) >>> 0;
   }

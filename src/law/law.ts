@@ -40,7 +40,7 @@ function constantLaw(walk: Walk, k: readonly bigint[], q: bigint | undefined): C
 
 const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
   done: "all steps asked for",
-  full: "the frequency table is full; a higher --effort allows a larger one",
+  full: "the frequency table would be full; a higher --effort allows a larger one",
   overflow: "a frequency of the next step needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher --effort allows more",
 };
@@ -68,6 +68,7 @@ async function follow(walk: Walk, request: LawRequest, q: bigint | undefined, se
   let now = 0;
   let spent = 0;
   let sinceBreath = 0;
+  let before = 1;
   const coefficients: LawCoefficient[] = [];
   for (let step = 0; ; step++) {
     coefficients.push({ step, ...read(tables, now, bound), frequencies: tables.count(now) });
@@ -82,8 +83,9 @@ async function follow(walk: Walk, request: LawRequest, q: bigint | undefined, se
       sinceBreath = 0;
     }
     session.checkStop();
-    const end = tables.evolve(now, 1 - now, moves);
+    const end = tables.wouldFill(now, before, moves) ? "full" : tables.evolve(now, 1 - now, moves);
     if (end !== "done") return { coefficients, end };
+    before = tables.count(now);
     now = 1 - now;
     bound = afterStep(bound, moves.count, phases);
   }
