@@ -1,9 +1,13 @@
 /** The library: one function a question. The same entry serves Node and browsers. */
+export { type AveragesOptions, averages } from "./averages/averages.js";
+export type { AveragesResult, ObservableResult, SampledAverage } from "./averages/result.js";
 export type { Fault } from "./errors.js";
 export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
 export { exactRational } from "./exact/number.js";
 export { type GrowthOptions, type GrowthResult, growth } from "./growth/growth.js";
 export { loadKernel } from "./kernel/kernel.js";
+export { type LawOptions, law } from "./law/law.js";
+export type { LawCoefficient, LawResult } from "./law/result.js";
 export { type OrbitsOptions, orbits } from "./orbits/orbits.js";
 export type { OrbitKind, OrbitsResult } from "./orbits/result.js";
 export type { Quantity, Standing, Verdict } from "./quantity/quantity.js";
