@@ -107,7 +107,9 @@ export function shown(q: Quantity | null | undefined, whole = false): Shown {
   const low = q.low === undefined || q.low === null ? undefined : decimalValue(q.low);
   const high = q.high === undefined || q.high === null ? undefined : decimalValue(q.high);
   if (low === undefined || high === undefined) {
-    return { value: number === 0 ? "0" : significant(number), standing: `${words}, no interval` };
+    // A count to four digits, too.
+    const text = whole && Math.abs(number) >= 1 ? brief(Math.ceil(Number(number.toPrecision(4)))) : significant(number);
+    return { value: text, standing: `${words}, no interval` };
   }
   const standing =
     q.standing === "estimated" && q.level !== undefined ? `${words}, ${percent(q.level)} interval` : words;

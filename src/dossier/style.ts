@@ -47,11 +47,13 @@ dl.answers { margin: 1.2rem 0 0; }
 dl.answers > div { display: grid; grid-template-columns: 12.5rem minmax(0, 1fr); gap: .2rem 1.6rem; padding: .85rem 0; border-top: 1px solid var(--rule); break-inside: avoid; }
 dl.answers > div:last-child { border-bottom: 1px solid var(--rule); }
 dl.answers dt { font-size: .95rem; font-weight: 600; line-height: 1.4; padding-top: .12rem; }
+dl.answers dt a { text-decoration: none; } dl.answers dt a:hover { text-decoration: underline; }
 dl.answers dd { margin: 0; }
 dl.answers dd p { margin: 0 0 .35rem; }
 dl.answers dd p:last-child { margin-bottom: 0; }
 dl.answers .tabled { margin: 0; } dl.answers table { min-width: 0; width: 100%; }
 dl.plain { font-size: .92rem; font-family: var(--sans); display: grid; grid-template-columns: minmax(min-content, max-content) minmax(0, 1fr); gap: .25rem 1.2rem; margin: .8rem 0; }
+dl.plain dl.plain { margin: 0 0 .5rem; }
 dl.plain dt { color: var(--soft); } dl.plain dd { margin: 0; overflow-wrap: anywhere; }
 .scroll { overflow-x: auto; margin: 1rem 0; max-width: 100%; }
 table { border-collapse: collapse; font-size: .89rem; line-height: 1.4; font-variant-numeric: lining-nums tabular-nums; min-width: min(100%, 30rem); }

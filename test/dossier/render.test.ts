@@ -48,7 +48,7 @@ describe("the report", () => {
       "plot-pressure",
       "plot-rate",
       "plot-traps",
-      ...[1, 2].flatMap((i) => [`plot-running-${i}`, `plot-correlations-${i}`, `plot-histogram-${i}`]),
+      ...[1, 2].flatMap((i) => [`plot-correlations-${i}`, `plot-running-${i}`, `plot-histogram-${i}`]),
       "plot-law",
       "plot-orbits",
       "plot-positions",

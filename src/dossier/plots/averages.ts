@@ -24,13 +24,13 @@ export function correlationsPlot(o: ObservableResult, index: number): Html | und
   const negative = rows.some((r) => r.value < 0);
   const missing =
     zeros.length > 0 ? html` Exactly zero at ${zeros.length} of the ${all.length} lags (no mark there).` : undefined;
-  return smallFigure({
+  return figure({
     id: `plot-correlations-${index}`,
     label: `Correlations of the observable ${o.label} against the lag n, on a logarithmic scale.`,
     caption: html`<b>Correlations</b> ⟨<i>f</i>, <i>P<sup>n</sup> f</i>⟩ of “${o.label}”, centred.${negative ? " Filled dots: positive; open squares: negative." : ""}${missing} The variance is the first of them plus twice the sum of the others.`,
     draw: (size) => ({
       ...MARGINS,
-      height: size.narrow ? 220 : 250,
+      height: 230,
       x: { domain: x },
       y: { type: "log", domain: y },
       marks: [
@@ -72,13 +72,13 @@ export function runningPlot(o: ObservableResult, index: number, level: number): 
     ...enveloped.flatMap((r) => [r.under, r.over]),
   ]);
   const cut = from > 0 ? html` From move ${rows[from]?.moves ?? 1} on.` : undefined;
-  return figure({
+  return smallFigure({
     id: `plot-running-${index}`,
     label: `Running time average of the observable ${o.label} against the number of moves, with its band.`,
-    caption: html`<b>Running average</b> of “${o.label}” along one exact walk (line), with its ${percent(level)} interval (band). Dashed: the limit; dotted: the envelope of the law of the iterated logarithm about it, which the line touches again and again but from some move on does not overstep by any fixed share.${cut}`,
+    caption: html`<b>Running average</b> of “${o.label}” along one exact walk (line), with its ${percent(level)} interval (band). Dashed: the limit ${shown(o.mean).value}; dotted: the envelope of the law of the iterated logarithm about it, which from some move on no walk oversteps by a fixed share.${cut}`,
     draw: (size) => ({
       ...MARGINS,
-      height: size.narrow ? 220 : 270,
+      height: 230,
       x: { type: "log", domain: x },
       y: { domain: y },
       marks: [
@@ -89,17 +89,6 @@ export function runningPlot(o: ObservableResult, index: number, level: number): 
         Plot.lineY(enveloped, { x: "moves", y: "under", stroke: "currentColor", strokeDasharray: "1.5 3" }),
         Plot.ruleY([mean], { stroke: "var(--c2)", strokeDasharray: "6 3", strokeWidth: 1.5 }),
         Plot.lineY(kept, { x: "moves", y: "average", stroke: "var(--c1)", strokeWidth: 1.5 }),
-        Plot.text([mean], {
-          x: () => x[1],
-          y: (d: number) => d,
-          text: () => `limit ${shown(o.mean).value}`,
-          textAnchor: "end",
-          dy: -9,
-          dx: -4,
-          fill: "var(--c2)",
-          stroke: "var(--paper)",
-          strokeWidth: 4,
-        }),
       ],
     }),
   });
@@ -148,7 +137,7 @@ export function histogramPlot(o: ObservableResult, index: number): Html | undefi
     caption: html`<b>Is the error normal?</b> Time averages of “${o.label}” over ${brief(o.sampled.moves)} moves in ${values.length} independent walks, less their limit and divided by their standard error (bars), and the normal density (line).${told}`,
     draw: (size) => ({
       ...MARGINS,
-      height: size.narrow ? 220 : 250,
+      height: 230,
       x: { domain: x },
       y: { domain: y },
       marks: [

@@ -14,9 +14,19 @@ function ends(q: Quantity): { low: number; high: number } {
   return { low: q.low === undefined ? at : Number(q.low), high: q.high === undefined ? at : Number(q.high) };
 }
 
+/** Of points evenly spaced in n, the later ones would run together on a logarithmic axis: a dozen for each power of ten is kept. */
+function thinned<T extends { readonly moves: number }>(rows: readonly T[]): T[] {
+  const kept: T[] = [];
+  for (const [i, row] of rows.entries()) {
+    const last = kept[kept.length - 1];
+    if (last === undefined || row.moves >= 1.2 * last.moves || i === rows.length - 1) kept.push(row);
+  }
+  return kept;
+}
+
 /** Undefined where there are too few points to plot. */
 export function growthCurve(growth: GrowthResult, level: number): Html | undefined {
-  const rows = growth.curve.filter((r) => r.moves >= 1 && finite(r.mean, r.low, r.high));
+  const rows = thinned(growth.curve.filter((r) => r.moves >= 1 && finite(r.mean, r.low, r.high)));
   const lambda = growth.exponents[0];
   if (rows.length < 2 || lambda === undefined) return undefined;
   const limit = quantityNumber(lambda);

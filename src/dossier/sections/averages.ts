@@ -2,12 +2,16 @@
 import type { ObservableResult } from "../../averages/result.js";
 import { quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html, joined, type Piece } from "../html.js";
-import { brief, percent, shown } from "../numbers.js";
+import { brief, percent, shown, significant } from "../numbers.js";
 import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.js";
 import { pair } from "../plots/figure.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { evidence } from "./evidence.js";
-import { missing, plural, quantity, quantityColumn, table, verdict, warning } from "./parts.js";
+import { missing, plural, quantity, quantityColumn, table, warning } from "./parts.js";
+import { prose } from "./prose.js";
+
+/** "fails" would be bad news nowhere else than here, where it is good. */
+const ZERO = { holds: "Yes.", fails: "No.", undecided: "Undecided." } as const;
 
 /** Observables that get plots of their own; the table has them all. */
 const PLOTTED = 4;
@@ -42,6 +46,14 @@ export function averagesSummary(dossier: Dossier): Html {
   );
 }
 
+/** Where all correlations but the first are 0 there is nothing to plot. */
+function flat(o: ObservableResult): Html | undefined {
+  const rest = o.correlations.slice(1);
+  if (rest.length < 2 || rest.some((q) => quantityNumber(q) !== 0)) return undefined;
+  const proved = rest.every((q) => q.standing === "exact");
+  return html`<p>The correlations ⟨<i>f</i>, <i>P<sup>n</sup> f</i>⟩ are ${proved ? "" : "computed as "}0 for <i>n</i> = 1 to ${rest.length}.</p>`;
+}
+
 function sampledTable(o: ObservableResult): Html {
   const s = o.sampled;
   const { median, largest } = s.iteratedLogarithm;
@@ -73,15 +85,15 @@ function block(o: ObservableResult, index: number, level: number): Html {
     true,
   );
   return html`<h3>${o.label}</h3>
-<p>Limit ${quantity(o.mean)}; ${o.mean.method}.</p>
-<p>Variance ${quantity(o.variance)}; ${o.variance.method}.${
+<p>Limit ${quantity(o.mean)}; ${prose(o.mean.method)}.</p>
+<p>Variance ${quantity(o.variance)}; ${prose(o.variance.method)}.${
     last.length > 0 &&
     html` The last correlations that went into it, which show how much may be missing: ${joined(
-      last.map((t) => `${shown(t.value).value} (n = ${t.step})`),
+      last.map((t) => `${significant(quantityNumber(t.value), 2)} (n = ${t.step})`),
       ", ",
     )}.`
-  }${o.reached !== undefined && html` They end at <i>n</i> = ${o.reached.step}: ${o.reached.reason}.`}</p>
-<p>Is the variance zero? ${verdict(o.degenerate)}. ${o.degenerate.reason}</p>
+  }${o.reached !== undefined && html` They end at <i>n</i> = ${o.reached.step}: ${prose(o.reached.reason)}.`}</p>
+<p>Is the variance zero? ${ZERO[o.degenerate.verdict]} ${prose(o.degenerate.reason)}</p>
 ${o.notes.map((n) => warning(n))}
 ${o.degenerate.verdict === "holds" && evidence(o.degenerate.evidence)}
 ${
@@ -92,8 +104,8 @@ ${
     o.stepsFor.map((s) => html`<td class="n">±${brief(s.halfWidth)}</td>${steps.show(s.steps)}`),
   )
 }
-${runningPlot(o, index, level)}
-${pair(correlationsPlot(o, index), histogramPlot(o, index))}
+${correlationsPlot(o, index) ?? flat(o)}
+${pair(runningPlot(o, index, level), histogramPlot(o, index))}
 ${sampledTable(o)}
 `;
 }

@@ -5,6 +5,7 @@ import { type Html, html } from "../html.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { evidence } from "./evidence.js";
 import { listed, missing, verdict } from "./parts.js";
+import { prose } from "./prose.js";
 
 const ROWS = [
   ["Strongly irreducible", "stronglyIrreducible"],
@@ -32,7 +33,7 @@ function block(found: ConditionsResult, name: string, key: (typeof ROWS)[number]
   const v = found[key];
   const shown = evidence(v.evidence);
   return html`<h3>${name}: ${verdict(v)}</h3>
-<p>${v.reason}</p>
+<p>${prose(v.reason)}</p>
 ${shown !== undefined && html`<details open><summary>Evidence</summary>${shown}</details>\n`}`;
 }
 

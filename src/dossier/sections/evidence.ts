@@ -1,6 +1,7 @@
 /** Evidence of a verdict as a reader can check it: names in words, matrices as grids, the rest as text. */
-import { type Html, html, type Piece } from "../html.js";
+import { type Html, html, joined, type Piece } from "../html.js";
 import { brief } from "../numbers.js";
+import { prose } from "./prose.js";
 
 /** "fixedLine" as "fixed line". */
 function words(name: string): string {
@@ -29,7 +30,8 @@ export function matrixGrid(rows: readonly (readonly (number | string | bigint)[]
 function show(value: unknown, depth: number): Piece {
   if (value === null || value === undefined) return "none";
   if (typeof value === "number") return brief(value, 10);
-  if (typeof value === "string" || typeof value === "boolean" || typeof value === "bigint") return entry(value);
+  if (typeof value === "string") return /^-?[\d./]+$/.test(value) ? entry(value) : prose(value);
+  if (typeof value === "boolean" || typeof value === "bigint") return entry(value);
   if (isMatrix(value)) return matrixGrid(value);
   if (depth > 4) return JSON.stringify(value);
   if (Array.isArray(value)) {
@@ -37,6 +39,15 @@ function show(value: unknown, depth: number): Piece {
     if (value.every(isEntry)) {
       const numbers = value.every((v) => typeof v !== "string" || /^-?[\d./]+$/.test(v));
       return numbers ? `(${value.map(entry).join(", ")})` : value.map(entry).join(", ");
+    }
+    // Words in the moves: short tuples of one after the other.
+    if (value.every((v) => Array.isArray(v) && v.length < 9 && v.every((x) => typeof x === "number"))) {
+      const even = new Set(value.map((v) => v.length)).size === 1;
+      if (!even || !isMatrix(value))
+        return joined(
+          value.map((v) => show(v, depth + 1)),
+          ", ",
+        );
     }
     if (value.every(isMatrix)) return html`<div class="matrices tight">${value.map(matrixGrid)}</div>`;
     return value.map((v) => html`<div>${show(v, depth + 1)}</div>`);

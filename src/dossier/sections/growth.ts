@@ -1,5 +1,6 @@
 /** Growth: exponents, the variance of the log norm, pressure, large deviations. */
 
+import type { GrowthResult } from "../../growth/result.js";
 import { quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html } from "../html.js";
 import { brief, significant } from "../numbers.js";
@@ -7,6 +8,7 @@ import { pair } from "../plots/figure.js";
 import { growthCurve, pressurePlot, ratePlot } from "../plots/growth.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { missing, number, quantity, quantityColumn, table, warning } from "./parts.js";
+import { prose } from "./prose.js";
 
 export function growthSummary(dossier: Dossier): Html {
   const growth = dossier.growth;
@@ -20,6 +22,25 @@ export function growthSummary(dossier: Dossier): Html {
 `;
 }
 
+/** Long, and the plot shows it: folded away. */
+function rateTable(growth: GrowthResult): Html | undefined {
+  if (growth.rate.length === 0) return undefined;
+  const rate = quantityColumn(
+    "rate",
+    growth.rate.map((r) => r.rate),
+  );
+  const methods = [...new Set(growth.rate.map((r) => r.rate.method))];
+  const one = methods.length === 1;
+  const found = table(
+    html`Large deviations: the chance of a speed other than λ<sub>1</sub> over <i>n</i> moves falls like exp(−<i>n</i> × rate)${one && html`; ${prose(methods[0] as string)}`}.`,
+    [{ name: "speed", n: true }, rate.column, ...(one ? [] : [{ name: "method" }])],
+    growth.rate.map(
+      (r) => html`${number(r.speed)}${rate.show(r.rate)}${!one && html`<td>${prose(r.rate.method)}</td>`}`,
+    ),
+  );
+  return growth.rate.length > 8 ? html`<details><summary>Table of rates</summary>${found}</details>\n` : found;
+}
+
 export function growthSection(dossier: Dossier): Html {
   const growth = dossier.growth;
   if (!isAnswered(growth))
@@ -31,37 +52,26 @@ ${missing(growth)}</section>
     html`Λ(<i>s</i>)`,
     growth.pressure.map((p) => p.value),
   );
-  const rate = quantityColumn(
-    "rate",
-    growth.rate.map((r) => r.rate),
-  );
   return html`<section id="growth"><h2>How fast do products grow?</h2>
 ${growth.warnings.map((w) => warning(w))}
 ${table(
   "Exponents, largest first, in natural logs per move.",
   [{ name: "" }, exponents.column, { name: "method" }],
   growth.exponents.map(
-    (q, i) => html`<th scope="row">λ<sub>${i + 1}</sub></th>${exponents.show(q)}<td>${q.method}</td>`,
+    (q, i) => html`<th scope="row">λ<sub>${i + 1}</sub></th>${exponents.show(q)}<td>${prose(q.method)}</td>`,
   ),
 )}
-<p>Limit of Var(log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|)/<i>n</i>: ${quantity(growth.logNormVariance, "squared logs per move")}; ${growth.logNormVariance.method}.</p>
+<p>Limit of Var(log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|)/<i>n</i>: ${quantity(growth.logNormVariance, "squared logs per move")}; ${prose(growth.logNormVariance.method)}.</p>
 ${growthCurve(growth, dossier.level)}
 ${
   growth.pressure.length > 0 &&
   table(
     html`Pressure Λ(<i>s</i>) = lim (1/<i>n</i>) log E |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|<sup><i>s</i></sup>, in natural logs per move.`,
     [{ name: html`<i>s</i>`, n: true }, pressure.column, { name: "method" }],
-    growth.pressure.map((p) => html`${number(p.s)}${pressure.show(p.value)}<td>${p.value.method}</td>`),
+    growth.pressure.map((p) => html`${number(p.s)}${pressure.show(p.value)}<td>${prose(p.value.method)}</td>`),
   )
 }
-${
-  growth.rate.length > 0 &&
-  table(
-    "Large deviations: the chance of a speed other than λ₁ over n moves falls like exp(−n × rate).",
-    [{ name: "speed", n: true }, rate.column, { name: "method" }],
-    growth.rate.map((r) => html`${number(r.speed)}${rate.show(r.rate)}<td>${r.rate.method}</td>`),
-  )
-}
+${rateTable(growth)}
 ${pair(pressurePlot(growth), ratePlot(growth))}
 <p class="note">Sampled: ${brief(growth.replicates)} independent products of ${brief(growth.moves)} moves.</p>
 </section>

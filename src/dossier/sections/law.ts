@@ -5,6 +5,13 @@ import { significant } from "../numbers.js";
 import { lawPlot, moduli } from "../plots/law.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { missing, plural, table, warning } from "./parts.js";
+import { prose } from "./prose.js";
+
+const STANDINGS = {
+  exact: "The coefficients are exact",
+  enclosed: "Real and imaginary part of each coefficient are proved to lie in the intervals that dossier.json gives",
+  estimated: "The coefficients are estimated",
+} as const;
 
 const LEVELS = [0.1, 0.01, 0.001] as const;
 
@@ -54,6 +61,9 @@ export function lawSection(dossier: Dossier): Html {
     return html`<section id="law"><h2>How fast is the start forgotten?</h2>
 ${missing(law)}</section>
 `;
+  const ends = [...new Set(laws.filter((l) => l.stoppedAt === undefined).map((l) => l.reached?.reason))].filter(
+    (r) => r !== undefined,
+  );
   const first = law.coefficients[law.coefficients.length - 1];
   return html`<section id="law"><h2>How fast is the start forgotten?</h2>
 ${lawPlot(laws)}
@@ -71,9 +81,9 @@ ${table(
     return html`<th scope="row">${name(l)}</th><td class="n">${last?.step ?? "–"}</td><td class="n">${last === undefined ? "–" : significant(last.modulus, 4)}</td>${LEVELS.map((level) => html`<td class="n">${belowFrom(l, level) ?? "–"}</td>`)}`;
   }),
 )}
-${laws.map((l) => l.stoppedAt !== undefined && warning(html`At <i>k</i> = ${name(l)} the computation ended after move ${l.stoppedAt.step}: ${l.stoppedAt.reason}`))}
+${laws.map((l) => l.stoppedAt !== undefined && warning(html`At <i>k</i> = ${name(l)} the computation ended after move ${l.stoppedAt.step}: ${prose(l.stoppedAt.reason)}`))}
 ${law.others.map((o) => missing(o))}
-${first !== undefined && html`<p class="note">Each coefficient is ${first.real.standing}: ${first.real.method}.</p>`}
+${first !== undefined && html`<p class="note">${STANDINGS[first.real.standing]}: ${prose(first.real.method)}.${ends.length > 0 && html` The computation ended: ${ends.map((e, i) => html`${i > 0 && "; "}${prose(e)}`)}.`}</p>`}
 <p class="note">A small coefficient at a few frequencies says that the law is near uniform as far as these waves see. It is no statement about secrecy: such a walk is no encryption, and mixing is not security.</p>
 </section>
 `;

@@ -38,7 +38,7 @@ export function orbitsSection(dossier: Dossier): Html {
 ${missing(orbits)}</section>
 `;
   const all = answered(dossier);
-  const rows = all.flatMap((r) => r.orbits.map((o) => ({ modulus: r.modulus, o })));
+  const rows = all.flatMap((r) => r.orbits.filter((o) => o.size > 1).map((o) => ({ modulus: r.modulus, o })));
   const second = quantityColumn(
     "second eigenvalue",
     rows.map((r) => r.o.secondEigenvalue),
@@ -46,7 +46,7 @@ ${missing(orbits)}</section>
   return html`<section id="orbits"><h2>How do finite orbits mix?</h2>
 ${orbitsPlot(all)}
 ${table(
-  html`Kinds of orbits of the points with denominator <i>q</i>${rows.length > MOST_ROWS ? `; the first ${MOST_ROWS} of ${rows.length}, all are in dossier.json` : ""}. Residual: of the eigenvalue's approximate eigenvector; it bounds the error only where the averaged operator is normal.`,
+  html`Kinds of orbits of the points with denominator <i>q</i>${rows.length > MOST_ROWS ? `; the first ${MOST_ROWS} of ${rows.length}, all are in dossier.json` : ""}. Orbits of a single point are left out. Residual: of the eigenvalue's approximate eigenvector; it bounds the error only where the averaged operator is normal.`,
   [
     { name: html`<i>q</i>`, n: true },
     { name: "size", n: true },

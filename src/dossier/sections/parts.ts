@@ -3,6 +3,7 @@ import type { Quantity, Verdict } from "../../quantity/quantity.js";
 import { type Html, html, type Piece } from "../html.js";
 import { brief, shown } from "../numbers.js";
 import type { Answer } from "../result.js";
+import { prose } from "./prose.js";
 
 /** A short value stays on one line; a long closed form may break. */
 function value(text: string): Html {
@@ -47,7 +48,7 @@ export function verdict(v: Verdict): Html {
 }
 
 export function warning(text: Piece): Html {
-  return html`<p class="warning" role="note"><b>Note.</b> ${text}</p>
+  return html`<p class="warning" role="note"><b>Note.</b> ${typeof text === "string" ? prose(text) : text}</p>
 `;
 }
 
@@ -74,8 +75,9 @@ export function number(x: number): Html {
 
 /** What stands in a section's place where its question has no answer; undefined where it has one. */
 export function missing(answer: Answer<object>): Html | undefined {
-  if ("stopped" in answer) return warning(html`Not answered: this question met a limit. ${answer.stopped as string}`);
-  if ("skipped" in answer) return html`<p>Not asked: ${answer.skipped as string}</p>\n`;
+  if ("stopped" in answer)
+    return warning(html`Not answered: this question met a limit. ${prose(answer.stopped as string)}`);
+  if ("skipped" in answer) return html`<p>Not asked: ${prose(answer.skipped as string)}</p>\n`;
   return undefined;
 }
 

@@ -2,17 +2,18 @@
 
 import { quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html } from "../html.js";
-import { brief, shown } from "../numbers.js";
+import { brief, significant } from "../numbers.js";
 import { pair } from "../plots/figure.js";
 import { besidePlot, cloudPlot, strayPlot } from "../plots/positions.js";
 import { type Dossier, isAnswered } from "../result.js";
-import { missing, quantity } from "./parts.js";
+import { missing } from "./parts.js";
+import { prose } from "./prose.js";
 
 export function precisionSummary(dossier: Dossier): Html {
   const { precision, trajectory } = dossier;
   const predicted =
     isAnswered(precision) &&
-    html`<p>A start stored in double precision determines no digit of the position after about ${quantity(precision.movesOfDouble, "moves")}; one decimal digit of the start lasts ${shown(precision.movesPerDigit).value} moves.</p>\n`;
+    html`<p>A start stored in double precision determines no digit of the position after about <span class="value">${brief(Math.round(quantityNumber(precision.movesOfDouble)))}</span> moves (53 ln 2/λ<sub>1</sub>, ${precision.movesOfDouble.standing}); one decimal digit of the start lasts about ${significant(quantityNumber(precision.movesPerDigit), 2)}.</p>\n`;
   const met =
     isAnswered(trajectory) &&
     (trajectory.partedAt === undefined
@@ -32,7 +33,7 @@ ${missing(trajectory)}${
   isAnswered(trajectory) &&
   html`${pair(besidePlot(trajectory, dimension), cloudPlot(trajectory, dimension))}
 ${strayPlot(trajectory, lambda)}
-<p class="note">Exact positions: ${trajectory.moves} moves, ${trajectory.digits} decimal digits of each coordinate, ${trajectory.standing}; ${trajectory.method}.</p>`
+<p class="note">Exact positions: ${trajectory.moves} moves, ${trajectory.digits} decimal digits of each coordinate, ${trajectory.standing === "exact" ? "the positions themselves are fractions and exact" : "every digit proved"}; ${prose(trajectory.method)}.</p>`
 }
 </section>
 `;

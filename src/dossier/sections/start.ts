@@ -5,6 +5,7 @@ import { moves, trapsPlot } from "../plots/traps.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { evidence } from "./evidence.js";
 import { missing, number, quantity, quantityColumn, standing, table, verdict } from "./parts.js";
+import { prose } from "./prose.js";
 
 const KINDS = {
   rational: "every coordinate is rational",
@@ -18,7 +19,7 @@ export function startSummary(dossier: Dossier): Html {
   const start = dossier.start;
   if (!isAnswered(start)) return missing(start) as Html;
   const trap = start.traps[0];
-  return html`<p>Equidistribution from this start: ${verdict(start.verdict)}. ${start.verdict.reason}</p>
+  return html`<p>Equidistribution from this start: ${verdict(start.verdict)}. ${prose(start.verdict.reason)}</p>
 ${start.orbit !== undefined && html`<p>Its denominator is ${start.orbit.denominator}; it stays on a finite orbit of size ${quantity(start.orbit.size, "points")}.</p>\n`}
 ${
   trap !== undefined &&
@@ -68,7 +69,7 @@ ${missing(start)}</section>
 `;
   const shownEvidence = evidence(start.verdict.evidence);
   return html`<section id="start"><h2>Is the start safe?</h2>
-<p>Kind: <b>${start.kind}</b> (${KINDS[start.kind]}). Equidistribution: ${verdict(start.verdict)}. ${start.verdict.reason}</p>
+<p>Kind: <b>${start.kind}</b> (${KINDS[start.kind]}). Equidistribution: ${verdict(start.verdict)}. ${prose(start.verdict.reason)}</p>
 ${shownEvidence !== undefined && html`<details open><summary>Evidence</summary>${shownEvidence}</details>\n`}
 ${start.orbit !== undefined && html`<p>Denominator ${start.orbit.denominator}, orbit of size ${quantity(start.orbit.size, "points")}: time averages converge to the orbit's mean, not to the integral over the torus.</p>\n`}
 ${trapsTable(dossier)}
