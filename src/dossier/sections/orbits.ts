@@ -5,7 +5,7 @@ import { type Html, html } from "../html.js";
 import { brief, shown, significant } from "../numbers.js";
 import { orbitsPlot } from "../plots/orbits.js";
 import { type Dossier, isAnswered } from "../result.js";
-import { missing, number, quantityColumn, standing, table } from "./parts.js";
+import { missing, number, quantityColumn, standing, table, warning } from "./parts.js";
 
 const MOST_ROWS = 40;
 
@@ -27,7 +27,7 @@ export function orbitsSummary(dossier: Dossier): Html {
     quantityNumber(b.o.secondEigenvalue) > quantityNumber(a.o.secondEigenvalue) ? b : a,
   );
   const second = worst.o.secondEigenvalue;
-  return html`<p>Among the denominators ${moduli}, the slowest orbit is one of ${brief(worst.o.size)} points with denominator ${worst.modulus}: second eigenvalue <span class="value">${shown(second).value}</span> ${standing(second)}.${quantityNumber(second) > 1 - 1e-9 && " That orbit does not mix: the walk on it goes round."}</p>
+  return html`<p>Among the denominators ${moduli}, the slowest orbit is one of ${brief(worst.o.size)} points with denominator ${worst.modulus}: second eigenvalue <span class="value">${shown(second).value}</span> ${standing(second)}.${worst.o.period > 1 && ` The walk on that orbit has period ${worst.o.period}: it goes round and does not mix.`}</p>
 `;
 }
 
@@ -46,7 +46,7 @@ ${missing(orbits)}</section>
   return html`<section id="orbits"><h2>How do finite orbits mix?</h2>
 ${orbitsPlot(all)}
 ${table(
-  html`Kinds of orbits of the points with denominator <i>q</i>${rows.length > MOST_ROWS ? `; the first ${MOST_ROWS} of ${rows.length}, all are in dossier.json` : ""}. Orbits of a single point are left out. Residual: of the eigenvalue's approximate eigenvector; it bounds the error only where the averaged operator is normal.`,
+  html`Kinds of orbits of the points with denominator <i>q</i>${rows.length > MOST_ROWS ? `; the first ${MOST_ROWS} of ${rows.length}, all are in dossier.json` : ""}. Orbits of a single point are left out. Residual |<i>P f</i> − μ <i>f</i>| of the eigenvalue μ found, |<i>f</i>| = 1: where the average is symmetric, some eigenvalue lies within it of μ; no more is proved.`,
   [
     { name: html`<i>q</i>`, n: true },
     { name: "size", n: true },
@@ -64,6 +64,7 @@ ${table(
     ),
 )}
 ${orbits.others.map((o) => missing(o))}
+${[...new Set(all.flatMap((r) => r.warnings))].map((w) => warning(w))}
 </section>
 `;
 }
