@@ -3,7 +3,9 @@ export { type AveragesOptions, averages } from "./averages/averages.js";
 export type { AveragesResult, ObservableResult, SampledAverage } from "./averages/result.js";
 export type { Fault } from "./errors.js";
 export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
-export { exactRational } from "./exact/number.js";
+export { ExactFault } from "./exact/fault.js";
+export { type ExactNumber, exactRational, type NumberKind } from "./exact/number.js";
+export { exactFromText } from "./exact/read.js";
 export { type GrowthOptions, type GrowthResult, growth } from "./growth/growth.js";
 export { loadKernel } from "./kernel/kernel.js";
 export { type LawOptions, law } from "./law/law.js";
@@ -19,3 +21,6 @@ export type { PositionShape, PositionSink, TrajectoryOptions } from "./trajector
 export type { TrajectoryResult } from "./trajectory/result.js";
 export { trajectory } from "./trajectory/trajectory.js";
 export { VERSION } from "./version.js";
+export { walkHash } from "./walk/hash.js";
+export { parseWalk, type WalkInput } from "./walk/parse.js";
+export type { Move, Observable, Start, Term, Walk } from "./walk/walk.js";
