@@ -8,9 +8,10 @@
  *   power   = primary [ "^" unary ]            so that -2^2 = -4 and 2^3^2 = 2^9
  *   primary = number | "pi" | "e" | ("sqrt" | "cbrt") "(" sum ")" | "(" sum ")"
  */
+import { type Builder, POWER_LIMIT } from "./builder.js";
 import { ExactFault } from "./fault.js";
 import { Rational } from "./rational.js";
-import { type Builder, POWER_LIMIT, type Real } from "./real.js";
+import type { Real } from "./real.js";
 
 const LENGTH_LIMIT = 2000;
 const DEPTH_LIMIT = 100;

@@ -1,9 +1,11 @@
 /** Exact numbers as the walk file writes them. */
+
+import { Builder } from "./builder.js";
 import { parseExpression } from "./expression.js";
 import { ExactFault } from "./fault.js";
 import { type ExactNumber, exactRational, fixedToNumber } from "./number.js";
 import type { Rational } from "./rational.js";
-import { Builder, enclose } from "./real.js";
+import { enclose } from "./real.js";
 import { polynomialRoot } from "./root.js";
 
 /** Polynomials up to this degree: the Sturm chain's coefficients grow with its square. */

@@ -23,6 +23,12 @@ describe("kinds", () => {
     ["1/(sqrt(2)-1)-sqrt(2)", "1"],
     ["(sqrt(6)-sqrt(2)*sqrt(3)+1)/(sqrt(6)-sqrt(2)*sqrt(3)+2)", "1/2"],
     ["sqrt(cbrt(8))^2/7", "2/7"],
+    ["sqrt(2)+sqrt(3)-sqrt(5+2*sqrt(6))", "0"],
+    ["sqrt(10)*sqrt(15)/sqrt(6)", "5"],
+    ["cbrt(12)*cbrt(18)", "6"],
+    // Ramanujan's identity, from memory.
+    ["cbrt(cbrt(2)-1)-cbrt(1/9)+cbrt(2/9)-cbrt(4/9)", "0"],
+    ["cbrt(5)*cbrt(7)/cbrt(35)", "1"],
     ["pi-pi", "0"],
     ["(e+1)/(e+1)", "1"],
     ["0*pi", "0"],

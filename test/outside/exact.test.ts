@@ -2,6 +2,7 @@
 import { Decimal } from "decimal.js";
 import { describe, expect, it } from "vitest";
 import { exactFromText } from "../../src/exact/read.js";
+import { fnv1a64 } from "../../src/walk/hash.js";
 
 const Wide = Decimal.clone({ precision: 1010 });
 
@@ -35,5 +36,16 @@ describe("constants and roots to 1000 digits", () => {
     const m = exactFromText("sqrt(2)").toFixed(200_000);
     const off = m * m - (2n << 400_000n);
     expect((off < 0n ? -off : off) < m * 3n).toBe(true);
+  });
+});
+
+describe("the fingerprint", () => {
+  // Test vectors of Fowler, Noll and Vo for FNV-1a with 64 bits, from memory.
+  it.each([
+    ["", "cbf29ce484222325"],
+    ["a", "af63dc4c8601ec8c"],
+    ["foobar", "85944171f73967e8"],
+  ])("of %j is %s", (text, hash) => {
+    expect(fnv1a64(text)).toBe(hash);
   });
 });
