@@ -4,6 +4,7 @@ import type { Comparison } from "./compare.js";
 
 const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> }>> = {
   draws: () => import("./draws.js"),
+  exact: () => import("./exact.js"),
   growth: () => import("./growth.js"),
   sampling: () => import("./sampling.js"),
   dual: () => import("./dual.js"),
