@@ -1,9 +1,8 @@
 /** What the conditions ask of integer matrices beyond products: traces, polynomials, text. */
 import { type IntegerMatrix, multiply } from "../dual/matrix.js";
+import { identityMatrix as identity } from "../walk/integers.js";
 
-export function identity(d: number): bigint[][] {
-  return Array.from({ length: d }, (_, i) => Array.from({ length: d }, (_, j) => (i === j ? 1n : 0n)));
-}
+export { identity };
 
 export function trace(a: IntegerMatrix): bigint {
   return a.reduce((sum, row, i) => sum + row[i], 0n);
