@@ -5,6 +5,7 @@ import "./orbits/jobs.js";
 import { listen } from "#worker-port";
 import "./averages/correlations.js";
 import "./growth/jobs.js";
+import "./start/jobs.js";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";
 

@@ -57,6 +57,18 @@ export function enclosedQuantity(low: number, high: number, method: string, digi
   };
 }
 
+/** A number proved to lie between two fractions. @throws RangeError where low > high */
+export function enclosedBetween(low: Rational, high: Rational, method: string, digits = 17): Quantity {
+  if (low.compare(high) > 0) throw new RangeError(`enclosedBetween: [${low}, ${high}] is not an interval`);
+  return {
+    value: low.add(high).div(Rational.of(2n)).toNumber(),
+    standing: "enclosed",
+    low: decimalDown(low, digits),
+    high: decimalUp(high, digits),
+    method,
+  };
+}
+
 export interface Interval {
   readonly low: number;
   readonly high: number;

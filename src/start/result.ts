@@ -6,6 +6,8 @@ export interface Trap {
   readonly numerators: readonly number[];
   /** Euclidean distance on the torus. */
   readonly distance: Quantity;
+  /** Distance within which the walk counts as beside the orbit: half of 1 / (denominator of the orbit's points). */
+  readonly room?: string;
   /** Predicted number of moves for which the walk stays beside the orbit. */
   readonly hold: Quantity;
   /** Moves after which exact walks left the orbit's neighbourhood: quantiles over replicates. */
@@ -17,15 +19,19 @@ export interface Trap {
   };
 }
 
+export type StartKind = "rational" | "algebraic" | "unproved" | "uniform" | "density";
+
 /** Answer of `start`. */
 export interface StartResult {
   readonly torwend: string;
   readonly walk: string;
-  readonly kind: "rational" | "algebraic" | "unproved" | "uniform" | "density";
+  readonly kind: StartKind;
   /** Does the walk equidistribute from this start? */
   readonly verdict: Verdict;
   /** Ranked by predicted hold, longest first. */
   readonly traps: readonly Trap[];
+  /** How traps were looked for, and why there are none where there are none. */
+  readonly search?: string;
   /** For a rational start: its denominator and the size of its orbit. */
   readonly orbit?: { readonly denominator: string; readonly size: Quantity };
 }
