@@ -9,6 +9,7 @@ import {
   DualTables,
   entriesWithin,
   type FrequencyTerm,
+  movesFit,
   type StepEnd,
 } from "../kernel/dual.js";
 import { afterStep, pairingError, type TableBound } from "../kernel/dual-rounding.js";
@@ -55,7 +56,8 @@ export async function correlationSums(payload: CorrelationsPayload): Promise<Cor
   const entries = Math.min(payload.entries, entriesWithin(0.9 * payload.memoryLimit, shape, tableCount));
   const tables = new DualTables(kernel, shape, entries, tableCount);
   const phases = [...forward, ...(backward ?? [])].some((m) => m.translation !== undefined);
-  const movesOf = { ahead: tables.place(forward), back: tables.place(backward ?? forward) };
+  const fits = movesFit(forward) && (backward === undefined || movesFit(backward));
+  const movesOf = { ahead: tables.place(fits ? forward : []), back: tables.place(fits ? (backward ?? forward) : []) };
   const ahead: Side = { table: 0, before: terms.length, bound: payload.bound };
   tables.fill(0, terms);
   const back: Side = backward === undefined ? { ...ahead } : { table: 1, before: terms.length, bound: payload.bound };
@@ -94,6 +96,7 @@ export async function correlationSums(payload: CorrelationsPayload): Promise<Cor
   });
 
   record();
+  if (!fits) return finish("overflow");
   for (let n = 1; n <= last; n++) {
     if (backward === undefined && n % 2 === 0) {
       spare = back.table;

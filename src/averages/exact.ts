@@ -67,6 +67,11 @@ export async function exactAverages(
       "The moves are not strongly irreducible: the numbers are those of Haar measure, which time averages from this start need not follow.",
     );
   }
+  if (walk.dimension > 2 && walk.start.type === "point") {
+    warnings.push(
+      "That averages from this start converge to the integral rests on strong irreducibility and proximality: see `conditions`.",
+    );
+  }
   if (walk.start.type === "point" && walk.start.point.some((x) => x.kind === "unproved")) {
     warnings.push(
       "A coordinate of the start is not proved irrational: if all are rational, the limit is a finite orbit's mean.",

@@ -7,6 +7,7 @@ import { isSelfAdjoint } from "../dual/adjoint.js";
 import { encloseAround, formQuantity } from "../dual/enclose.js";
 import { adjointMoves, forwardMoves } from "../dual/moves.js";
 import { polynomialOf, shapeOf, type TrigPolynomial, tableTerms } from "../dual/polynomial.js";
+import { Rational } from "../exact/rational.js";
 import { estimatedQuantity, exactQuantity, type Quantity } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
 import type { Observable, Walk } from "../walk/walk.js";
@@ -36,11 +37,25 @@ function spreadOf(g: TrigPolynomial): number {
   return 2 * size * (1 + 2 ** -40);
 }
 
-function correlationQuantities({ values, errors }: CorrelationSums): Quantity[] {
+/** <f, f> of the centred polynomial, where its coefficients are rational. */
+function squareNorm(f: TrigPolynomial): Rational | undefined {
+  let sum = Rational.ZERO;
+  for (const { cos, sin } of f.harmonics) {
+    const [c, s] = [cos.rational, sin.rational];
+    if (c === undefined || s === undefined) return undefined;
+    sum = sum.add(c.mul(c)).add(s.mul(s));
+  }
+  return sum.mul(Rational.of(1, 2));
+}
+
+function correlationQuantities(f: TrigPolynomial, { values, errors }: CorrelationSums): Quantity[] {
+  const norm = squareNorm(f);
   return values.map((value, n) =>
-    errors[n] === 0
-      ? exactQuantity(0n, "dual walk: no frequency comes back")
-      : encloseAround(value, errors[n]!, "dual walk, paired at half depth"),
+    n === 0 && norm !== undefined
+      ? exactQuantity(norm, "half the sum of the squared coefficients")
+      : errors[n] === 0
+        ? exactQuantity(0n, "dual walk: no frequency comes back")
+        : encloseAround(value, errors[n]!, "dual walk, paired at half depth"),
   );
 }
 
@@ -63,7 +78,7 @@ function ofTerms(
     const zero = exactQuantity(0n, "the observable is constant");
     return { label, mean, variance: zero, degenerate, correlations: [zero], spread: 0, notes: [] };
   }
-  const correlations = correlationQuantities(sums);
+  const correlations = correlationQuantities(f, sums);
   const last = sums.values.length - 1;
   const lastTerms = correlations.map((value, step) => ({ step, value })).slice(-LAST_SHOWN);
   const reached = { step: last, reason: END[sums.end] };
@@ -111,7 +126,7 @@ function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
       ? []
       : [
           "A box's indicator has infinitely many frequencies: <f, P^n f> is given for n = 0 only, and the variance comes from the exact walks.",
-          "A box's indicator is not continuous. Averages still converge to its volume, since its boundary has measure 0; the central limit theorem for continuous functions does not cover it.",
+          "A box's indicator is not continuous. Equidistribution still gives its volume as the limit, since its boundary has measure 0; the central limit theorem for continuous functions does not cover it.",
         ],
   };
 }

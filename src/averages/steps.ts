@@ -22,10 +22,19 @@ export function stepsFor(
         steps: estimatedQuantity(steps, "variance 0: bound on the sums over the half-width; fewer may do"),
       };
     }
-    const steps = Math.max(1, Math.ceil((z * z * quantityNumber(variance)) / (halfWidth * halfWidth)));
+    const steps = (v: number) => Math.max(1, Math.ceil((z * z * v) / (halfWidth * halfWidth)));
+    const interval =
+      variance.standing === "estimated" && variance.low !== undefined && variance.high !== undefined
+        ? { low: steps(Number(variance.low)), high: steps(Number(variance.high)) }
+        : undefined;
     return {
       halfWidth,
-      steps: estimatedQuantity(steps, `normal approximation at level ${level} from the variance above`),
+      steps: estimatedQuantity(
+        steps(quantityNumber(variance)),
+        `normal approximation at level ${level} from the variance above`,
+        interval,
+        level,
+      ),
     };
   });
 }

@@ -50,6 +50,11 @@ export type StepEnd = "done" | "full" | "overflow";
 const LOAD = 0.8;
 const INT64 = 1n << 63n;
 
+/** Whether every matrix entry fits in the 63 bits of a component; `place` refuses others. */
+export function movesFit(moves: readonly DualMove[]): boolean {
+  return moves.every((m) => m.matrix.every((row) => row.every((e) => e > -INT64 && e < INT64)));
+}
+
 /** Bytes of a slot. */
 function strideOf(shape: DualShape): number {
   return 8 * (shape.dimension + shape.width);

@@ -4,7 +4,7 @@
  */
 import { forwardMoves } from "../dual/moves.js";
 import { gcdBig } from "../exact/rational.js";
-import { type DualShape, DualTables, entriesWithin, type StepEnd } from "../kernel/dual.js";
+import { type DualShape, DualTables, entriesWithin, movesFit, type StepEnd } from "../kernel/dual.js";
 import { afterStep, type TableBound } from "../kernel/dual-rounding.js";
 import { loadKernel } from "../kernel/kernel.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
@@ -61,7 +61,9 @@ async function follow(walk: Walk, request: LawRequest, q: bigint | undefined, se
   const kernel = await loadKernel({ memoryLimit: session.memoryLimit });
   const entries = Math.min(budget.entries, entriesWithin(0.9 * session.memoryLimit, shape, 2));
   const tables = new DualTables(kernel, shape, entries, 2);
-  const moves = tables.place(forwardMoves(walk));
+  const dual = forwardMoves(walk);
+  const fits = residues || movesFit(dual);
+  const moves = tables.place(fits ? dual : []);
   const read = readerOf(walk.start, walk.dimension);
   tables.fill(0, [{ frequency: request.frequency, re: 1, im: 0 }]);
   let bound: TableBound = { size: 1, error: 0 };
@@ -73,6 +75,7 @@ async function follow(walk: Walk, request: LawRequest, q: bigint | undefined, se
   for (let step = 0; ; step++) {
     coefficients.push({ step, ...read(tables, now, bound), frequencies: tables.count(now) });
     if (step === request.steps) return { coefficients, end: "done" };
+    if (!fits) return { coefficients, end: "overflow" };
     const products = tables.count(now) * moves.count;
     spent += products;
     if (spent > budget.products) return { coefficients, end: "budget" };

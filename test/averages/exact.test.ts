@@ -3,7 +3,7 @@ import { exactAverages } from "../../src/averages/exact.js";
 import type { ExactFinding } from "../../src/averages/finding.js";
 import { LimitError } from "../../src/errors.js";
 import type { Rational } from "../../src/exact/rational.js";
-import { quantityNumber } from "../../src/quantity/quantity.js";
+import { type Quantity, quantityNumber } from "../../src/quantity/quantity.js";
 import { type CommonOptions, withSession } from "../../src/session.js";
 import type { Observable, Term, Walk } from "../../src/walk/walk.js";
 import { dot, move, naivePair, naiveStep, naiveTable, number, phase, point, r, walkOf } from "../dual/naive.js";
@@ -85,8 +85,8 @@ const deep = [
   ),
 ];
 
-function inside(q: { low?: string; high?: string; value: unknown; standing: string }, x: number, width: number) {
-  if (q.standing === "exact") return expect(Math.abs(x - Number(q.value))).toBeLessThan(1e-13);
+function inside(q: Quantity, x: number, width: number) {
+  if (q.standing === "exact") return expect(Math.abs(x - quantityNumber(q))).toBeLessThan(1e-13);
   expect(q.standing).toBe("enclosed");
   expect(Number(q.low)).toBeLessThanOrEqual(x + 1e-14);
   expect(Number(q.high)).toBeGreaterThanOrEqual(x - 1e-14);
@@ -192,6 +192,29 @@ describe("correlations under Haar measure", () => {
     expect(correlations.slice(1).every((c) => c.standing === "exact" && c.value === 0)).toBe(true);
     expect(variance!.value).toBe(0.5);
     expect(variance!.standing).toBe("estimated");
+  });
+
+  it("give <f, f> alone where a matrix entry needs more than 63 bits", async () => {
+    const wide = [
+      move(
+        [
+          [1, 2n ** 70n],
+          [0, 1],
+        ],
+        r(1, 2),
+      ),
+      move(
+        [
+          [1, 0],
+          [1, 1],
+        ],
+        r(1, 2),
+      ),
+    ];
+    const f = await first(walkOf(wide, { type: "uniform" }, [wave]));
+    // (9 + 1 + 1) / 2
+    expect(f.correlations).toMatchObject([{ value: "11/2", standing: "exact" }]);
+    expect(f.reached!.reason).toMatch(/63 bits/);
   });
 
   it("know a constant, however it is written", async () => {

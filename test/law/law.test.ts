@@ -211,6 +211,23 @@ describe("limits of law", () => {
     expect(result.stoppedAt).toEqual({ step: 3, reason: expect.stringMatching(/63 bits/) });
   });
 
+  it("gives the first coefficient alone where a matrix entry needs more than 63 bits", async () => {
+    const wide = walkOf(
+      [
+        move(
+          [
+            [1, 2n ** 70n],
+            [0, 1],
+          ],
+          r(1),
+        ),
+      ],
+      start,
+    );
+    const result = await law(wide, { frequency: [1, 1], steps: 10, workers: 0 });
+    expect(result.stoppedAt).toEqual({ step: 0, reason: expect.stringMatching(/63 bits/) });
+  });
+
   it("names options that are wrong", async () => {
     const call = law(walkOf(tray), { frequency: [1, 0.5, 2], steps: -1, workers: 0 });
     await expect(call).rejects.toThrow(OptionsError);
