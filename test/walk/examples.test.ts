@@ -18,4 +18,15 @@ describe("the example walk files", () => {
       expect(again.document).toEqual(walk.document);
     },
   );
+
+  it("hold a move that reverses orientation, a translation, and starts of irrational coordinates", () => {
+    const read = (name: string) => parseWalk(readFileSync(new URL(name, folder), "utf8"));
+    expect(read("tray-3d.json").moves.map((m) => m.determinant)).toEqual([1, 1, -1]);
+    const translations = read("tray-symmetric.json").moves.map((m) => m.translation?.map((x) => x.text));
+    expect(translations).toEqual([["1/3", "0"], ["-1/3", "0"], undefined, undefined]);
+    for (const name of ["tray.json", "tray-3d.json"]) {
+      const { start } = read(name);
+      expect(start.type === "point" && start.point.every((x) => x.kind === "algebraic")).toBe(true);
+    }
+  });
 });
