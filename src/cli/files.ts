@@ -1,0 +1,84 @@
+/** Reading input and writing output files. */
+import { access, constants, mkdir, readFile, rename, stat, unlink, writeFile } from "node:fs/promises";
+import { dirname, join } from "node:path";
+import { type Fault, OptionsError } from "../errors.js";
+
+/** A system error in words. */
+export function reason(error: unknown): string {
+  const { code, message } = error as { code?: string; message?: string };
+  const words: Readonly<Record<string, string>> = {
+    ENOENT: "there is no such file or directory",
+    EISDIR: "it is a directory",
+    ENOTDIR: "a part of its path is not a directory",
+    EACCES: "permission denied",
+    EPERM: "not permitted",
+    EROFS: "the file system is read-only",
+    ENOSPC: "no space is left",
+    EEXIST: "a file of that name is in the way",
+  };
+  return words[code ?? ""] ?? message ?? String(error);
+}
+
+/** UTF-8 text, a byte order mark taken off; or what is wrong. */
+export function decodeText(bytes: Uint8Array): string | undefined {
+  try {
+    return new TextDecoder("utf-8", { fatal: true }).decode(bytes);
+  } catch {
+    return undefined;
+  }
+}
+
+/** @throws OptionsError where the file of an option cannot be read */
+export async function readOptionFile(option: string, file: string): Promise<string> {
+  const fail = (message: string): never => {
+    throw new OptionsError([{ pointer: option, message }]);
+  };
+  try {
+    return decodeText(await readFile(file)) ?? fail(`${file} is not UTF-8 text`);
+  } catch (error) {
+    if (error instanceof OptionsError) throw error;
+    return fail(`${file} cannot be read: ${reason(error)}`);
+  }
+}
+
+function unwritable(what: string, error: unknown): OptionsError {
+  const fault: Fault = { pointer: "--out", message: `${what} cannot be written: ${reason(error)}` };
+  return new OptionsError([fault]);
+}
+
+/** Makes the directory where it is missing, and sees that files can be made in it. @throws OptionsError */
+export async function prepareDirectory(directory: string): Promise<void> {
+  try {
+    await mkdir(directory, { recursive: true });
+    await access(directory, constants.W_OK);
+  } catch (error) {
+    throw unwritable(directory, error);
+  }
+}
+
+/** Sees that a file of that name can be made. @throws OptionsError */
+export async function prepareFile(file: string): Promise<void> {
+  try {
+    await access(dirname(file), constants.W_OK);
+    const there = await stat(file).catch(() => undefined);
+    if (there?.isDirectory()) throw Object.assign(new Error(), { code: "EISDIR" });
+  } catch (error) {
+    throw unwritable(file, error);
+  }
+}
+
+/** Writes each file whole under a temporary name, then gives all of them their names. @throws OptionsError */
+export async function writeFiles(directory: string, files: Readonly<Record<string, string>>): Promise<void> {
+  const made: string[] = [];
+  try {
+    for (const [name, text] of Object.entries(files)) {
+      const temporary = join(directory, `${name}.${process.pid}.part`);
+      made.push(temporary);
+      await writeFile(temporary, text);
+    }
+    for (const [i, name] of Object.keys(files).entries()) await rename(made[i] as string, join(directory, name));
+  } catch (error) {
+    for (const file of made) await unlink(file).catch(() => undefined);
+    throw unwritable(directory, error);
+  }
+}
