@@ -16,7 +16,7 @@ function line(text: string): string {
 export function faultLines(error: WalkError | OptionsError, file: string): string[] {
   return error.faults.map(({ pointer, message }) => {
     if (error instanceof OptionsError) return line(`${pointer}: ${message}`);
-    return line(`${file}: ${pointer === "" ? "(whole file)" : pointer}: ${message}`);
+    return line(pointer === "" ? `${file}: ${message}` : `${file}: ${pointer}: ${message}`);
   });
 }
 

@@ -35,10 +35,13 @@ export function readValues(
 ): Record<string, unknown> {
   const faults: Fault[] = [];
   const values: Record<string, unknown> = {};
-  for (const { flags, read } of specs) {
+  for (const { flags, text: accepted, read, required } of specs) {
     const key = keyOf(flags);
     const text = given[key];
-    if (text === undefined) continue;
+    if (text === undefined) {
+      if (required) faults.push({ pointer: `--${key}`, message: `found nothing; accepted: ${accepted}` });
+      continue;
+    }
     try {
       values[key] = read(text as string);
     } catch (error) {

@@ -1,7 +1,7 @@
 /** Findings as text: quantities with their standing, verdicts, tables. Plain characters, no colour. */
 import Table from "cli-table3";
 import { shown } from "../dossier/numbers.js";
-import type { Quantity, Verdict } from "../quantity/quantity.js";
+import { type Quantity, quantityNumber, type Verdict } from "../quantity/quantity.js";
 
 const WIDTH = 96;
 const POWERS = "⁰¹²³⁴⁵⁶⁷⁸⁹";
@@ -20,7 +20,10 @@ export function plain(text: string): string {
 
 /** The three cells of a quantity: value, interval, standing. */
 export function cells(q: Quantity, whole = false): [string, string, string] {
-  const { value, interval = "", standing } = shown(q, whole);
+  const { value: near, interval = "", standing } = shown(q, whole);
+  // A count without an interval: the next whole number is enough.
+  const count = whole && interval === "" && q.standing !== "exact" && Number.isFinite(quantityNumber(q));
+  const value = count ? String(Math.ceil(quantityNumber(q)) + 0) : near;
   return [
     plain(value),
     plain(interval),
@@ -40,8 +43,10 @@ export function number(x: number, digits = 4): string {
   return Number.isInteger(x) ? String(x + 0) : String(Number(x.toPrecision(digits)));
 }
 
-/** Columns under a header and a rule. */
+/** Columns under a header and a rule; a column without entries is left out. */
 export function table(head: readonly string[], rows: readonly (readonly string[])[]): string {
+  const kept = head.flatMap((_, i) => (rows.some((r) => (r[i] ?? "") !== "") ? [i] : []));
+  const pick = (line: readonly string[]) => kept.map((i) => line[i] ?? "");
   const none = ["top", "top-mid", "top-left", "top-right", "bottom", "bottom-mid", "bottom-left", "bottom-right"];
   const inner = ["left", "left-mid", "mid", "mid-mid", "right", "right-mid"];
   const chars = Object.fromEntries([...none, ...inner].map((name) => [name, ""]));
@@ -49,11 +54,11 @@ export function table(head: readonly string[], rows: readonly (readonly string[]
     chars: { ...chars, middle: "  " },
     style: { head: [], border: [], "padding-left": 0, "padding-right": 0 },
   });
-  const widths = head.map((h, i) => Math.max(h.length, ...rows.map((r) => [...(r[i] ?? "")].length)));
+  const widths = kept.map((i) => Math.max(head[i]!.length, ...rows.map((r) => [...(r[i] ?? "")].length)));
   drawn.push(
-    head as string[],
+    pick(head),
     widths.map((w) => "-".repeat(w)),
-    ...rows.map((r) => [...r]),
+    ...rows.map(pick),
   );
   return drawn
     .toString()

@@ -86,8 +86,7 @@ function build(host: Host, done: (status: Promise<Status>) => void): Command {
       .argument("<walk>", "the walk file, or - for standard input")
       .helpOption("--help", "print this help");
     for (const { flags, text, required } of question.options) {
-      if (required) command.requiredOption(flags, text);
-      else command.option(flags, text);
+      command.option(flags, required ? `${text} (needed)` : text);
     }
     for (const { flags, text } of COMMON) command.option(flags, text);
     command
