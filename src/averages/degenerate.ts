@@ -62,47 +62,47 @@ export function differencesOf(walk: Walk): Differences | undefined {
 
 const LONGEST_CHAIN = 200;
 
+const size = (k: readonly bigint[]) => k.reduce((m, x) => (x > m ? x : -x > m ? -x : m), 0n);
+
 /**
- * For each frequency of f the later ones on its orbit under one move; undefined where an
- * orbit is finite, so that g would not be determined. The orbit is followed far beyond what
- * frequencies of a file need, but a later one that is missed only means that no g is found.
+ * The frequencies of f, each after those from which a move's orbit leads to it; undefined
+ * where an orbit is finite, so that g would not be determined. Orbits are followed far
+ * beyond f's own size, but a link that is missed only means that no g is found.
  */
-function laterOnes(f: ExactFunction, move: Move): Map<string, Set<string>> | undefined {
+function orderAlongOrbits(f: ExactFunction, move: Move): string[] | undefined {
   const step = transpose(move.matrix);
-  const later = new Map<string, Set<string>>();
+  const far = [...f.values()].reduce((m, e) => (size(e.frequency) > m ? size(e.frequency) : m), 1n) << 64n;
+  const earlier = new Map([...f.keys()].map((key) => [key, 0]));
   for (const [key, { frequency }] of f) {
-    const met = new Set<string>();
     let k = frequency;
-    for (let n = 0; n < LONGEST_CHAIN; n++) {
+    for (let n = 0; n < LONGEST_CHAIN && size(k) < far; n++) {
       k = canonical(apply(step, k))?.frequency as readonly bigint[];
       const name = k.join();
       if (name === key) return undefined;
-      if (f.has(name)) met.add(name);
+      const before = earlier.get(name);
+      if (before !== undefined) earlier.set(name, before + 1);
     }
-    later.set(key, met);
   }
-  return later;
+  return [...earlier].sort(([, a], [, b]) => a - b).map(([key]) => key);
 }
 
 /** g with f = g - g o T for one move, by summing along its orbits; undefined where none was found. */
 function telescoped(f: ExactFunction, move: Move): ExactFunction | undefined {
-  const later = laterOnes(f, move);
-  if (later === undefined) return undefined;
+  const order = orderAlongOrbits(f, move);
+  if (order === undefined) return undefined;
   const g = new Map<string, ExactEntry>();
-  const left = new Map(f);
-  while (left.size > 0) {
-    // One that comes after no other: orbits are infinite, so there is one.
-    const first =
-      [...left].find(([key]) => ![...left.keys()].some((other) => later.get(other)?.has(key))) ?? [...left][0];
-    let entry = (first as [string, ExactEntry])[1];
-    left.delete(entry.frequency.join());
+  const done = new Set<string>();
+  for (const first of order) {
+    if (done.has(first)) continue;
+    done.add(first);
+    let entry = f.get(first) as ExactEntry;
     for (let n = 0; !(entry.re.isZero && entry.im.isZero); n++) {
       if (n > 2 * LONGEST_CHAIN) return undefined;
       g.set(entry.frequency.join(), entry);
       const image = composeEntry(entry, move);
       if (image === undefined) return undefined;
       const own = f.get(image.frequency.join());
-      left.delete(image.frequency.join());
+      done.add(image.frequency.join());
       entry = own === undefined ? image : { ...image, re: own.re.add(image.re), im: own.im.add(image.im) };
     }
   }

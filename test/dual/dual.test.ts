@@ -46,7 +46,7 @@ describe.each(targets)("phases (%s)", (target) => {
         const off = D.hypot(D.cos(angle).minus(got.re), D.sin(angle).minus(got.im)).toNumber();
         expect(off).toBeLessThan(8 * 2 ** -53);
       }),
-      { numRuns: 300 },
+      { numRuns: 100 },
     );
     expect(tables.phase([1n, 0n], [FRACTION / 4n, 0n])).toEqual({ re: 0, im: 1 });
     expect(tables.phase([-3n, 2n], [FRACTION / 2n, 0n])).toEqual({ re: -1, im: 0 });
@@ -90,12 +90,15 @@ describe.each(targets)("evolution (%s)", (target) => {
         const terms = tables.terms(now);
         expect(terms.length).toBe(naive.size);
         let largest = 0n;
+        let worst = 0;
         for (const { frequency, re, im } of terms) {
           const expected = naive.get(frequency.join())!.c;
-          expect(Math.abs(re - expected.re) + Math.abs(im - expected.im)).toBeLessThan(1e-12);
-          expect(tables.coefficient(now, frequency)).toEqual({ re, im });
+          worst = Math.max(worst, Math.abs(re - expected.re) + Math.abs(im - expected.im));
+          const sought = tables.coefficient(now, frequency);
+          if (sought?.re !== re || sought.im !== im) worst = Number.POSITIVE_INFINITY;
           for (const x of frequency) if ((x < 0n ? -x : x) > largest) largest = x < 0n ? -x : x;
         }
+        expect(worst).toBeLessThan(1e-12);
         expect(tables.largest(now)).toBe(largest);
         expect(tables.pair(now, now).sum).toBeCloseTo(naivePair(naive, naive), 12);
       });
@@ -162,10 +165,11 @@ describe.each(targets)("evolution (%s)", (target) => {
         expect(tables.evolve(now, 1 - now, placed)).toBe("done");
       }
       expect(2 * tables.count(now)).toBe(naive.size);
-      for (const { frequency, re } of tables.terms(now)) {
+      const off = tables.terms(now).map(({ frequency, re }) => {
         const x = naive.get(frequency.join())!.c;
-        expect(re).toBeCloseTo(sign === 1 ? x.re : x.im, 13);
-      }
+        return Math.abs(re - (sign === 1 ? x.re : x.im));
+      });
+      expect(Math.max(...off)).toBeLessThan(1e-14);
       expect(2 * tables.pair(now, now).sum).toBeCloseTo(naivePair(naive, naive), 13);
     });
   }
