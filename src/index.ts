@@ -1,6 +1,8 @@
 /** The library: one function a question. The same entry serves Node and browsers. */
 export { type AveragesOptions, averages } from "./averages/averages.js";
 export type { AveragesResult, ObservableResult, SampledAverage } from "./averages/result.js";
+export { type ConditionsOptions, conditions } from "./conditions/conditions.js";
+export type { ConditionsResult } from "./conditions/result.js";
 export type { Fault } from "./errors.js";
 export { LimitError, OptionsError, StoppedError, WalkError } from "./errors.js";
 export { ExactFault } from "./exact/fault.js";
@@ -15,6 +17,8 @@ export type { OrbitKind, OrbitsResult } from "./orbits/result.js";
 export type { Quantity, Standing, Verdict } from "./quantity/quantity.js";
 export { quantityNumber } from "./quantity/quantity.js";
 export { type CommonOptions, type Effort, type Progress, withSession } from "./session.js";
+export type { StartKind, StartResult, Trap } from "./start/result.js";
+export { type StartOptions, start } from "./start/start.js";
 export type { PositionBlock } from "./trajectory/block.js";
 export { parseChoices } from "./trajectory/choices.js";
 export type { PositionShape, PositionSink, TrajectoryOptions } from "./trajectory/options.js";

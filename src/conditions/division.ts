@@ -4,7 +4,7 @@ import { countRealRoots } from "../exact/polynomial.js";
 import { Rational } from "../exact/rational.js";
 import { isDefinite } from "./algebra.js";
 import { Span } from "./elimination.js";
-import { combine, identity, trace } from "./matrix.js";
+import { characteristicPolynomial, combine, identity, trace } from "./matrix.js";
 
 const abs = (a: bigint) => (a < 0n ? -a : a);
 
@@ -56,4 +56,26 @@ export function isDivisionAlgebra(basis: readonly IntegerMatrix[]): boolean {
   if (!sums.flat().every(isScalar)) return false;
   const gram = sums.map((row) => row.map((m) => m[0][0]));
   return gram[0][0] < 0n && isDefinite(gram);
+}
+
+/**
+ * A combination of the matrices without real eigenvalues, by trying `tries` small ones in a
+ * fixed irregular order; undefined where none was met.
+ */
+export function withoutRealEigenvalues(basis: readonly IntegerMatrix[], tries = 40): bigint[][] | undefined {
+  // In odd dimension every matrix has a real eigenvalue.
+  if (basis.length < 2 || basis[0].length % 2 === 1) return undefined;
+  let state = 1;
+  const coefficient = () => {
+    state = (Math.imul(state, 1664525) + 1013904223) >>> 0;
+    return BigInt(((state >>> 12) % 15) - 7);
+  };
+  for (let n = 0; n < tries; n++) {
+    const mixed = basis.reduce<bigint[][]>(
+      (sum, m) => combine(1n, sum, coefficient(), m),
+      basis[0].map((row) => row.map(() => 0n)),
+    );
+    if (realRoots(characteristicPolynomial(mixed)).count === 0) return mixed;
+  }
+  return undefined;
 }

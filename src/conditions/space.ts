@@ -19,7 +19,7 @@
 import { transpose } from "../dual/matrix.js";
 import type { Move } from "../walk/walk.js";
 import { algebraBasis, commutant, definiteForm, imageOf, invariantForms, radical } from "./algebra.js";
-import { isDivisionAlgebra, realRoots } from "./division.js";
+import { isDivisionAlgebra, realRoots, withoutRealEigenvalues } from "./division.js";
 import { dominanceEvidence, proximalWord } from "./dominant.js";
 import { nullSpace } from "./elimination.js";
 import { fails, type GroupFinding, holds, undecided } from "./finding.js";
@@ -196,11 +196,16 @@ function proximality(
       slow: true,
     };
   }
-  if (found.commuting !== undefined) {
+  const commuting =
+    found.dense === undefined ? (found.commuting ?? withoutRealEigenvalues(commutant(moves))) : undefined;
+  if (commuting !== undefined) {
     return {
       proximal: fails(
         "A matrix without real eigenvalues commutes with every move, so every real eigenspace of every product has even dimension.",
-        { commuting: plainMatrix(found.commuting) },
+        {
+          commuting: plainMatrix(commuting),
+          characteristicPolynomial: plainVector(characteristicPolynomial(commuting)),
+        },
       ),
       slow: false,
     };

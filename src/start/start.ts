@@ -1,6 +1,7 @@
 /** Is this start safe, or near a rational trap? */
 import { finiteOrbit, orbitDenominator } from "../averages/orbit.js";
 import { conditionsOf, groupFinding } from "../conditions/conditions.js";
+import { LimitError } from "../errors.js";
 import type { ExactNumber } from "../exact/number.js";
 import { gcdBig, Rational } from "../exact/rational.js";
 import { loadReal } from "../kernel/real.js";
@@ -16,7 +17,6 @@ import type { StartResult, Trap } from "./result.js";
 import { kindOf, startVerdict } from "./verdict.js";
 
 export type { StartOptions } from "./options.js";
-export type { StartResult, Trap } from "./result.js";
 
 /** Points of an orbit that are listed at most. */
 const MOST_POINTS: Record<Effort, number> = { quick: 100_000, standard: 300_000, thorough: 1_000_000 };
@@ -83,10 +83,25 @@ async function searchTraps(
       `${scan}; products grow at most like a power of the number of moves, so that holds follow no exponential rate`,
     );
   }
-  const rate = await quickRate(walk, session);
+  const limits: string[] = [];
+  const rate = await unlessLimited(quickRate(walk, session), limits);
+  if (rate === undefined) return none(`${scan}; holds are not predicted: ${limits[0]}`, checked);
   if (!(rate > 1e-9)) return none(`${scan}; no positive growth rate was found, so holds are not predicted`, checked);
-  const traps = await sampledTraps(walk, predictedTraps(records, rate, await loadReal()), session);
-  return { traps, search: scan, checked };
+  const predicted = predictedTraps(records, rate, await loadReal());
+  const sampled = await unlessLimited(sampledTraps(walk, predicted, session), limits);
+  const search = sampled === undefined ? `${scan}; holds were not sampled: ${limits[0]}` : scan;
+  return { traps: sampled ?? predicted, search, checked };
+}
+
+/** The result, or undefined where a stated limit was met: its message is added to `limits`. */
+async function unlessLimited<T>(work: Promise<T>, limits: string[]): Promise<T | undefined> {
+  try {
+    return await work;
+  } catch (error) {
+    if (!(error instanceof LimitError)) throw error;
+    limits.push(error.message);
+    return undefined;
+  }
 }
 
 /**

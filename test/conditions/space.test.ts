@@ -142,6 +142,13 @@ describe("dimension 3 and more", () => {
     expect(all).toEqual(["undecided", "fails", "undecided"]);
   });
 
+  it("knows that equal blocks exclude proximality", () => {
+    for (const copies of [2, 4]) {
+      const { all } = verdicts(tensor(unit(copies), cat), tensor(unit(copies), other));
+      expect(all).toEqual(["fails", "fails", "fails"]);
+    }
+  });
+
   it("decides symplectic and orthogonal sets by the form that they keep", () => {
     // Transvections x -> x + w(x, v) v of the form w(e1, e2) = w(e3, e4) = 1.
     const w = [

@@ -150,6 +150,31 @@ describe("start", () => {
     expect((await ask(["sqrt(2)", "0"], mirrored)).verdict.verdict).toBe("undecided");
   });
 
+  it("keeps its answer where matrices are too large to sample, and says so", async () => {
+    const large = (2n ** 70n).toString();
+    const at = ["sqrt(2)-1", "sqrt(3)-1"];
+    const walk = {
+      ...document(at),
+      moves: [
+        {
+          matrix: [
+            [1, large],
+            [0, 1],
+          ],
+        },
+        {
+          matrix: [
+            [1, 0],
+            [large, 1],
+          ],
+        },
+      ],
+    };
+    const result = await start(walk, { ...here, denominators: 50 });
+    expect(result.verdict.verdict).toBe("holds");
+    expect(result.search).toMatch(/not (predicted|sampled)/);
+  });
+
   it("walks the start and the trap under the same moves", async () => {
     const walk = document(["1/3", "1/2"]);
     const payload = { document: walk, seed: 1n, memoryLimit: 2 ** 28, steps: 50, first: 0, count: 5 };
