@@ -62,7 +62,14 @@ export function differencesOf(walk: Walk): Differences | undefined {
 
 const LONGEST_CHAIN = 200;
 
-const size = (k: readonly bigint[]) => k.reduce((m, x) => (x > m ? x : -x > m ? -x : m), 0n);
+function size(k: readonly bigint[]): bigint {
+  let largest = 0n;
+  for (const x of k) {
+    const a = x < 0n ? -x : x;
+    if (a > largest) largest = a;
+  }
+  return largest;
+}
 
 /**
  * The frequencies of f, each after those from which a move's orbit leads to it; undefined
