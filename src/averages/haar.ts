@@ -21,7 +21,7 @@ const LAST_SHOWN = 5;
 
 const END: Readonly<Record<CorrelationSums["end"], string>> = {
   done: "as many terms as are ever computed",
-  full: "the frequency table would be full; a higher effort allows a larger one",
+  full: "the frequency table would be full; a higher effort or a higher memory limit allows a larger one",
   overflow: "a frequency of the next term needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher effort allows more",
 };

@@ -40,7 +40,7 @@ function constantLaw(walk: Walk, k: readonly bigint[], q: bigint | undefined): C
 
 const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
   done: "all steps asked for",
-  full: "the frequency table would be full; a higher --effort allows a larger one",
+  full: "the frequency table would be full; a higher --effort or a higher memory limit allows a larger one",
   overflow: "a frequency of the next step needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher --effort allows more",
 };
