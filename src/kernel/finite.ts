@@ -208,14 +208,17 @@ export class OrbitOperator {
     return { alpha, length };
   }
 
-  /** Makes `vector` orthogonal to vectors 0, ..., count - 1 (two passes); the coefficients taken off, and its length after. */
-  orthogonalise(vector: number, count: number): { coefficients: Float64Array; length: number } {
+  /**
+   * Makes `vector`, of length `before`, orthogonal to vectors 0, ..., count - 1: a second pass
+   * where the first has taken off most of it (Daniel, Gragg, Kaufman, Stewart 1976). Returns
+   * the coefficients taken off, and the length left.
+   */
+  orthogonalise(vector: number, count: number, before: number): { coefficients: Float64Array; length: number } {
     const { raw } = this.kernel;
     this.kernel.f64(this.small, count).fill(0);
-    let length = 0;
-    for (let pass = 0; pass < 2; pass++) {
-      length = raw.orbitProject(this.vectorsAt, count, this.size, this.at(vector), this.small);
-    }
+    const pass = () => raw.orbitProject(this.vectorsAt, count, this.size, this.at(vector), this.small);
+    let length = pass();
+    if (length < 0.5 * before) length = pass();
     return { coefficients: this.kernel.f64(this.small, count).slice(), length };
   }
 

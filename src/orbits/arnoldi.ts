@@ -64,8 +64,8 @@ export function arnoldi(operator: OrbitOperator, seed: bigint, tolerance: number
     while (count < room && products < most) {
       operator.apply(count, count + 1);
       products++;
-      operator.centre(count + 1);
-      const { coefficients, length: rest } = operator.orthogonalise(count + 1, count + 1);
+      const before = operator.centre(count + 1);
+      const { coefficients, length: rest } = operator.orthogonalise(count + 1, count + 1, before);
       for (let j = 0; j <= count; j++) small.set(j, count, coefficients[j] as number);
       count++;
       length = rest;

@@ -22,7 +22,7 @@ const SPEND: Readonly<
   Record<Effort, { readonly products: number; readonly images: number; readonly tolerance: number }>
 > = {
   quick: { products: 300, images: 3e8, tolerance: 1e-6 },
-  standard: { products: 1000, images: 3e9, tolerance: 1e-9 },
+  standard: { products: 1000, images: 3e9, tolerance: 1e-8 },
   thorough: { products: 10_000, images: 1e11, tolerance: 1e-11 },
 };
 /** Points of small orbits that share a job. */

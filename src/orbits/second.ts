@@ -7,6 +7,8 @@ import { type Found, LANCZOS_VECTORS, lanczos } from "./lanczos.js";
 
 /** Up to so many points all eigenvalues are computed, from the matrix written out. */
 export const DENSE = 120;
+/** From so many points on, longer bases cost more than the restarts that they save. */
+const LARGE = 20_000;
 /** Bytes that a basis may take; a smaller memory limit takes less. */
 const BASIS_BYTES = 2 ** 28;
 
@@ -70,7 +72,7 @@ export function secondEigenvalue(kernel: Kernel, request: SecondRequest): Second
       return lanczos(new OrbitOperator(kernel, table, weights, LANCZOS_VECTORS), seed, tolerance, most);
     }
     const bytes = Math.min(BASIS_BYTES, 0.9 * kernel.memoryLimit - table.byteLength);
-    const room = Math.max(12, Math.min(60, size - 1, Math.floor(bytes / (8 * size)) - ARNOLDI_SPARE));
+    const room = Math.max(12, Math.min(size < LARGE ? 60 : 40, size - 1, Math.floor(bytes / (8 * size)) - ARNOLDI_SPARE));
     const operator = new OrbitOperator(kernel, table, weights, room + ARNOLDI_SPARE);
     return arnoldi(operator, seed, tolerance, most, room);
   });

@@ -26,6 +26,14 @@ describe("quantities in a line", () => {
 
 describe("tables", () => {
   it("align columns and leave out empty ones", () => {
-    expect(table(["a", "b", "c"], [["1", "", "x"], ["10", "", "y"]])).toBe("  a   c\n  --  -\n  1   x\n  10  y"); // biome-ignore format: rows
+    expect(
+      table(
+        ["a", "b", "c"],
+        [
+          ["1", "", "x"],
+          ["10", "", "y"],
+        ],
+      ),
+    ).toBe("  a   c\n  --  -\n  1   x\n  10  y");
   });
 });
