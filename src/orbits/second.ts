@@ -72,7 +72,10 @@ export function secondEigenvalue(kernel: Kernel, request: SecondRequest): Second
       return lanczos(new OrbitOperator(kernel, table, weights, LANCZOS_VECTORS), seed, tolerance, most);
     }
     const bytes = Math.min(BASIS_BYTES, 0.9 * kernel.memoryLimit - table.byteLength);
-    const room = Math.max(12, Math.min(size < LARGE ? 60 : 40, size - 1, Math.floor(bytes / (8 * size)) - ARNOLDI_SPARE));
+    const room = Math.max(
+      12,
+      Math.min(size < LARGE ? 60 : 40, size - 1, Math.floor(bytes / (8 * size)) - ARNOLDI_SPARE),
+    );
     const operator = new OrbitOperator(kernel, table, weights, room + ARNOLDI_SPARE);
     return arnoldi(operator, seed, tolerance, most, room);
   });

@@ -5,11 +5,13 @@ import { conditionsQuestion } from "./conditions.js";
 import { growthQuestion } from "./growth.js";
 import { lawQuestion } from "./law.js";
 import { orbitsQuestion } from "./orbits.js";
+import { startQuestion } from "./start.js";
 import { trajectoryQuestion } from "./trajectory.js";
 
 export const QUESTIONS = [
   conditionsQuestion,
   growthQuestion,
+  startQuestion,
   trajectoryQuestion,
   averagesQuestion,
   lawQuestion,
