@@ -13,7 +13,7 @@ import type { DossierTrajectory } from "./result.js";
  * @throws OptionsError where no point can be drawn from the start (a density)
  */
 export async function compareWithDoubles(walk: Walk, session: Session): Promise<DossierTrajectory> {
-  const { moves, compared, digits, apart } = TRAJECTORY;
+  const { moves, compared, after, digits, apart } = TRAJECTORY;
   const kernel = await loadKernel({ memoryLimit: session.memoryLimit });
   const weights = cumulativeWeights(walk.moves.map((m) => m.probability));
   const choices = drawMoves(kernel, weights, session.seed, 0, 0, moves);
@@ -25,9 +25,10 @@ export async function compareWithDoubles(walk: Walk, session: Session): Promise<
     digits,
   });
   const start = (exact.positions[0]?.point ?? []).map(Number);
-  const doubles = doubleWalk(walk, start, choices.subarray(0, compared));
+  const doubles = doubleWalk(walk, start, choices);
   const distances = doubles.map((point, n) => torusDistance(exact.positions[n]?.point ?? [], point));
   const partedAt = distances.findIndex((d) => d > apart);
+  const kept = 1 + Math.min(moves, partedAt < 0 ? compared : partedAt + after);
   return {
     moves,
     positions: exact.positions.map(({ step, point }) => ({ step, point })),
@@ -35,8 +36,8 @@ export async function compareWithDoubles(walk: Walk, session: Session): Promise<
     standing: exact.standing,
     bitsConsumed: exact.bitsConsumed,
     method: exact.method,
-    doubles,
-    distances,
+    doubles: doubles.slice(0, kept),
+    distances: distances.slice(0, kept),
     ...(partedAt < 0 ? {} : { partedAt }),
     apart,
   };

@@ -3,8 +3,12 @@ import { gcdBig } from "../exact/rational.js";
 import type { Effort } from "../session.js";
 import type { Walk } from "../walk/walk.js";
 
-/** Moves of the exact trajectory that is drawn, and how many of them are compared with double precision. */
-export const TRAJECTORY = { moves: 1000, compared: 200, digits: 20, apart: 0.01 } as const;
+/**
+ * Moves of the exact trajectory that is drawn, all compared with double precision. The
+ * comparison is kept for `after` moves beyond the one at which the two are `apart`, or for
+ * `compared` moves where they never are.
+ */
+export const TRAJECTORY = { moves: 1000, compared: 200, after: 60, digits: 20, apart: 0.01 } as const;
 
 /**
  * A few low frequencies, (1, 0, ..., 0) first: the first coordinate, the second, and their

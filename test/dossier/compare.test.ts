@@ -13,6 +13,7 @@ describe("the exact trajectory beside doubles", () => {
     const found = await run(tray);
     expect(found.positions.length).toBe(found.moves + 1);
     expect(found.doubles.length).toBe(found.distances.length);
+    expect(found.doubles.length).toBe((found.partedAt as number) + 61);
     // sqrt(2) - 1 and sqrt(3) - 1, from memory.
     expect(found.positions[0]?.point).toEqual(["0.41421356237309504880", "0.73205080756887729353"]);
     expect(found.distances[0]).toBeGreaterThan(0);

@@ -57,59 +57,68 @@ const startMark = (at: Spot) => [
   }),
 ];
 
-/** The walk and its double-precision copy, move by move, for the first moves. */
+/** The moves shown one by one: the first, or those around the parting where that comes later. */
+function stretch(t: DossierTrajectory): { from: number; to: number } {
+  const from = t.partedAt === undefined ? 0 : Math.max(0, t.partedAt - BESIDE / 2);
+  return { from, to: Math.min(from + BESIDE, t.doubles.length - 1, t.positions.length - 1) };
+}
+
+/** The walk and its double-precision copy, move by move. */
 export function besidePlot(t: DossierTrajectory, dimension: number): Html | undefined {
-  const exact = t.positions.filter((p) => p.step <= BESIDE).map((p) => spot(p.point));
-  const doubles = t.doubles.slice(0, BESIDE + 1).map(spot);
-  const first = exact[0];
-  if (first === undefined || exact.length < 2) return undefined;
-  const pairs = doubles
-    .map((d, i) => ({ d, e: exact[i], i }))
-    .filter((p): p is { d: Spot; e: Spot; i: number } => p.e !== undefined);
-  const parted = t.partedAt !== undefined && t.partedAt <= BESIDE ? t.partedAt : undefined;
-  const partedSpot = parted === undefined ? undefined : exact[parted];
-  const apart = pairs.filter((p) => parted !== undefined && p.i >= parted);
+  const { from, to } = stretch(t);
+  if (to - from < 2) return undefined;
+  const pairs = t.positions.slice(from, to + 1).map((p, i) => ({
+    step: p.step,
+    exact: spot(p.point),
+    double: spot(t.doubles[from + i] as readonly number[]),
+    apart: t.partedAt !== undefined && p.step >= t.partedAt,
+  }));
+  const parting = pairs.filter((p) => p.step === t.partedAt);
   const projection =
     dimension > 2 ? html` The first two of ${dimension} coordinates are shown; the distance is over all.` : undefined;
   const told =
     t.partedAt === undefined
-      ? html`The two stay within ${brief(t.apart)} of each other for all ${t.distances.length - 1} moves compared.`
+      ? html`The two stay within ${brief(t.apart)} of each other for all ${t.moves} moves compared.`
       : html`They first part by more than ${brief(t.apart)} at move ${t.partedAt}; from then on the crosses show another walk.`;
+  const which = from === 0 ? `First ${to} moves.` : `Moves ${from} to ${to}.`;
+  const cross = (apart: boolean) =>
+    Plot.dot(
+      pairs.filter((p) => p.apart === apart),
+      {
+        x: (p: (typeof pairs)[number]) => p.double.x,
+        y: (p: (typeof pairs)[number]) => p.double.y,
+        stroke: "var(--c2)",
+        symbol: "times",
+        r: apart ? 3.2 : 2.6,
+        strokeWidth: apart ? 1.5 : 1,
+      },
+    );
   return smallFigure({
     id: "plot-positions",
-    label: `The first ${exact.length - 1} positions of the walk on the torus, exact, with the double-precision walk beside them.`,
-    caption: html`<b>First ${exact.length - 1} moves.</b> Dots: exact positions. Crosses: the same moves from the same start in double precision. ${told}${projection}`,
+    label: `Positions of the walk on the torus, moves ${from} to ${to}, exact, with the double-precision walk beside them.`,
+    caption: html`<b>${which}</b> Dots: exact positions. Crosses: the same moves from the same start in double precision. ${told}${projection}`,
     draw: (size) =>
       square(size, [
-        Plot.dot(exact, { x: "x", y: "y", fill: "var(--c1)", r: 2.8 }),
         Plot.dot(
-          pairs.filter((p) => parted === undefined || p.i < parted),
-          { x: (p) => p.d.x, y: (p) => p.d.y, stroke: "var(--c2)", symbol: "times", r: 2.6, strokeWidth: 1 },
+          pairs.map((p) => p.exact),
+          { x: "x", y: "y", fill: "var(--c1)", r: 2.8 },
         ),
-        Plot.dot(apart, {
-          x: (p) => p.d.x,
-          y: (p) => p.d.y,
-          stroke: "var(--c2)",
-          symbol: "times",
-          r: 3.2,
-          strokeWidth: 1.5,
-        }),
-        ...(partedSpot === undefined
-          ? []
-          : [
-              Plot.text([partedSpot], {
-                x: "x",
-                y: "y",
-                text: () => `move ${parted}`,
-                textAnchor: partedSpot.x > 0.8 ? "end" : "start",
-                dx: partedSpot.x > 0.8 ? -8 : 8,
-                dy: partedSpot.y > 0.9 ? 10 : -8,
-                fill: "var(--c2)",
-                stroke: "var(--paper)",
-                strokeWidth: 4,
-              }),
-            ]),
-        ...startMark(first),
+        cross(false),
+        cross(true),
+        parting.map((p) =>
+          Plot.text([p.exact], {
+            x: "x",
+            y: "y",
+            text: () => `move ${p.step}`,
+            textAnchor: p.exact.x > 0.8 ? "end" : "start",
+            dx: p.exact.x > 0.8 ? -8 : 8,
+            dy: p.exact.y > 0.9 ? 10 : -8,
+            fill: "var(--c2)",
+            stroke: "var(--paper)",
+            strokeWidth: 4,
+          }),
+        ),
+        from === 0 ? startMark((pairs[0] as (typeof pairs)[number]).exact) : [],
       ]),
   });
 }
@@ -147,7 +156,8 @@ export function strayPlot(t: DossierTrajectory, lambda: number | undefined): Htm
       if (distance <= 0.5) rise.push({ step, distance });
     }
   }
-  const tip = rise[rise.length - 1];
+  // Above the line's middle, where nothing else is.
+  const tip = rise[Math.floor(rise.length / 2)];
   return figure({
     id: "plot-stray",
     label:
@@ -173,8 +183,8 @@ export function strayPlot(t: DossierTrajectory, lambda: number | undefined): Htm
                 y: "distance",
                 text: () => "exp(λ₁ n)",
                 textAnchor: "end",
-                dx: -14,
-                dy: -4,
+                dx: -12,
+                dy: -8,
                 fill: "var(--c2)",
               }),
             ]),

@@ -3,11 +3,11 @@ import * as Plot from "@observablehq/plot";
 import { brief, superscript } from "../numbers.js";
 import type { Size } from "./figure.js";
 
-/** A tick of a logarithmic axis: 0.01 to 9 999 plainly, beyond that a power of ten. */
+/** A tick of a logarithmic axis: 0.001 to 9 999 plainly, beyond that a power of ten. */
 export function powerLabel(x: number): string {
   const [mantissa, exponent] = x.toExponential().split("e") as [string, string];
   const e = Number(exponent);
-  if (e >= -2 && e <= 3) return brief(x);
+  if (e >= -3 && e <= 3) return brief(x);
   return mantissa === "1" ? `10${superscript(e)}` : `${mantissa}·10${superscript(e)}`;
 }
 

@@ -17,7 +17,7 @@ export function precisionSummary(dossier: Dossier): Html {
   const met =
     isAnswered(trajectory) &&
     (trajectory.partedAt === undefined
-      ? html`<p>In the walk computed here the two stay within ${brief(trajectory.apart)} of each other for all ${trajectory.distances.length - 1} moves compared.</p>`
+      ? html`<p>In the walk computed here the two stay within ${brief(trajectory.apart)} of each other for all ${brief(trajectory.moves)} moves compared.</p>`
       : html`<p>In the walk computed here the double-precision position was first off by more than ${brief(trajectory.apart)} after move <span class="value">${trajectory.partedAt}</span>.</p>`);
   if (predicted === false && met === false) return missing(precision) ?? html``;
   return html`${predicted}${met}`;
