@@ -6,6 +6,8 @@ import { floorDiv, Rational } from "../exact/rational.js";
 import { type Quantity, quantityNumber } from "../quantity/quantity.js";
 
 const SUPERSCRIPTS = "⁰¹²³⁴⁵⁶⁷⁸⁹";
+/** Significant digits shown at most. */
+const MOST_DIGITS = 13;
 const NOT_FINITE = "not available";
 
 /** An integer as superscript digits, for powers of ten in text and on axes. */
@@ -115,11 +117,15 @@ export function shown(q: Quantity | null | undefined, whole = false): Shown {
     q.standing === "estimated" && q.level !== undefined ? `${words}, ${percent(q.level)} interval` : words;
   const half = high.sub(low).toNumber() / 2;
   if (half === 0) return { value: significant(number, 6), interval: `${significant(number, 6)}`, standing };
-  // Two digits of the half-width: common practice for a measured value.
+  // Two digits of the half-width: common practice for a measured value. Of a proved value no
+  // more than a reader takes in; dossier.json has them all.
   const size = Math.max(Math.abs(low.toNumber()), Math.abs(high.toNumber()));
-  const places = whole && size >= 100 ? Math.min(0, 1 - decade(half)) : 1 - decade(half);
   const e = decimals(size);
-  const value = fixed(Rational.fromNumber(number), places, e, "near");
+  const wanted = whole && size >= 100 ? Math.min(0, 1 - decade(half)) : 1 - decade(half);
+  const places = Math.min(wanted, MOST_DIGITS - 1 - e);
+  // A narrow enclosure says more of the number than the double does.
+  const middle = q.standing === "enclosed" ? low.add(high).mul(Rational.of(1, 2)) : Rational.fromNumber(number);
+  const value = fixed(middle, places, e, "near");
   const ends = `${fixed(low, places, e, "down")} to ${fixed(high, places, e, "up")}`;
   return { value: /^−0(\.0*)?$/.test(value) ? value.slice(1) : value, interval: ends, standing };
 }

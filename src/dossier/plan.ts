@@ -22,7 +22,7 @@ export function lowFrequencies(dimension: number, effort: Effort): number[][] {
 }
 
 /** Points of (Z/q)^d beyond which a modulus is left out. */
-const MOST_POINTS: Readonly<Record<Effort, number>> = { quick: 5000, standard: 30_000, thorough: 300_000 };
+const MOST_POINTS: Readonly<Record<Effort, number>> = { quick: 1000, standard: 10_000, thorough: 300_000 };
 const LARGEST_MODULUS: Readonly<Record<Effort, number>> = { quick: 12, standard: 16, thorough: 31 };
 
 function lcm(a: bigint, b: bigint): bigint {
@@ -69,10 +69,11 @@ export function smallModuli(walk: Walk, effort: Effort): Moduli {
       skipped: "a translation is not known to be rational, so no set of points with one denominator is kept",
     };
   }
-  const fits = (q: number) => q ** walk.dimension <= MOST_POINTS[effort];
+  const fits = (q: number, times = 1) => q ** walk.dimension <= times * MOST_POINTS[effort];
   const moduli: number[] = [];
   const own = walkDenominator(walk);
-  if (own !== undefined && own > 1n && own <= 1n << 31n && fits(Number(own))) moduli.push(Number(own));
+  // The walk's own orbits are the ones that matter: they may cost more.
+  if (own !== undefined && own > 1n && own <= 1n << 31n && fits(Number(own), 20)) moduli.push(Number(own));
   const step = Number(base);
   for (let q = step === 1 ? 2 : step; q <= LARGEST_MODULUS[effort] && fits(q); q += step) {
     if (!moduli.includes(q)) moduli.push(q);

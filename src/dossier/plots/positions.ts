@@ -162,7 +162,7 @@ export function strayPlot(t: DossierTrajectory, lambda: number | undefined): Htm
     id: "plot-stray",
     label:
       "Distance between the exact walk and the double-precision walk against the number of moves, on a logarithmic scale.",
-    caption: html`<b>Distance of the double-precision walk from the exact one.</b> ${lambda === undefined ? "" : html`Dashed: growth at the rate λ<sub>1</sub> = ${significant(lambda)} from the first rounding. `}Dotted: ${brief(t.apart)}. Near the top the distance can grow no more: the two walks have nothing to do with each other.`,
+    caption: html`<b>Distance of the double-precision walk from the exact one.</b> ${lambda === undefined ? "" : html`Dashed: growth at the rate λ<sub>1</sub> = ${significant(lambda)} from the first rounding, about which a single walk wavers. `}Dotted: ${brief(t.apart)}. Near the top the distance can grow no more: the two walks have nothing to do with each other.`,
     draw: (size) => ({
       ...MARGINS,
       height: size.narrow ? 230 : 290,
@@ -174,7 +174,7 @@ export function strayPlot(t: DossierTrajectory, lambda: number | undefined): Htm
         Plot.ruleY([t.apart], { stroke: "currentColor", strokeDasharray: "1.5 3" }),
         Plot.line(rise, { x: "step", y: "distance", stroke: "var(--c2)", strokeDasharray: "6 3", strokeWidth: 1.5 }),
         Plot.line(shownRows, { x: "step", y: "distance", stroke: "var(--c1)", strokeWidth: 1 }),
-        Plot.dot(shownRows, { x: "step", y: "distance", fill: "var(--c1)", r: 2.2 }),
+        Plot.dot(shownRows, { x: "step", y: "distance", fill: "var(--c1)", r: shownRows.length > 120 ? 1.4 : 2.2 }),
         ...(tip === undefined
           ? []
           : [

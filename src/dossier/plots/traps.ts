@@ -10,7 +10,8 @@ import { axisX, axisY, MARGINS, padded } from "./scales.js";
 /** A number of moves, to no more digits than a prediction deserves. */
 export function moves(q: Quantity): string {
   const n = quantityNumber(q);
-  return Number.isFinite(n) ? brief(Math.abs(n) < 10 ? Number(n.toFixed(1)) : Math.round(n)) : "no end of";
+  if (!Number.isFinite(n)) return "no end of";
+  return n < 1 ? "less than 1" : brief(n < 10 ? Number(n.toFixed(1)) : Math.round(n));
 }
 
 interface Dot {
@@ -26,7 +27,7 @@ interface Label extends Dot {
 }
 
 /** Half the room that a label takes, in pixels, and how far it is from its dot. */
-const ROOM = { x: 34, y: 8, away: 13 };
+const ROOM = { x: 17, y: 8, away: 13 };
 
 /** Labels go to the traps that hold longest, wherever they collide with no dot and no other label. */
 function labels(rows: readonly Dot[], place: (r: Dot) => { x: number; y: number }, width: number): Label[] {
@@ -56,7 +57,7 @@ export function trapsPlot(start: StartResult, dimension: number): Html | undefin
       denominator: t.denominator,
       distance: quantityNumber(t.distance),
       hold: quantityNumber(t.hold),
-      words: moves(t.hold),
+      words: moves(t.hold).replace("less than ", "< "),
     }))
     .filter((r) => r.denominator >= 1 && r.distance > 0 && Number.isFinite(r.hold));
   if (rows.length < 3) return undefined;
@@ -80,7 +81,7 @@ export function trapsPlot(start: StartResult, dimension: number): Html | undefin
   return figure({
     id: "plot-traps",
     label: "Distance of the start from nearby rational points against their denominators, both on logarithmic scales.",
-    caption: html`<b>Rational traps.</b> Each dot is a rational point near the start: its distance, its denominator, and (at the strongest) the predicted number of moves for which the walk stays beside its finite orbit. Dashed: √<i>d</i>·<i>q</i><sup>−1−1/<i>d</i></sup>, below which every irrational start has infinitely many rational points (Dirichlet); a dot far below the line is an unusually strong trap.`,
+    caption: html`<b>Rational traps.</b> Each dot is a rational point near the start: its distance, its denominator, and (beside the strongest) the predicted number of moves for which the walk stays near its finite orbit. Dashed: √<i>d</i>·<i>q</i><sup>−1−1/<i>d</i></sup>, below which every irrational start has infinitely many rational points (Dirichlet); a dot far below the line is an unusually strong trap.`,
     draw: (size) => {
       const height = size.narrow ? 240 : 300;
       const frame = {
@@ -99,7 +100,7 @@ export function trapsPlot(start: StartResult, dimension: number): Html | undefin
           {
             x: "denominator",
             y: "distance",
-            text: (r: Label) => `${r.words} moves`,
+            text: (r: Label) => r.words,
             dy: side * ROOM.away,
             fill: "currentColor",
             stroke: "var(--paper)",

@@ -23,7 +23,7 @@ export function quantity(q: Quantity | null | undefined, unit?: string): Html {
 /** The same for a table's cell: the standing under the value. */
 export function cell(q: Quantity | null | undefined, whole = false): Html {
   const s = shown(q, whole);
-  const words = html`<span class="standing">${s.standing}${s.interval !== undefined && ` ${s.interval}`}</span>`;
+  const words = html`<span class="standing">${s.standing}${s.interval !== undefined && html` <span class="interval">${s.interval}</span>`}</span>`;
   return html`<td class="n">${value(s.value)} ${words}</td>`;
 }
 
@@ -38,7 +38,7 @@ export function quantityColumn(name: Piece, all: readonly Quantity[], whole = fa
   const show = (q: Quantity) => {
     const s = shown(q, whole);
     if (s.standing !== common) return cell(q, whole);
-    return html`<td class="n">${value(s.value)}${s.interval !== undefined && html` <span class="standing">${s.interval}</span>`}</td>`;
+    return html`<td class="n">${value(s.value)}${s.interval !== undefined && html` <span class="standing"><span class="interval">${s.interval}</span></span>`}</td>`;
   };
   return { column, show };
 }
