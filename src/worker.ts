@@ -3,7 +3,7 @@
 import "./averages/jobs.js";
 import "./orbits/jobs.js";
 import { listen } from "#worker-port";
-import "./averages/correlations.js";
+import "./averages/correlation-jobs.js";
 import "./growth/jobs.js";
 import "./start/jobs.js";
 import { findJob } from "./kernel/jobs.js";

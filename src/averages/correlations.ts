@@ -13,7 +13,6 @@ import {
   type StepEnd,
 } from "../kernel/dual.js";
 import { afterStep, pairingError, type TableBound } from "../kernel/dual-rounding.js";
-import { defineJob } from "../kernel/jobs.js";
 import { loadKernel } from "../kernel/kernel.js";
 
 export interface CorrelationsPayload {
@@ -111,6 +110,3 @@ export async function correlationSums(payload: CorrelationsPayload): Promise<Cor
   }
   return finish("done");
 }
-
-/** The sums of one observable. */
-export const correlationsJob = defineJob("averages.correlations", correlationSums);

@@ -12,7 +12,8 @@ import { estimatedQuantity, exactQuantity, type Quantity } from "../quantity/qua
 import type { Session } from "../session.js";
 import type { Observable, Walk } from "../walk/walk.js";
 import type { ExactBudget } from "./budget.js";
-import { type CorrelationSums, type CorrelationsPayload, correlationsJob } from "./correlations.js";
+import { correlationsJob } from "./correlation-jobs.js";
+import type { CorrelationSums, CorrelationsPayload } from "./correlations.js";
 import { boxDegeneracy, type Degeneracy, type Differences, degeneracyOf, differencesOf } from "./degenerate.js";
 import type { ExactFinding } from "./finding.js";
 import { type Box, boxMean, boxSquareNorm, isWholeTorus } from "./integral.js";
