@@ -69,7 +69,7 @@ export function trapsPlot(start: StartResult, dimension: number): Html | undefin
   const y = padded(
     rows.map((r) => r.distance),
     "log",
-    0.1,
+    0.15,
   );
   const line: { denominator: number; distance: number }[] = [];
   const power = 1 + 1 / dimension;

@@ -22,7 +22,8 @@ function needed(o: ObservableResult): Piece {
   if (options.length === 0) return "–";
   const distance = (h: number) => Math.abs(Math.log(h / 0.01));
   const s = options.reduce((a, b) => (distance(b.halfWidth) < distance(a.halfWidth) ? b : a));
-  return html`<span class="value">${shown(s.steps, true).value}</span> <span class="standing">for ±${brief(s.halfWidth)}, ${shown(s.steps, true).standing}</span>`;
+  const steps = shown(s.steps, true);
+  return html`<span class="value">${steps.value}</span> <span class="standing">for ±${brief(s.halfWidth)}, ${steps.standing}${steps.interval !== undefined && ` ${steps.interval}`}</span>`;
 }
 
 export function averagesSummary(dossier: Dossier): Html {

@@ -61,9 +61,13 @@ export function lawSection(dossier: Dossier): Html {
     return html`<section id="law"><h2>How fast is the start forgotten?</h2>
 ${missing(law)}</section>
 `;
-  const ends = [...new Set(laws.filter((l) => l.stoppedAt === undefined).map((l) => l.reached?.reason))].filter(
-    (r) => r !== undefined,
-  );
+  const ends = [
+    ...new Set(
+      laws
+        .filter((l) => l.stoppedAt === undefined && l.reached?.reason !== "all steps asked for")
+        .map((l) => l.reached?.reason),
+    ),
+  ].filter((r) => r !== undefined);
   const first = law.coefficients[law.coefficients.length - 1];
   return html`<section id="law"><h2>How fast is the start forgotten?</h2>
 ${lawPlot(laws)}

@@ -1,6 +1,8 @@
 /** The start: its kind, its verdict, the rational traps beside it. */
+
+import { quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html } from "../html.js";
-import { brief, shown } from "../numbers.js";
+import { brief, significant } from "../numbers.js";
 import { moves, trapsPlot } from "../plots/traps.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { evidence } from "./evidence.js";
@@ -15,15 +17,17 @@ const KINDS = {
   density: "drawn from a given density",
 } as const;
 
+const held = (n: string) => (n === "less than 1" ? "less than one move" : `about ${n} moves`);
+
 export function startSummary(dossier: Dossier): Html {
   const start = dossier.start;
   if (!isAnswered(start)) return missing(start) as Html;
   const trap = start.traps[0];
   return html`<p>Equidistribution from this start: ${verdict(start.verdict)}. ${prose(start.verdict.reason)}</p>
-${start.orbit !== undefined && html`<p>Its denominator is ${start.orbit.denominator}; it stays on a finite orbit of size ${quantity(start.orbit.size, "points")}.</p>\n`}
+${start.orbit !== undefined && html`<p>Its denominator is ${start.orbit.denominator}; it stays on a finite orbit, whose number of points is ${quantity(start.orbit.size)}.</p>\n`}
 ${
   trap !== undefined &&
-  html`<p>Strongest trap: a point with denominator ${brief(trap.denominator)} at distance ${shown(trap.distance).value}, predicted to hold the walk for about ${moves(trap.hold)} moves <span class="standing">(</span>${standing(trap.hold)}<span class="standing">)</span>.</p>\n`
+  html`<p>Strongest trap: a point with denominator ${brief(trap.denominator)} at distance ${significant(quantityNumber(trap.distance), 3)}, predicted to hold the walk for ${held(moves(trap.hold))} <span class="standing">(</span>${standing(trap.hold)}<span class="standing">)</span>.</p>\n`
 }`;
 }
 
@@ -71,7 +75,7 @@ ${missing(start)}</section>
   return html`<section id="start"><h2>Is the start safe?</h2>
 <p>Kind: <b>${start.kind}</b> (${KINDS[start.kind]}). Equidistribution: ${verdict(start.verdict)}. ${prose(start.verdict.reason)}</p>
 ${shownEvidence !== undefined && html`<details open><summary>Evidence</summary>${shownEvidence}</details>\n`}
-${start.orbit !== undefined && html`<p>Denominator ${start.orbit.denominator}, orbit of size ${quantity(start.orbit.size, "points")}: time averages converge to the orbit's mean, not to the integral over the torus.</p>\n`}
+${start.orbit !== undefined && html`<p>Denominator ${start.orbit.denominator}, an orbit whose number of points is ${quantity(start.orbit.size)}: time averages converge to the orbit's mean, not to the integral over the torus.</p>\n`}
 ${trapsTable(dossier)}
 ${trapsPlot(start, dimension)}
 </section>

@@ -65,7 +65,7 @@ function start(walk: Walk): Html {
 
 export function walkSection(walk: Walk): Html {
   return html`<section id="walk"><h2>The walk</h2>
-<p>On the torus of dimension ${walk.dimension}. Each move draws one of ${plural(walk.moves.length, "map")}, independently of the past, and applies it modulo 1:</p>
+<p>On the torus of dimension ${walk.dimension}. ${walk.moves.length === 1 ? "Each move applies the same map modulo 1:" : html`Each move draws one of ${plural(walk.moves.length, "map")}, independently of the past, and applies it modulo 1:`}</p>
 <div class="matrices">
 ${walk.moves.map(moveBlock)}</div>
 ${start(walk)}
