@@ -155,7 +155,7 @@ export interface Labels {
   readonly text: string;
 }
 
-const TAME: Labels = {
+export const TAME: Labels = {
   title: "Tray stirring, two strokes",
   move: "long stroke",
   observable: "east probe",

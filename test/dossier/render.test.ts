@@ -1,7 +1,7 @@
 import { parseHTML } from "linkedom";
 import { describe, expect, it } from "vitest";
 import { renderDossier } from "../../src/dossier/render.js";
-import { fixture } from "./fixture.js";
+import { fixture, TAME } from "./fixture.js";
 import { faults } from "./wellformed.js";
 
 const HOSTILE = `<script>alert(1)</script> ]]> & "quoted" 'single' --> </style></svg><img src=x onerror=alert(2)> \u202e`;
@@ -94,6 +94,16 @@ describe("the report", () => {
   });
   it("survives the way through JSON", () => {
     expect(renderDossier(JSON.parse(JSON.stringify(fixture())))).toBe(report);
+  });
+});
+
+describe("warnings", () => {
+  it("stand in the summary too, where a reader may stop", () => {
+    const text = "the sum may be far from its limit";
+    const summary = parsed(renderDossier(fixture({ ...TAME, text }))).querySelector("#summary");
+    const answer = (id: string) => summary?.querySelector(`a[href='#${id}']`)?.closest("div")?.textContent;
+    expect(answer("averages")).toContain(text);
+    expect(answer("growth")).toContain(text);
   });
 });
 

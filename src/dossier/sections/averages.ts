@@ -7,7 +7,7 @@ import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.
 import { pair } from "../plots/figure.js";
 import { type Dossier, isAnswered } from "../result.js";
 import { evidence } from "./evidence.js";
-import { missing, plural, quantity, quantityColumn, table, warning } from "./parts.js";
+import { listed, missing, plural, quantity, quantityColumn, table, warning } from "./parts.js";
 import { prose } from "./prose.js";
 
 /** "fails" would be bad news nowhere else than here, where it is good. */
@@ -37,7 +37,8 @@ export function averagesSummary(dossier: Dossier): Html {
     html`variance <i>v</i>`,
     averages.observables.map((o) => o.variance),
   );
-  return table(
+  const noted = averages.observables.filter((o) => o.notes.length > 0).map((o) => o.label);
+  const found = table(
     html`Limit of each time average; <i>v</i> = lim <i>n</i> Var(average over <i>n</i> moves), so that its error after <i>n</i> moves is about √(<i>v</i>/<i>n</i>); moves until the ${percent(dossier.level)} interval has the half-width named.`,
     [{ name: "observable" }, limit.column, variance.column, { name: "moves" }],
     averages.observables.map(
@@ -45,6 +46,7 @@ export function averagesSummary(dossier: Dossier): Html {
         html`<th scope="row">${o.label}</th>${limit.show(o.mean)}${variance.show(o.variance)}<td>${needed(o)}</td>`,
     ),
   );
+  return html`${found}${averages.warnings.map((w) => warning(w))}${noted.length > 0 && warning(html`Read the <a href="#averages">notes on ${listed(noted)}</a> before relying on these.`)}`;
 }
 
 /** Where all correlations but the first are 0 there is nothing to plot. */

@@ -19,7 +19,7 @@ export function growthSummary(dossier: Dossier): Html {
   const factor = Math.exp(lambda);
   return html`<p>λ<sub>1</sub> = ${quantity(first, "natural logs per move")}${first.standing === "exact" && lambda === 0 ? ": lengths do not grow exponentially" : html`: lengths grow by a factor of about ${significant(factor, 3)} a move`}.</p>
 <p>Around it log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>| spreads with variance ${quantity(growth.logNormVariance, "per move")}.</p>
-`;
+${growth.warnings.map((w) => warning(w))}`;
 }
 
 /** Long, and the plot shows it: folded away. */
