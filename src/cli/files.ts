@@ -1,6 +1,6 @@
 /** Reading input and writing output files. */
 import { access, constants, mkdir, readFile, rename, stat, unlink, writeFile } from "node:fs/promises";
-import { dirname, join } from "node:path";
+import { dirname, join, resolve } from "node:path";
 import { type Fault, OptionsError } from "../errors.js";
 
 /** A system error in words. */
@@ -46,10 +46,18 @@ function unwritable(what: string, error: unknown): OptionsError {
   return new OptionsError([fault]);
 }
 
+/** Level by level: Node's own recursive mkdir does not return where the system refuses with ENOENT, as under /proc. */
+async function makeDirectory(directory: string): Promise<void> {
+  const there = await stat(directory).catch(() => undefined);
+  if (there?.isDirectory()) return;
+  if (dirname(directory) !== directory) await makeDirectory(dirname(directory));
+  await mkdir(directory);
+}
+
 /** Makes the directory where it is missing, and sees that files can be made in it. @throws OptionsError */
 export async function prepareDirectory(directory: string): Promise<void> {
   try {
-    await mkdir(directory, { recursive: true });
+    await makeDirectory(resolve(directory));
     await access(directory, constants.W_OK);
   } catch (error) {
     throw unwritable(directory, error);

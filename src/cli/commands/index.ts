@@ -1,5 +1,6 @@
 /** The commands, in the order of their help. */
 import type { Question } from "../command.js";
+import { assessQuestion } from "./assess.js";
 import { averagesQuestion } from "./averages.js";
 import { conditionsQuestion } from "./conditions.js";
 import { growthQuestion } from "./growth.js";
@@ -9,6 +10,7 @@ import { startQuestion } from "./start.js";
 import { trajectoryQuestion } from "./trajectory.js";
 
 export const QUESTIONS = [
+  assessQuestion,
   conditionsQuestion,
   growthQuestion,
   startQuestion,
