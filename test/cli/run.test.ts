@@ -1,4 +1,4 @@
-import { mkdtemp, readFile, writeFile } from "node:fs/promises";
+import { mkdtemp, readdir, readFile, writeFile } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
 import { beforeAll, describe, expect, it } from "vitest";
@@ -219,6 +219,57 @@ describe("answers", () => {
     expect(JSON.parse(out).positions.map((p: { step: number }) => p.step)).toEqual([0, 1, 2, 3]);
     await writeFile(file, "0\n2\n");
     expect((await cli(["trajectory", tray, "--choices", file])).err).toMatch(/^torwend: --choices: line 2: found "2"/);
+  });
+});
+
+describe("assess", () => {
+  const rational = walk({
+    start: ["1/3", "0"],
+    observables: [{ label: "<b>", box: { low: ["0", "0"], high: ["1/2", "1"] } }],
+  });
+
+  it("writes both files and prints the findings in order", async () => {
+    const out = join(directory, "new", "dossier");
+    const answer = await cli(["assess", "-", "--effort", "quick", "--out", out, "--workers", "0"], rational);
+    expect(answer.status).toBe(0);
+    const order = [
+      "Do the conditions",
+      "How fast do products",
+      "Is this start",
+      "What do time averages",
+      "How fast does the law",
+      "How do finite orbits",
+      "Written: ",
+    ];
+    const places = order.map((heading) => answer.out.indexOf(heading));
+    expect(places.every((p) => p > 0)).toBe(true);
+    expect(places).toEqual([...places].sort((a, b) => a - b));
+    expect(answer.out).not.toMatch(/NaN|undefined|\[object/);
+    expect((await readdir(out)).sort()).toEqual(["dossier.html", "dossier.json"]);
+    const dossier = JSON.parse(await readFile(join(out, "dossier.json"), "utf8"));
+    const fields = ["torwend", "walk", "conditions", "growth", "start", "averages", "law", "orbits"];
+    expect(Object.keys(dossier)).toEqual(expect.arrayContaining(fields));
+    expect(await readFile(join(out, "dossier.html"), "utf8")).toMatch(/^<!doctype html>/i);
+  });
+
+  it("keeps what is finished when a signal stops it", async () => {
+    const out = join(directory, "stopped");
+    const stop = new AbortController();
+    setTimeout(() => stop.abort(), 300);
+    const argv = ["assess", tray, "--effort", "thorough", "--out", out, "--workers", "0", "--json"];
+    const answer = await cli(argv, "", stop.signal);
+    expect(answer.status).toBe(3);
+    expect(answer.err).toMatch(/torwend: stopped by the caller's signal; answered so far: .*run again/);
+    expect(JSON.parse(answer.out)).toEqual(JSON.parse(await readFile(join(out, "dossier.json"), "utf8")));
+  });
+
+  it("refuses early a directory that cannot be written", async () => {
+    const file = join(directory, "in-the-way");
+    await writeFile(file, "");
+    const answer = await cli(["assess", tray, "--out", file]);
+    expect(answer).toMatchObject({ status: 2, out: "" });
+    expect(answer.err).toMatch(/^torwend: --out: .*in-the-way cannot be written: a file of that name is in the way\n$/);
+    expect((await cli(["assess", tray, "--out", "/proc/no/such"])).status).toBe(2);
   });
 });
 

@@ -32,6 +32,14 @@ function limited(dossier: Dossier): string | undefined {
   return `stopped by a limit: ${ends.join("; ")}. To go on: a lower --effort, or a higher --memory`;
 }
 
+/** The warnings of all answers, each once. */
+function warningsOf(dossier: Dossier): string[] {
+  const all = Object.entries(dossier).flatMap(([name, answer]: [string, { warnings?: readonly string[] } | string]) =>
+    typeof answer === "string" ? [] : (answer.warnings ?? []).map((w) => `${name}: ${w}`),
+  );
+  return [...new Set(all)];
+}
+
 export const assessQuestion: Question<{ out?: string }> = {
   name: "assess",
   summary: "all questions that apply, with a dossier written: one page to read, one file of numbers",
@@ -48,6 +56,7 @@ export const assessQuestion: Question<{ out?: string }> = {
     return {
       result: dossier,
       text: page(dossier.walk, [...summary(dossier), where]),
+      warnings: warningsOf(dossier),
       stopped: stopped ?? limited(dossier),
     };
   },
