@@ -18,8 +18,8 @@ export function plain(text: string): string {
     .replace(/[\u202f\u2009]/g, "");
 }
 
-/** The three cells of a quantity: value, interval, standing. */
-export function cells(q: Quantity, whole = false): [string, string, string] {
+/** A quantity's value, interval and standing, as in a sentence. */
+function parts(q: Quantity, whole = false): [string, string, string] {
   const { value: near, interval = "", standing } = shown(q, whole);
   // A count without an interval: the next whole number is enough.
   const count = whole && interval === "" && q.standing !== "exact" && Number.isFinite(quantityNumber(q));
@@ -31,9 +31,15 @@ export function cells(q: Quantity, whole = false): [string, string, string] {
   ];
 }
 
+/** The three cells of a quantity: value, interval, and the standing as one word of the contract. */
+export function cells(q: Quantity, whole = false): [string, string, string] {
+  const [value, interval, standing] = parts(q, whole);
+  return [value, interval, standing.replace("proved to lie in", "enclosed")];
+}
+
 /** One quantity in a line: "1.14331 (estimated, 95 %: 1.14329 to 1.14333)". */
 export function quantity(q: Quantity, whole = false): string {
-  const [value, interval, standing] = cells(q, whole);
+  const [value, interval, standing] = parts(q, whole);
   return interval === "" ? `${value} (${standing})` : `${value} (${standing}: ${interval})`;
 }
 

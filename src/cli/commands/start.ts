@@ -25,7 +25,7 @@ export const startQuestion: Question<{ denominators?: number }> = {
       const sampled = t.sampledHold;
       // The interval is far narrower than a reader needs: --json has it in full.
       const distance = number(quantityNumber(t.distance), 5);
-      const standing = cells(t.distance)[2].replace("proved to lie in", "enclosed");
+      const standing = cells(t.distance)[2];
       const hold = cells(t.hold)[0];
       const seen =
         sampled === undefined
