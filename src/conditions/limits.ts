@@ -19,7 +19,8 @@
  * Norms: Le Page 1982, Guivarc'h and Raugi 1985 (central limit theorem and law of the
  * iterated logarithm for strongly irreducible proximal sets with an exponential moment).
  * Time averages: from a uniform start by Gordin 1969 and the spectral gap (Furman and
- * Shalom 1999); from Diophantine starts, without translations, Boyer 2019.
+ * Shalom 1999). Published results for single starts that rational points approximate badly
+ * (determinant 1, no translations) are mentioned from memory, and nothing rests on them.
  */
 import type { Verdict } from "../quantity/quantity.js";
 import type { Walk } from "../walk/walk.js";
@@ -122,7 +123,7 @@ export function centralLimitVerdict(walk: Walk, finding: GroupFinding): Verdict 
         hypotheses: ["strongly irreducible", "proximal", "exponential moment"],
         timeAverages: translated
           ? "uniform start; single starts are not claimed with translations"
-          : "uniform start; single starts that rational points approximate badly: Boyer 2019, for determinant 1",
+          : "uniform start; for determinant 1 also, from memory, single starts that rational points approximate badly",
       },
     );
   }
