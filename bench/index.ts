@@ -13,7 +13,10 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
 };
 
 const wanted = process.argv.slice(2);
-const table = new Table({ head: ["comparison", "contender", "median ms", "ratio to the first"] });
+const table = new Table({
+  style: { head: [], border: [], compact: true },
+  head: ["comparison", "contender", "median ms", "ratio to the first"],
+});
 for (const [name, load] of Object.entries(suites)) {
   if (wanted.length > 0 && !wanted.includes(name)) continue;
   process.stderr.write(`${name} ...\n`);
