@@ -16,6 +16,7 @@ const isExternal = (id) =>
 const plugins = (conditions, extra = []) => [
   nodeResolve({
     exportConditions: conditions,
+    browser: conditions.includes("browser"),
     preferBuiltins: conditions.includes("node"),
     extensions: [".ts", ".js", ".mjs", ".json"],
   }),

@@ -1,6 +1,15 @@
 /** The package as published: packed, unpacked elsewhere, used by name. Needs `npm run build` (npm test does it). */
 import { execFileSync } from "node:child_process";
-import { existsSync, mkdirSync, mkdtempSync, readFileSync, rmSync, symlinkSync, writeFileSync } from "node:fs";
+import {
+  existsSync,
+  mkdirSync,
+  mkdtempSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  symlinkSync,
+  writeFileSync,
+} from "node:fs";
 import { tmpdir } from "node:os";
 import { join, resolve } from "node:path";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
@@ -74,6 +83,16 @@ describe("the published package", () => {
   it("runs as a command", () => {
     const cli = join(unpacked, "dist/node/cli.js");
     expect(execFileSync(process.execPath, [cli, "--version"], { encoding: "utf8" }).trim()).toBe(VERSION);
+  });
+
+  it("brings all that a browser needs: its modules import nothing but each other", () => {
+    for (const name of readdirSync(join(unpacked, "dist/browser")).filter((file) => file.endsWith(".js"))) {
+      const source = readFileSync(join(unpacked, "dist/browser", name), "utf8");
+      const imported = [...source.matchAll(/\b(?:from|import)\s*\(?"([\w@./:-]+)"/g)].map(
+        (match) => match[1] as string,
+      );
+      expect(imported.filter((path) => !path.startsWith("./"))).toEqual([]);
+    }
   });
 
   it("takes no test, source or bench along", () => {
