@@ -1,45 +1,20 @@
 // Every export of the kernel, grouped by the question that it serves.
 
-// Averages
-export { observeAdd, observeBox, observePhases, observeSum } from "./averages/observe";
-// The dual walk: law, averages
-export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
-export { dualPhase } from "./dual/phase";
-export { dualEvaluate, dualFind, dualGather, dualLargestCoefficient, dualPair } from "./dual/sums";
-export {
-  dualClear,
-  dualCount,
-  dualFoldConjugate,
-  dualFoldEven,
-  dualFoldNone,
-  dualHeaderBytes,
-  dualLargest,
-} from "./dual/table";
-// Orbits
-export {
-  orbitAdd,
-  orbitApply,
-  orbitCentre,
-  orbitLanczos,
-  orbitProject,
-  orbitRotate,
-  orbitScale,
-  orbitSpread,
-} from "./finite/krylov";
-export { orbitLabel, orbitLocal, orbitMatch, orbitTables } from "./finite/tables";
-// Trajectory: big integers
+// The border itself
+export { alloc, mark, release, setCeiling } from "./memory";
+export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";
+export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
+
+// Randomness
+export { drawMoves, drawStart } from "./random/choices";
+export { philoxBlock } from "./random/philox";
+
+// Big integers
 export { multiply, productPlan } from "./fixed/multiply";
 export { lengthFor, makePlan, planBytes } from "./fixed/plan";
 export { errorFactor } from "./fixed/transform";
-// Growth
-export { advanceFrames, advanceVectors, frameLogs, vectorLogs } from "./growth/norms";
-// The border itself
-export { alloc, mark, release, setCeiling } from "./memory";
-export { drawMoves, drawStart } from "./random/choices";
-// Randomness
-export { philoxBlock } from "./random/philox";
-export { realAtan2, realCos, realExp, realLog, realLog1p, realPow, realSin } from "./real";
-export { statusCheckFailed, statusFull, statusNotConverged, statusOverflow } from "./status";
+
+// Where is the walk? The window: short walks, ensembles, leaves of the tree
 export {
   windowBatches,
   windowBytes,
@@ -52,9 +27,43 @@ export {
   windowReplay,
   windowWorkBytes,
 } from "./trajectory/batches";
-// Trajectories
-export { residueWalk, residueWalk2 } from "./trajectory/residue";
+export { windowAdvance, windowCarry, windowEmit, windowStart } from "./trajectory/window";
 export { windowProduct } from "./trajectory/rough";
 export { scatterStart } from "./trajectory/start";
+// the tree: long walks
 export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
-export { windowAdvance, windowCarry, windowEmit, windowStart } from "./trajectory/window";
+// residues: rational starts
+export { residueWalk, residueWalk2 } from "./trajectory/residue";
+
+// How fast do products grow?
+export { advanceFrames, advanceVectors, frameLogs, vectorLogs } from "./growth/norms";
+
+// The law, correlations: the dual walk
+export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
+export { dualPhase } from "./dual/phase";
+export { dualEvaluate, dualFind, dualGather, dualLargestCoefficient, dualPair } from "./dual/sums";
+export {
+  dualClear,
+  dualCount,
+  dualFoldConjugate,
+  dualFoldEven,
+  dualFoldNone,
+  dualHeaderBytes,
+  dualLargest,
+} from "./dual/table";
+
+// Averages along a path
+export { observeAdd, observeBox, observePhases, observeSum } from "./averages/observe";
+
+// Finite orbits
+export {
+  orbitAdd,
+  orbitApply,
+  orbitCentre,
+  orbitLanczos,
+  orbitProject,
+  orbitRotate,
+  orbitScale,
+  orbitSpread,
+} from "./finite/krylov";
+export { orbitLabel, orbitLocal, orbitMatch, orbitTables } from "./finite/tables";
