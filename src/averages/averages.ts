@@ -24,7 +24,7 @@ export async function averages(
 ): Promise<AveragesResult> {
   const walk = asWalk(input);
   return withSession(options, async (session) => {
-    const sampling = samplingOf(options, session, walk.dimension);
+    const sampling = samplingOf(options, session, walk);
     const { findings, orbit, warnings } = await exactAverages(walk, session);
     const sampled = await sampleAverages(walk, session, {
       ...sampling,

@@ -1,7 +1,8 @@
 /** Options of `averages`, read and checked before anything is computed. */
 import { type Fault, OptionsError } from "../errors.js";
 import type { CommonOptions, Session } from "../session.js";
-import { defaultSampling } from "./sampled.js";
+import type { Walk } from "../walk/walk.js";
+import { bitsPerMove, defaultSampling } from "./sampled.js";
 
 export interface AveragesOptions extends CommonOptions {
   /** Moves of each sampled replicate; default by effort. */
@@ -14,9 +15,9 @@ export interface AveragesOptions extends CommonOptions {
 export function samplingOf(
   options: AveragesOptions,
   session: Session,
-  dimension: number,
+  walk: Walk,
 ): { steps: number; replicates: number } {
-  const usual = defaultSampling(session.effort, dimension);
+  const usual = defaultSampling(session.effort, walk.dimension, bitsPerMove(walk));
   const { steps = usual.steps, replicates = usual.replicates } = options;
   const faults: Fault[] = [];
   for (const [pointer, found, most] of [

@@ -28,9 +28,12 @@ const MOST_REPLICATES = 2 ** 20;
  * about 2 s, standard 15 s, thorough 2 min; translations cost the most, a walk without them
  * takes about a third. A move costs more in higher dimensions, so paths get
  * shorter there, by (2/d)^(3/2); the number of replicates decides what coverage and
- * distance can tell, and stays.
+ * distance can tell, and stays. Time grows with the square of the digits that a path
+ * carries, since large entries also leave fewer moves to a pass over them: such walks get
+ * paths as much shorter as their moves consume more.
+ * @param bits that a move consumes, about (see bitsPerMove)
  */
-export function defaultSampling(effort: Effort, dimension: number): { steps: number; replicates: number } {
+export function defaultSampling(effort: Effort, dimension: number, bits = 0): { steps: number; replicates: number } {
   const table = {
     quick: { steps: 16_000, replicates: 500 },
     standard: { steps: 48_000, replicates: 800 },
@@ -38,7 +41,18 @@ export function defaultSampling(effort: Effort, dimension: number): { steps: num
   };
   const { steps, replicates } = table[effort];
   const share = 2 / dimension;
-  return { steps: Math.floor(steps * share * Math.sqrt(share)), replicates };
+  const small = SMALL_BITS / Math.max(SMALL_BITS, bits);
+  return { steps: Math.max(64, Math.floor(steps * share * Math.sqrt(share) * small)), replicates };
+}
+
+/** Bits of a move's largest row sum: of moves with entries of a few units, for which the paths' lengths are meant. */
+const SMALL_BITS = 4;
+
+/** A bound on the bits that a move consumes in the mean: those of its largest row sum. */
+export function bitsPerMove(walk: Walk): number {
+  const bits = (x: bigint) => x.toString(2).length;
+  const size = (row: readonly bigint[]) => bits(row.reduce((s, a) => s + (a < 0n ? -a : a), 0n));
+  return walk.moves.reduce((s, m) => s + m.probability.toNumber() * Math.max(...m.matrix.map(size)), 0);
 }
 
 /**

@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { defaultSampling, type SamplingPlan, sampleAverages } from "../../src/averages/sampled.js";
+import { bitsPerMove, defaultSampling, type SamplingPlan, sampleAverages } from "../../src/averages/sampled.js";
 import { LimitError, OptionsError, StoppedError } from "../../src/errors.js";
 import { type CommonOptions, type Progress, type Session, withSession } from "../../src/session.js";
 import { parseWalk } from "../../src/walk/parse.js";
@@ -140,5 +140,11 @@ describe("defaultSampling", () => {
       expect(thorough!.steps).toBeGreaterThan(standard!.steps);
       expect(thorough!.replicates).toBeGreaterThanOrEqual(standard!.replicates);
     }
+  });
+  it("leaves small entries alone and shortens the paths of large ones", () => {
+    expect(bitsPerMove(parseWalk(document))).toBeLessThanOrEqual(4);
+    expect(defaultSampling("quick", 2, 3)).toEqual(defaultSampling("quick", 2));
+    expect(defaultSampling("quick", 2, 40).steps).toBe(defaultSampling("quick", 2).steps / 10);
+    expect(defaultSampling("quick", 8, 1e6).steps).toBe(64);
   });
 });
