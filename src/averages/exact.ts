@@ -1,12 +1,14 @@
 /** What is known of time averages without sampling: under Haar measure, or on a rational start's finite orbit. */
+
 import { decidePlane } from "../conditions/plane.js";
 import { estimatedQuantity, quantityNumber } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
+import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 import { EXACT_BUDGET, type ExactBudget } from "./budget.js";
 import type { ExactFinding } from "./finding.js";
 import { haarFindings } from "./haar.js";
-import { finiteOrbit, orbitDenominator } from "./orbit.js";
+import { finiteOrbit } from "./orbit.js";
 import { orbitFindings } from "./orbital.js";
 
 export interface ExactAverages {
@@ -41,7 +43,7 @@ export async function exactAverages(
   session: Session,
   budget: ExactBudget = EXACT_BUDGET[session.effort],
 ): Promise<ExactAverages> {
-  const denominator = orbitDenominator(walk);
+  const denominator = commonDenominator(walk);
   if (denominator !== undefined) {
     const orbit = finiteOrbit(walk, budget.points);
     if (orbit !== undefined) {

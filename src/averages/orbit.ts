@@ -3,7 +3,7 @@
  * q of the start and all translations, and what each move does to them. Moves are one-to-one,
  * so the orbit is one communicating class and the uniform measure on it is the stationary law.
  */
-import { gcdBig } from "../exact/rational.js";
+import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 
 export interface FiniteOrbit {
@@ -19,20 +19,9 @@ export interface FiniteOrbit {
 /** Products of two residues, and a coordinate, must add up exactly in doubles. */
 const LARGEST_DENOMINATOR = 2n ** 25n;
 
-/** The denominator of a walk on finitely many points; undefined where a number is not proved rational. */
-export function orbitDenominator(walk: Walk): bigint | undefined {
-  if (walk.start.type !== "point") return undefined;
-  let q = 1n;
-  for (const x of [...walk.start.point, ...walk.moves.flatMap((m) => m.translation ?? [])]) {
-    if (x.rational === undefined) return undefined;
-    q *= x.rational.den / gcdBig(q, x.rational.den);
-  }
-  return q;
-}
-
 /** The orbit; undefined where it has more than `most` points, or a denominator of more than 25 bits. */
 export function finiteOrbit(walk: Walk, most: number): FiniteOrbit | undefined {
-  const common = orbitDenominator(walk);
+  const common = commonDenominator(walk);
   if (common === undefined || walk.start.type !== "point" || common > LARGEST_DENOMINATOR) return undefined;
   const q = Number(common);
   const d = walk.dimension;

@@ -2,13 +2,14 @@
  * The law of x_n through its Fourier coefficients E exp(2 pi i k.x_n), by the dual walk:
  * E e_k(x_n) is the integral of P^n e_k against the law of x_0. No sampling.
  */
+
 import { forwardMoves } from "../dual/moves.js";
-import { gcdBig } from "../exact/rational.js";
 import { type DualShape, DualTables, entriesWithin, movesFit, type StepEnd } from "../kernel/dual.js";
 import { afterStep, type TableBound } from "../kernel/dual-rounding.js";
 import { loadKernel } from "../kernel/kernel.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
+import { commonDenominator } from "../walk/denominator.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { LAW_BUDGET, type LawOptions, type LawRequest, readOptions } from "./options.js";
@@ -16,17 +17,6 @@ import { type ComplexQuantity, exactly, readerOf } from "./readers.js";
 import type { LawCoefficient, LawResult } from "./result.js";
 
 export type { LawOptions } from "./options.js";
-
-/** A common denominator of the start and of every translation, where all are rational; else undefined. */
-function commonDenominator(walk: Walk): bigint | undefined {
-  if (walk.start.type !== "point") return undefined;
-  let q = 1n;
-  for (const x of [...walk.start.point, ...walk.moves.flatMap((m) => m.translation ?? [])]) {
-    if (x.rational === undefined) return undefined;
-    q *= x.rational.den / gcdBig(q, x.rational.den);
-  }
-  return q;
-}
 
 /** The coefficient at every step where nothing has to be followed: k = 0, k.x_n whole, or a uniform start. */
 function constantLaw(walk: Walk, k: readonly bigint[], q: bigint | undefined): ComplexQuantity | undefined {

@@ -1,5 +1,6 @@
 /** Is this start safe, or near a rational trap? */
-import { finiteOrbit, orbitDenominator } from "../averages/orbit.js";
+
+import { finiteOrbit } from "../averages/orbit.js";
 import { conditionsOf, groupFinding } from "../conditions/conditions.js";
 import { LimitError } from "../errors.js";
 import type { ExactNumber } from "../exact/number.js";
@@ -8,6 +9,7 @@ import { loadReal } from "../kernel/real.js";
 import { enclosedBetween, exactQuantity, type Quantity } from "../quantity/quantity.js";
 import { type Effort, type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
+import { commonDenominator } from "../walk/denominator.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { bestApproximations } from "./approximations.js";
@@ -33,7 +35,7 @@ function translationDenominator(walk: Walk): bigint | undefined {
 
 /** The finite orbit of a rational start: its size by enumeration, or between what was seen and all points. */
 function orbitOf(walk: Walk, effort: Effort): { denominator: string; size: Quantity } | undefined {
-  const q = orbitDenominator(walk);
+  const q = commonDenominator(walk);
   if (q === undefined) return undefined;
   const orbit = finiteOrbit(walk, MOST_POINTS[effort]);
   if (orbit !== undefined) {

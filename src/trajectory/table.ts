@@ -1,9 +1,11 @@
 /** A walk's moves in the form that the trajectory kernels take. */
+
 import { LimitError } from "../errors.js";
 import type { ExactNumber } from "../exact/number.js";
-import { floorDiv, gcdBig, type Rational } from "../exact/rational.js";
+import { floorDiv, type Rational } from "../exact/rational.js";
 import type { ResidueTable } from "../kernel/residue.js";
 import type { WindowTable } from "../kernel/trajectory.js";
+import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 
 function absolute(x: bigint): bigint {
@@ -74,21 +76,20 @@ export interface RationalWalk {
 
 /** The walk on (Z/q)^d, where the start and every translation are rational; q is the least common denominator. */
 export function rationalWalk(walk: Walk): RationalWalk | undefined {
-  if (walk.start.type !== "point") return undefined;
-  const zeros = new Array<undefined>(walk.dimension).fill(undefined);
-  const rows: (readonly (Rational | undefined)[])[] = [walk.start.point.map((x) => x.rational)];
-  if (rows[0]?.includes(undefined)) return undefined;
-  let q = 1n;
-  for (const move of walk.moves) {
-    if (move.translation?.some((x) => x.rational === undefined)) return undefined;
-    rows.push(move.translation?.map((x) => x.rational) ?? zeros);
-  }
-  for (const x of rows.flat()) if (x !== undefined) q *= x.den / gcdBig(q, x.den);
-  const numerators = rows.map((row) => row.map((x) => (x === undefined ? 0n : x.mod1().num * (q / x.den)))) as [
-    bigint[],
-    ...bigint[][],
-  ];
-  return { denominator: q, start: numerators[0], translations: numerators.slice(1) };
+  const q = commonDenominator(walk);
+  if (q === undefined || walk.start.type !== "point") return undefined;
+  // Every number is rational here; the denominator says so.
+  const numerators = (row: readonly ExactNumber[]) =>
+    row.map((x) => {
+      const fraction = (x.rational as Rational).mod1();
+      return fraction.num * (q / fraction.den);
+    });
+  const zeros = new Array<bigint>(walk.dimension).fill(0n);
+  return {
+    denominator: q,
+    start: numerators(walk.start.point),
+    translations: walk.moves.map((m) => (m.translation === undefined ? zeros : numerators(m.translation))),
+  };
 }
 
 /** The kernel's table of a rational walk; undefined where its sums would not fit a machine word. */
