@@ -16,8 +16,16 @@ import { exponentEstimates, logNormVariance, type RateEstimate } from "./interva
 import { type PlanarGroup, planarGroup } from "./lines.js";
 import { type GrowthOptions, type GrowthWishes, readOptions } from "./options.js";
 import { samplingPlan } from "./plan.js";
-import { type PressureEstimator, pressureEstimator, pressureTable, singleEstimator } from "./pressure.js";
+import { provePositive } from "./positive/findings.js";
+import {
+  type PressureEstimator,
+  pressureEstimator,
+  pressureTable,
+  requireMoments,
+  singleEstimator,
+} from "./pressure.js";
 import { exactLogNorms } from "./products.js";
+import type { GrowthProof } from "./proof.js";
 import { rateTable } from "./rate.js";
 import type { GrowthResult } from "./result.js";
 import { type GrowthSamples, logAt, sampleReplicates } from "./sample.js";
@@ -44,15 +52,17 @@ export async function growth(walk: WalkInput, options: GrowthOptions & SharedSes
 export async function growthOf(walk: Walk, wishes: GrowthWishes, session: Session): Promise<GrowthResult> {
   const real = await loadReal();
   const group = walk.dimension === 2 ? planarGroup(walk) : undefined;
+  const proof = group === undefined && walk.dimension === 2 ? provePositive(walk, wishes, session, real) : undefined;
+  if (group === undefined && proof === undefined && walk.moves.length > 1) requireMoments(wishes.pressure);
   const found =
-    group === undefined ? await sampled(walk, wishes, session, real) : await known(walk, group, session, real);
+    group === undefined ? await sampled(walk, wishes, session, real, proof) : await known(walk, group, session, real);
   const { estimator, ...rest } = found;
   return {
     torwend: VERSION,
     walk: walk.title,
     ...rest,
-    pressure: await pressureTable(walk, wishes.pressure, estimator, real),
-    rate: await rateTable(estimator),
+    pressure: await pressureTable(walk, wishes.pressure, estimator, proof),
+    rate: proof?.rates() ?? (await rateTable(estimator)),
   };
 }
 
@@ -60,28 +70,46 @@ type Findings = Omit<GrowthResult, "torwend" | "walk" | "pressure" | "rate"> & {
   readonly estimator: PressureEstimator;
 };
 
-/** Exponents and variance from sampled products. */
-async function sampled(walk: Walk, wishes: GrowthWishes, session: Session, real: Real): Promise<Findings> {
+/** Exponents and variance from sampled products, in their places what is proved. */
+async function sampled(
+  walk: Walk,
+  wishes: GrowthWishes,
+  session: Session,
+  real: Real,
+  proof: GrowthProof | undefined,
+): Promise<Findings> {
   const table = growthTable(
     walk.moves.map((m) => m.matrix),
     cumulativeWeights(walk.moves.map((m) => m.probability)),
   );
-  const plan = samplingPlan(table, session.effort, wishes.steps);
-  const samples = await sampleReplicates(session, table, plan, wishes.tolerance);
+  // Beside a proof, samples are for the curve only.
+  const full = samplingPlan(table, proof === undefined ? session.effort : "quick", wishes.steps);
+  const plan = proof === undefined ? full : { ...full, replicates: Math.min(full.replicates, 64) };
+  const tolerance = proof === undefined ? wishes.tolerance : undefined;
+  const samples = await sampleReplicates(session, table, plan, tolerance);
   const { estimates, residual } = exponentEstimates(samples, session.level);
   const variance = logNormVariance(samples, session.level, real);
   const check = await checkDoubles(walk, table, session, estimates[0]?.value ?? 0, real);
   const lost = check.worst > 1e-6;
   const widened = lost ? estimates.map((e) => ({ ...e, halfWidth: e.halfWidth + 2 * check.rate })) : estimates;
-  const warnings = warningsOf(widened, residual, variance.irregular, wishes);
+  const warnings = [...(proof?.warnings ?? []), ...warningsOf(widened, residual, variance.irregular, tolerance)];
   if (lost) {
     warnings.push(
       `rounding: over ${check.moves} moves, doubles and exact integers differ by ${check.worst.toPrecision(2)} in log norm; sampled exponents may be biased`,
     );
   }
+  const exponents = exponentQuantities(walk.dimension, widened, samples, session.level);
+  const sampledTop = exponents[0] as Quantity;
+  if (proof !== undefined && partsFrom(widened[0] as RateEstimate, proof.exponent)) {
+    warnings.push(
+      `sampling in doubles is biased here: it gives ${sampledTop.value} for the top exponent, ${(widened[0] as RateEstimate).halfWidth.toPrecision(2)} either way, which the proved interval excludes`,
+    );
+  }
   return {
-    exponents: exponentQuantities(walk.dimension, widened, samples, session.level),
-    logNormVariance: estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
+    exponents: proof === undefined ? exponents : [proof.exponent, opposite(proof.exponent)],
+    logNormVariance:
+      proof?.variance ?? estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
+    ...(proof === undefined ? {} : { sampled: sampledTop }),
     curve: curveOf(plan.checkpoints, samples.replicates, (r, c) => logAt(samples, r, c, 0), session.level),
     replicates: samples.replicates,
     moves: plan.steps,
@@ -91,6 +119,25 @@ async function sampled(walk: Walk, wishes: GrowthWishes, session: Session, real:
         ? pressureEstimator(walk, session, real)
         : singleEstimator(widened[0] as RateEstimate, session.level),
   };
+}
+
+/** Whether a sampled exponent is far outside a proved interval: six half-widths are no chance. */
+function partsFrom(estimate: RateEstimate, proved: Quantity): boolean {
+  const room = 6 * estimate.halfWidth + 1e-12;
+  return estimate.value < Number(proved.low) - room || estimate.value > Number(proved.high) + room;
+}
+
+/** The second exponent of dimension 2 from the first: determinants are +-1. */
+function opposite(top: Quantity): Quantity {
+  const negative = (text: string | undefined) =>
+    text === "0" ? "0" : text?.startsWith("-") ? text.slice(1) : `-${text}`;
+  return {
+    value: typeof top.value === "number" ? 0 - top.value : `-${top.value}`,
+    standing: top.standing,
+    low: negative(top.high),
+    high: negative(top.low),
+    method: "minus the first: determinants are +-1",
+  } as Quantity;
 }
 
 /** Dimension 2, group finite or keeping lines: no sampling but for the curve, in exact integers. */
@@ -148,7 +195,7 @@ function warningsOf(
   estimates: readonly RateEstimate[],
   residual: number,
   irregular: boolean,
-  wishes: GrowthWishes,
+  tolerance: number | undefined,
 ): string[] {
   const warnings: string[] = [];
   const widest = Math.max(...estimates.map((e) => e.halfWidth));
@@ -162,9 +209,9 @@ function warningsOf(
     warnings.push(`rounding: the sampled exponents add up to ${residual.toPrecision(2)} instead of 0`);
   }
   const reached = estimates[0]?.halfWidth ?? 0;
-  if (wishes.tolerance !== undefined && reached > wishes.tolerance) {
+  if (tolerance !== undefined && reached > tolerance) {
     warnings.push(
-      `the top exponent is known to ${reached.toPrecision(2)}, not to the wanted ${wishes.tolerance}: stopped by the effort's limit`,
+      `the top exponent is known to ${reached.toPrecision(2)}, not to the wanted ${tolerance}: stopped by the effort's limit`,
     );
   }
   return warnings;

@@ -5,9 +5,9 @@ import type { CommonOptions } from "../session.js";
 export interface GrowthOptions extends CommonOptions {
   /** Wanted half-width of the top exponent's interval, per move; sampling stops there, or at the effort's limit. */
   readonly tolerance?: number;
-  /** Wanted decimals of the top exponent: a tolerance of half a unit of the last one. */
+  /** Wanted decimals of the top exponent. Where it is sampled: a tolerance of half a unit of the last one. */
   readonly digits?: number;
-  /** The s at which Lambda(s) is wanted. Default: 0.5, 1, 2, 4. */
+  /** The s at which Lambda(s) is wanted, from -64 to 64; at most -1 only where it can be proved. Default: 0.5, 1, 2, 4. */
   readonly pressure?: readonly number[];
   /** Moves of a replicate, after its warm-up. Default: by effort. */
   readonly steps?: number;
@@ -17,6 +17,7 @@ export const DEFAULT_PRESSURE: readonly number[] = [0.5, 1, 2, 4];
 
 export interface GrowthWishes {
   readonly tolerance: number | undefined;
+  readonly digits: number | undefined;
   readonly pressure: readonly number[];
   readonly steps: number | undefined;
 }
@@ -36,9 +37,9 @@ export function readOptions(options: GrowthOptions): GrowthWishes {
   if (steps !== undefined && !(Number.isInteger(steps) && steps >= 64 && steps <= 1e9)) {
     fault("--steps", steps, "a whole number from 64 to 1000000000");
   }
-  for (const s of pressure) if (!(s > -1 && s <= 64)) fault("--pressure", s, "numbers above -1, at most 64");
+  for (const s of pressure) if (!(s >= -64 && s <= 64)) fault("--pressure", s, "numbers from -64 to 64");
   if (faults.length > 0) throw new OptionsError(faults);
   const byDigits = digits === undefined ? undefined : Math.max(0.5 * Number(`1e-${digits}`), Number.MIN_VALUE);
   const wanted = [tolerance, byDigits].filter((t) => t !== undefined);
-  return { tolerance: wanted.length === 0 ? undefined : Math.min(...wanted), pressure, steps };
+  return { tolerance: wanted.length === 0 ? undefined : Math.min(...wanted), digits, pressure, steps };
 }

@@ -1,4 +1,6 @@
 /** Lambda(s) at the s that were asked for: proved where symmetric powers prove it, else estimated. */
+
+import { OptionsError } from "../errors.js";
 import { cumulativeWeights } from "../kernel/draws.js";
 import type { Real } from "../kernel/real.js";
 import { estimatedQuantity, type Quantity } from "../quantity/quantity.js";
@@ -7,6 +9,7 @@ import { meanEstimate } from "../statistics/intervals.js";
 import type { Walk } from "../walk/walk.js";
 import { populationJob } from "./jobs.js";
 import { DirectionOperator } from "./operator.js";
+import type { GrowthProof } from "./proof.js";
 import { provedPressure } from "./symmetric.js";
 
 /** Lambda at one s, as a number or with its standing. */
@@ -94,14 +97,37 @@ export function pressureEstimator(walk: Walk, session: Session, real: Real): Pre
   return walk.dimension === 2 ? planar(walk, session, real) : spatial(walk, session);
 }
 
+/**
+ * Where nothing but an estimate is at hand, s must be above -1: moments of vectors and of norms part there.
+ * @throws OptionsError naming every s that is not
+ */
+export function requireMoments(values: readonly number[]): void {
+  const low = values.filter((s) => s <= -1);
+  if (low.length === 0) return;
+  throw new OptionsError(
+    low.map((s) => ({
+      pointer: "--pressure",
+      message: `found ${s}; accepted: numbers above -1, where the moves are not positive on a common cone`,
+    })),
+  );
+}
+
+/** Lambda at each s: exact where symmetric powers make it so, enclosed by `proof` or by them, else estimated. */
 export async function pressureTable(
   walk: Walk,
   values: readonly number[],
   estimator: PressureEstimator,
-  real: Real,
+  proof?: GrowthProof,
 ): Promise<{ s: number; value: Quantity }[]> {
-  const proved = new Map(values.map((s) => [s, provedPressure(walk, s, real)]));
+  const proved = new Map(
+    values.map((s) => {
+      const known = provedPressure(walk, s);
+      return [s, known?.standing === "exact" ? known : (proof?.pressure(s) ?? known)];
+    }),
+  );
   const open = values.filter((s) => proved.get(s) === undefined);
+  // The cone proves what is asked far below 0; where its polynomials do not reach, there is no estimate.
+  requireMoments(proof === undefined ? [] : open);
   const estimates = await estimator.estimate(open);
   return values.map((s) => ({ s, value: proved.get(s) ?? (estimates[open.indexOf(s)] as Quantity) }));
 }

@@ -19,6 +19,8 @@ export interface GrowthResult {
     readonly low: number;
     readonly high: number;
   }[];
+  /** Where the top exponent is proved: what sampling alone says of it. */
+  readonly sampled?: Quantity;
   readonly replicates: number;
   readonly moves: number;
   readonly warnings: readonly string[];

@@ -15,10 +15,12 @@
  * positive coefficients exclude real roots from x on, and r is one.) Bisection with it, in
  * exact integers, encloses r as narrowly as wanted.
  */
-import { bitLength, gcdBig, Rational } from "../exact/rational.js";
-import type { Real } from "../kernel/real.js";
-import { closedForm, enclosedQuantity, exactQuantity, type Quantity } from "../quantity/quantity.js";
+import { ballOf } from "../exact/ball.js";
+import { logOfBall } from "../exact/elementary.js";
+import { Rational } from "../exact/rational.js";
+import { closedForm, enclosedBetween, exactQuantity, type Quantity } from "../quantity/quantity.js";
 import type { Walk } from "../walk/walk.js";
+import { integerWeights } from "../walk/weights.js";
 
 /** Symmetric powers of more dimensions than this are left to estimates. */
 const MAX_SIZE = 36;
@@ -145,11 +147,14 @@ function exceeds(p: readonly bigint[], x: bigint): boolean {
   return rest.length > 1 && !allPositive(rest, x, 0);
 }
 
-/** log of a positive fraction, and a bound on its error: conversion 2^-53, logarithm one unit in the last place. */
-function logOf(x: Rational, real: Real): { value: number; error: number } {
-  const scale = Math.max(0, bitLength(x.num) - bitLength(x.den) - 500);
-  const value = real.log(Rational.of(x.num, x.den << BigInt(scale)).toNumber()) + scale * Math.LN2;
-  return { value, error: 2 ** -52 * (1 + scale) + Math.abs(value) * 2 ** -51 };
+/** Bits of the logarithms: more than the bisection leaves open. */
+const LOG_BITS = 96;
+
+/** log of a positive fraction between two fractions. */
+function logOf(x: Rational): { low: Rational; high: Rational } {
+  const { mid, rad } = logOfBall(ballOf(x, LOG_BITS), LOG_BITS);
+  const one = 1n << BigInt(LOG_BITS);
+  return { low: Rational.of(mid - rad, one), high: Rational.of(mid + rad, one) };
 }
 
 function binomial(n: number, k: number): number {
@@ -159,16 +164,13 @@ function binomial(n: number, k: number): number {
 }
 
 /** Lambda(s) with a proof, or undefined where symmetric powers do not give it. */
-export function provedPressure(walk: Walk, s: number, real: Real): Quantity | undefined {
+export function provedPressure(walk: Walk, s: number): Quantity | undefined {
   if (s === 0) return exactQuantity(0n, "E of 1");
   const nonNegative = walk.moves.every((m) => m.matrix.every((row) => row.every((x) => x >= 0n)));
   if (!Number.isInteger(s) || s < 1 || (s % 2 !== 0 && !nonNegative)) return undefined;
   if (binomial(walk.dimension + s - 1, s) > MAX_SIZE) return undefined;
-  const common = walk.moves.reduce((c, m) => (c / gcdBig(c, m.probability.den)) * m.probability.den, 1n);
-  const powers = walk.moves.map((m) => ({
-    weight: m.probability.num * (common / m.probability.den),
-    matrix: symmetricPower(m.matrix, s),
-  }));
+  const { weights, total: common } = integerWeights(walk);
+  const powers = walk.moves.map((m, i) => ({ weight: weights[i], matrix: symmetricPower(m.matrix, s) }));
   const size = powers[0]?.matrix.length as number;
   const sum = Array.from({ length: size }, (_, i) =>
     Array.from({ length: size }, (_, j) =>
@@ -180,10 +182,12 @@ export function provedPressure(walk: Walk, s: number, real: Real): Quantity | un
   if ("integer" in radius) {
     const r = Rational.of(radius.integer, common);
     if (r.equals(Rational.ONE)) return exactQuantity(0n, method);
-    return closedForm(`log(${r})`, logOf(r, real).value, method);
+    return closedForm(`log(${r})`, logOf(r).low.toNumber(), method);
   }
   const scale = common << BigInt(radius.shift);
-  const low = logOf(Rational.of(radius.low, scale), real);
-  const high = logOf(Rational.of(radius.high, scale), real);
-  return enclosedQuantity(low.value - low.error, high.value + high.error, method);
+  return enclosedBetween(
+    logOf(Rational.of(radius.low, scale)).low,
+    logOf(Rational.of(radius.high, scale)).high,
+    method,
+  );
 }

@@ -20,7 +20,7 @@ function write(m: bigint, places: number): string {
   const negative = m < 0n;
   let digits = (negative ? -m : m).toString();
   let exponent = "";
-  if (places > 40 || places < 0) {
+  if (places - digits.length > 23 || places < 0) {
     const e = digits.length - 1 - places;
     exponent = `e${e}`;
     places = digits.length - 1;

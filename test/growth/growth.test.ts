@@ -4,7 +4,7 @@ import { growth } from "../../src/growth/growth.js";
 import { readOptions } from "../../src/growth/options.js";
 import { loadReal } from "../../src/kernel/real.js";
 import { quantityNumber } from "../../src/quantity/quantity.js";
-import { type Numbers, POSITIVE_PAIR, RANDOM_FIBONACCI, shear, walkOf } from "./walks.js";
+import { type Numbers, POSITIVE_PAIR, RANDOM_FIBONACCI, SIGNED, shear, walkOf } from "./walks.js";
 
 // A loose tolerance: the first round of replicates is enough here.
 const here = { workers: 0, effort: "quick", tolerance: 1 } as const;
@@ -50,7 +50,7 @@ describe("growth", () => {
   });
 
   it("gives the same result for any number of workers, another for another seed", async () => {
-    const walk = walkOf(POSITIVE_PAIR);
+    const walk = walkOf(SIGNED);
     const one = await growth(walk, { ...here, steps: 4000 });
     expect(await growth(walk, { ...here, steps: 4000, workers: 2 })).toEqual(one);
     expect(quantityNumber((await growth(walk, { ...here, steps: 4000, seed: 2 })).exponents[0]!)).not.toBe(
@@ -59,7 +59,7 @@ describe("growth", () => {
   });
 
   it("stops at a tolerance, and says so where it is out of reach", async () => {
-    const walk = walkOf(POSITIVE_PAIR);
+    const walk = walkOf(SIGNED);
     const loose = await growth(walk, { ...here, steps: 4096, tolerance: 0.01 });
     expect(loose.replicates).toBe(32);
     expect(loose.warnings).toEqual([]);
@@ -69,7 +69,7 @@ describe("growth", () => {
   });
 
   it("names every wrong option", () => {
-    const wrong = { tolerance: 0, digits: 1.5, pressure: [-1], steps: 3 };
+    const wrong = { tolerance: 0, digits: 1.5, pressure: [-65], steps: 3 };
     try {
       readOptions(wrong);
       expect.unreachable();

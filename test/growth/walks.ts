@@ -59,3 +59,17 @@ export const POSITIVE_PAIR: readonly Numbers[] = [
     [2, 1],
   ],
 ];
+
+/** Dimension 3, signs: sampled, whatever is proved of other sets. */
+export const SIGNED: readonly Numbers[] = [
+  [
+    [0, 1, 0],
+    [0, 0, 1],
+    [1, 1, -1],
+  ],
+  [
+    [1, -1, 0],
+    [0, 1, 0],
+    [1, 0, 1],
+  ],
+];

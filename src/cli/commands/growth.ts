@@ -17,11 +17,16 @@ export const growthQuestion: Question<Values> = {
   options: [
     { flags: "--tolerance <t>", text: "wanted half-width of the top exponent's interval", read: real },
     { flags: "--digits <d>", text: "wanted decimals of the top exponent", read: whole },
-    { flags: "--pressure <s>", text: "the s of Lambda(s), separated by commas (default: 0.5,1,2,4)", read: realList },
+    {
+      flags: "--pressure <s>",
+      text: "the s of Lambda(s), from -64 to 64, separated by commas (default: 0.5,1,2,4)",
+      read: realList,
+    },
     { flags: "--steps <n>", text: "moves of a replicate", read: whole },
   ],
   ask: async ({ walk, values, common }) => {
     const result = await growth(walk, { ...common, ...values });
+    const first = result.exponents[0];
     const row = (name: string, q: Parameters<typeof cells>[0]) => [name, ...cells(q)];
     const text = page(result.walk, [
       block(
@@ -31,6 +36,9 @@ export const growthQuestion: Question<Values> = {
           result.exponents.map((q, i) => row(`lambda_${i + 1}`, q)),
         ),
       ),
+      values.digits === undefined || first?.standing !== "enclosed"
+        ? undefined
+        : block("lambda_1 lies between", `  ${first.low}\n  ${first.high}`),
       `Variance of the log norm per move: ${quantity(result.logNormVariance)}`,
       block(
         "Pressure Lambda(s) = lim 1/n log E norm(A_n...A_1)^s",
@@ -48,7 +56,9 @@ export const growthQuestion: Question<Values> = {
               result.rate.map((r) => row(number(r.speed, 6), r.rate)),
             ),
           ),
-      `From ${result.replicates} replicates of ${result.moves} moves.`,
+      result.sampled === undefined
+        ? `From ${result.replicates} replicates of ${result.moves} moves.`
+        : `Sampled beside the proof, ${result.replicates} replicates of ${result.moves} moves: lambda_1 = ${quantity(result.sampled)}.`,
     ]);
     return { result, text, warnings: result.warnings };
   },

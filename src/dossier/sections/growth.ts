@@ -73,7 +73,7 @@ ${
 }
 ${rateTable(growth)}
 ${pair(pressurePlot(growth), ratePlot(growth))}
-<p class="note">Sampled: ${brief(growth.replicates)} independent products of ${brief(growth.moves)} moves.</p>
+<p class="note">Sampled: ${brief(growth.replicates)} independent products of ${brief(growth.moves)} moves${growth.sampled && html`; from them alone λ<sub>1</sub> = ${quantity(growth.sampled)}`}.</p>
 </section>
 `;
 }

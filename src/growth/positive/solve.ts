@@ -1,0 +1,59 @@
+/**
+ * Linear equations in fixed point: factorised once in doubles, refined with exact residuals.
+ * What comes out is a candidate; whoever uses it proves what it is good for.
+ */
+import { LuDecomposition, Matrix } from "ml-matrix";
+import { bitLength } from "../../exact/rational.js";
+
+/** m 2^-p as a double. */
+export function toDouble(m: bigint, p: number): number {
+  const drop = Math.max(0, bitLength(m) - 64);
+  return Number(m >> BigInt(drop)) * 2 ** (drop - p);
+}
+
+/** T_0(x), ..., T_{count-1}(x). */
+export function chebyshevRow(x: number, count: number): number[] {
+  const row = [1, x];
+  for (let k = 2; k < count; k++) row.push(2 * x * row[k - 1] - row[k - 2]);
+  return row.slice(0, count);
+}
+
+/**
+ * Unknowns, in units of 2^-p, that make all residuals small: starting from `unknowns`, the
+ * correction solves `matrix` with the residuals as right-hand side, until that helps no more.
+ */
+export function refine(
+  matrix: readonly (readonly number[])[],
+  unknowns: bigint[],
+  residuals: (unknowns: readonly bigint[]) => bigint[],
+): bigint[] {
+  const lu = new LuDecomposition(new Matrix(matrix.map((row) => [...row])));
+  let best = unknowns;
+  let least = -1;
+  let stalled = 0;
+  for (;;) {
+    const r = residuals(unknowns);
+    let bits = 0;
+    for (const x of r) bits = Math.max(bits, bitLength(x));
+    if (least >= 0 && bits >= least - 3) {
+      if (bits < least) best = unknowns;
+      if (stalled++ > 0) return best;
+    }
+    if (least < 0 || bits < least) [best, least] = [unknowns, bits];
+    if (bits <= 4) return best;
+    // The residuals over the largest one: doubles, whatever the precision.
+    const drop = Math.max(0, bits - 60);
+    const scaled = r.map((x) => Number(x >> BigInt(drop)) / 2 ** 60);
+    const step = lu.solve(Matrix.columnVector(scaled)).to1DArray();
+    if (!step.every(Number.isFinite)) return best;
+    unknowns = unknowns.map((x, k) => x + shifted(step[k], drop + 60));
+  }
+}
+
+/** x 2^bits, rounded towards 0. */
+function shifted(x: number, bits: number): bigint {
+  // 2^60 x is an integer up to what refinement repairs; |x| is small.
+  const m = BigInt(Math.trunc(x * 2 ** 60));
+  const shift = bits - 60;
+  return shift >= 0 ? m << BigInt(shift) : m >> BigInt(-shift);
+}
