@@ -37,6 +37,7 @@ export { residueWalk, residueWalk2 } from "./trajectory/residue";
 
 // How fast do products grow?
 export { advanceFrames, advanceVectors, frameLogs, vectorLogs } from "./growth/norms";
+export { wordMeans, wordNorms } from "./growth/words";
 
 // The law, correlations: the dual walk
 export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";

@@ -11,6 +11,7 @@ import { VERSION } from "../version.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { checkDoubles } from "./check.js";
+import { enumeratedBounds } from "./enumerated.js";
 import { flatGrowth, lineGrowth } from "./exceptional.js";
 import { exponentEstimates, logNormVariance, type RateEstimate } from "./intervals.js";
 import { type PlanarGroup, planarGroup } from "./lines.js";
@@ -99,17 +100,21 @@ async function sampled(
     );
   }
   const exponents = exponentQuantities(walk.dimension, widened, samples, session.level);
-  const sampledTop = exponents[0] as Quantity;
-  if (proof !== undefined && partsFrom(widened[0] as RateEstimate, proof.exponent)) {
+  const top = widened[0] as RateEstimate;
+  const bounds = walk.dimension === 2 ? {} : await enumeratedBounds(walk, session);
+  const enclosed = proof?.exponent ?? bounds.enclosure;
+  const biased = excludes(top, enclosed, bounds.upperBound?.value);
+  if (biased) {
     warnings.push(
-      `sampling in doubles is biased here: it gives ${sampledTop.value} for the top exponent, ${(widened[0] as RateEstimate).halfWidth.toPrecision(2)} either way, which the proved interval excludes`,
+      `sampling in doubles is biased here: it gives ${top.value} for the top exponent, ${top.halfWidth.toPrecision(2)} either way, which is proved impossible`,
     );
   }
+  const narrow = enclosed !== undefined && (biased || widthOf(enclosed) <= 2 * top.halfWidth);
   return {
-    exponents: proof === undefined ? exponents : [proof.exponent, opposite(proof.exponent)],
+    exponents: narrow ? withTop(exponents, enclosed) : exponents,
     logNormVariance:
       proof?.variance ?? estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
-    ...(proof === undefined ? {} : { sampled: sampledTop }),
+    ...(narrow ? { sampled: exponents[0] as Quantity } : bounds),
     curve: curveOf(plan.checkpoints, samples.replicates, (r, c) => logAt(samples, r, c, 0), session.level),
     replicates: samples.replicates,
     moves: plan.steps,
@@ -121,10 +126,19 @@ async function sampled(
   };
 }
 
-/** Whether a sampled exponent is far outside a proved interval: six half-widths are no chance. */
-function partsFrom(estimate: RateEstimate, proved: Quantity): boolean {
+const widthOf = (q: Quantity) => Number(q.high) - Number(q.low);
+
+/** Whether proofs exclude a sampled exponent: six half-widths off are no chance. */
+function excludes(estimate: RateEstimate, enclosed: Quantity | undefined, upper: Quantity | undefined): boolean {
   const room = 6 * estimate.halfWidth + 1e-12;
-  return estimate.value < Number(proved.low) - room || estimate.value > Number(proved.high) + room;
+  const most = enclosed ?? upper;
+  if (most !== undefined && estimate.value > Number(most.high) + room) return true;
+  return enclosed !== undefined && estimate.value < Number(enclosed.low) - room;
+}
+
+/** The exponents with a proved first one. */
+function withTop(exponents: readonly Quantity[], top: Quantity): Quantity[] {
+  return exponents.length === 2 ? [top, opposite(top)] : [top, ...exponents.slice(1)];
 }
 
 /** The second exponent of dimension 2 from the first: determinants are +-1. */

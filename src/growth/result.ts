@@ -1,5 +1,12 @@
 import type { Quantity } from "../quantity/quantity.js";
 
+/** (1/n) E log |A_n...A_1| for one n: at least lambda_1. */
+export interface UpperBound {
+  /** n */
+  readonly moves: number;
+  readonly value: Quantity;
+}
+
 /** Answer of `growth`. All rates in natural logarithms per move. */
 export interface GrowthResult {
   readonly torwend: string;
@@ -21,6 +28,10 @@ export interface GrowthResult {
   }[];
   /** Where the top exponent is proved: what sampling alone says of it. */
   readonly sampled?: Quantity;
+  /** A proved interval of the top exponent that is wider than the sampled one. */
+  readonly enclosure?: Quantity;
+  /** A proved upper bound of the top exponent where it is not enclosed; dimension 3 and more. */
+  readonly upperBound?: UpperBound;
   readonly replicates: number;
   readonly moves: number;
   readonly warnings: readonly string[];

@@ -39,6 +39,9 @@ export const growthQuestion: Question<Values> = {
       values.digits === undefined || first?.standing !== "enclosed"
         ? undefined
         : block("lambda_1 lies between", `  ${first.low}\n  ${first.high}`),
+      result.enclosure && `Proved: lambda_1 = ${quantity(result.enclosure)}.`,
+      result.upperBound &&
+        `Proved: lambda_1 is at most ${quantity(result.upperBound.value)}, the mean log norm of ${result.upperBound.moves} moves over their number.`,
       `Variance of the log norm per move: ${quantity(result.logNormVariance)}`,
       block(
         "Pressure Lambda(s) = lim 1/n log E norm(A_n...A_1)^s",

@@ -61,6 +61,8 @@ ${table(
     (q, i) => html`<th scope="row">λ<sub>${i + 1}</sub></th>${exponents.show(q)}<td>${prose(q.method)}</td>`,
   ),
 )}
+${growth.enclosure && html`<p>Proved, if less narrow: λ<sub>1</sub> = ${quantity(growth.enclosure, "natural logs per move")}; ${prose(growth.enclosure.method)}.</p>`}
+${growth.upperBound && html`<p>Proved: λ<sub>1</sub> is at most ${quantity(growth.upperBound.value, "natural logs per move")}, the mean of log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>| over <i>n</i> for <i>n</i> = ${growth.upperBound.moves}, all words counted.</p>`}
 <p>Limit of Var(log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>|)/<i>n</i>: ${quantity(growth.logNormVariance, "squared logs per move")}; ${prose(growth.logNormVariance.method)}.</p>
 ${growthCurve(growth, dossier.level)}
 ${

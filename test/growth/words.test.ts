@@ -1,0 +1,123 @@
+import { describe, expect, it } from "vitest";
+import { growth } from "../../src/growth/growth.js";
+import { nonNegativeMoves } from "../../src/growth/orthant.js";
+import { PositiveSet } from "../../src/growth/positive/positive.js";
+import { meansJob, normsJob, runWords } from "../../src/growth/words.js";
+import { loadKernel } from "../../src/kernel/kernel.js";
+import { loadReal } from "../../src/kernel/real.js";
+import { wordMeans, wordNorms } from "../../src/kernel/words.js";
+import { type Numbers, POSITIVE_PAIR, RANDOM_FIBONACCI, SIGNED, shear, walkOf } from "./walks.js";
+
+/** Positive, dimension 3. */
+const POSITIVE_3: readonly Numbers[] = [
+  [
+    [1, 1, 1],
+    [1, 2, 2],
+    [1, 2, 3],
+  ],
+  [
+    [2, 1, 1],
+    [1, 1, 1],
+    [1, 1, 2],
+  ],
+];
+
+/** D A D for D = diag(1, -1, 1), and the second move negated. */
+const HIDDEN_3 = POSITIVE_3.map((m, i) =>
+  m.map((row, j) => row.map((x, k) => x * (j === 1 ? -1 : 1) * (k === 1 ? -1 : 1) * (i === 1 ? -1 : 1))),
+);
+
+describe("nonNegativeMoves", () => {
+  it("finds the signs, and says where there are none", () => {
+    const plain = POSITIVE_3.map((m) => m.map((row) => row.map(BigInt)));
+    expect(nonNegativeMoves(walkOf(HIDDEN_3))).toEqual(plain);
+    expect(nonNegativeMoves(walkOf(SIGNED))).toBeUndefined();
+    expect(nonNegativeMoves(walkOf(RANDOM_FIBONACCI))).toBeUndefined();
+  });
+});
+
+describe("wordMeans", () => {
+  it("encloses a positive set's exponent, narrowly, and both builds give the same bits", async () => {
+    const { table } = meansJob(walkOf(POSITIVE_PAIR, [1, 3]), "quick")!;
+    const exponent = PositiveSet.of(walkOf(POSITIVE_PAIR, [1, 3]), await loadReal())!.exponent(80);
+    const runs = await Promise.all(
+      (["simd", "plain"] as const).map(async (target) => wordMeans(await loadKernel({ target }), table, 60, 1e-16)),
+    );
+    expect(runs[0]).toEqual(runs[1]);
+    const [{ low, high }] = runs as [(typeof runs)[0]];
+    expect(low < exponent.low.toNumber() && exponent.high.toNumber() < high).toBe(true);
+    expect(high - low).toBeLessThan(1e-12);
+  });
+
+  it("encloses the exponent of parabolic moves", async () => {
+    const real = await loadReal();
+    // The dimension of Minkowski's question-mark measure (Alkauskas, from memory), log 2 over twice it.
+    const value = real.log(2) / (2 * 0.874716305108211);
+    const { low, high } = await runWords(meansJob(walkOf([shear(2, 0, 1), shear(2, 1, 0)]), "standard")!);
+    expect(low < value && value < high).toBe(true);
+    expect(high - low).toBeLessThan(1e-6);
+  });
+
+  it("narrows in dimension 3 around the golden mean's cousin: one move, log of its spectral radius", async () => {
+    const real = await loadReal();
+    // x^3 - x - 1, the plastic number.
+    const move = [
+      [0, 0, 1],
+      [1, 0, 1],
+      [0, 1, 0],
+    ];
+    const { low, high } = await runWords(meansJob(walkOf([move]), "quick")!);
+    const value = real.log(1.324717957244746);
+    expect(low - 1e-15 < value && value < high + 1e-15).toBe(true);
+    expect(high - low).toBeLessThan(1e-11);
+  });
+});
+
+describe("wordNorms", () => {
+  it("is the mean over all words, as integers have it", async () => {
+    const real = await loadReal();
+    const walk = walkOf(SIGNED, [1, 2]);
+    const { table } = normsJob(walk, "quick")!;
+    const moves = walk.moves.map((m) => m.matrix);
+    const times = (a: readonly (readonly bigint[])[], b: readonly (readonly bigint[])[]) =>
+      a.map((row) => row.map((_, k) => row.reduce((s, x, j) => s + x * b[j]![k]!, 0n)));
+    const sum = (xs: readonly bigint[]) => xs.reduce((s, x) => s + Math.abs(Number(x)), 0);
+    const mean = (m: readonly (readonly bigint[])[], left: number): number => {
+      if (left > 0) return mean(times(moves[0]!, m), left - 1) / 3 + (2 * mean(times(moves[1]!, m), left - 1)) / 3;
+      const frobenius = m.flat().reduce((s, x) => s + Number(x * x), 0);
+      const other = Math.max(...m.map(sum)) * Math.max(...m.map((_, k) => sum(m.map((row) => row[k]!))));
+      return real.log(Math.min(frobenius, other)) / 2;
+    };
+    const unit = [0, 1, 2].map((i) => [0, 1, 2].map((j) => (i === j ? 1n : 0n)));
+    const runs = await Promise.all(
+      (["simd", "plain"] as const).map(async (target) => wordNorms(await loadKernel({ target }), table, 7)),
+    );
+    expect(runs[0]).toEqual(runs[1]);
+    const expected = mean(unit, 7);
+    expect(runs[0]!.low < expected && expected < runs[0]!.high).toBe(true);
+    expect(runs[0]!.high - runs[0]!.low).toBeLessThan(1e-12);
+    expect(runs[0]!.words).toBe(128);
+  });
+});
+
+describe("growth in dimension 3", () => {
+  const here = { workers: 0, effort: "quick", steps: 20_000 } as const;
+
+  it("encloses the top exponent of non-negative moves, whatever their signs", async () => {
+    const [plain, hidden] = await Promise.all([POSITIVE_3, HIDDEN_3].map((s) => growth(walkOf(s), here)));
+    expect(plain!.exponents[0]).toMatchObject({ standing: "enclosed" });
+    expect(hidden!.exponents[0]).toEqual(plain!.exponents[0]);
+    const { low, high } = plain!.exponents[0]!;
+    expect(Number(high) - Number(low)).toBeLessThan(1e-8);
+    expect(Number(plain!.sampled!.low) < Number(high) && Number(low) < Number(plain!.sampled!.high)).toBe(true);
+    expect(plain!.warnings).toEqual([]);
+  });
+
+  it("bounds it from above otherwise", async () => {
+    const { exponents, upperBound } = await growth(walkOf(SIGNED), here);
+    expect(exponents[0]!.standing).toBe("estimated");
+    expect(Number(upperBound!.value.low)).toBeGreaterThan(Number(exponents[0]!.low));
+    expect(upperBound!.value.standing).toBe("enclosed");
+    expect(upperBound!.moves).toBeGreaterThan(10);
+  });
+});
