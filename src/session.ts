@@ -49,7 +49,7 @@ export interface SharedSession {
   readonly [SESSION]?: Session;
 }
 
-function openSession(options: CommonOptions): Session {
+export function openSession(options: CommonOptions): Session {
   const faults: { pointer: string; message: string }[] = [];
   let seed = 1n;
   if (options.seed !== undefined) {

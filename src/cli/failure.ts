@@ -29,8 +29,10 @@ export function failureOf(error: unknown, file: string): Failure {
     return { status: 2, lines: [line(error.message.replace(/^error: /, ""))] };
   }
   if (error instanceof LimitError) {
-    const how = "To go on: a smaller request, a lower --effort, or a higher --memory.";
-    return { status: 3, lines: [`stopped by a limit: ${line(error.message)}. ${how}`] };
+    const how = /run again/.test(error.message)
+      ? ""
+      : " To go on: a smaller request, a lower --effort, or a higher --memory.";
+    return { status: 3, lines: [`stopped by a limit: ${line(error.message)}.${how}`] };
   }
   if (error instanceof StoppedError) {
     const how = "To go on, run the same command again: the same seed gives the same numbers.";

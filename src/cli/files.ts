@@ -2,22 +2,7 @@
 import { access, constants, mkdir, readFile, rename, stat, unlink, writeFile } from "node:fs/promises";
 import { dirname, join, resolve } from "node:path";
 import { type Fault, OptionsError } from "../errors.js";
-
-/** A system error in words. */
-export function reason(error: unknown): string {
-  const { code, message } = error as { code?: string; message?: string };
-  const words: Readonly<Record<string, string>> = {
-    ENOENT: "there is no such file or directory",
-    EISDIR: "it is a directory",
-    ENOTDIR: "a part of its path is not a directory",
-    EACCES: "permission denied",
-    EPERM: "not permitted",
-    EROFS: "the file system is read-only",
-    ENOSPC: "no space is left",
-    EEXIST: "a file of that name is in the way",
-  };
-  return words[code ?? ""] ?? message ?? String(error);
-}
+import { reason } from "../output/reason.js";
 
 /** UTF-8 text, a byte order mark taken off; or what is wrong. */
 export function decodeText(bytes: Uint8Array): string | undefined {

@@ -1,10 +1,11 @@
 /** The walk and the option values of a command line; every fault of both at once. */
 import { readFile } from "node:fs/promises";
 import { type Fault, OptionsError, WalkError } from "../errors.js";
+import { reason } from "../output/reason.js";
 import { parseWalk } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { keyOf, type OptionSpec } from "./command.js";
-import { decodeText, reason } from "./files.js";
+import { decodeText } from "./files.js";
 import type { Host } from "./host.js";
 import { ValueFault } from "./values.js";
 

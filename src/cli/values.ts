@@ -64,3 +64,6 @@ export const workers: Reader<number> = (text) => {
 };
 
 export const anyText: Reader<string> = (text) => text;
+
+/** A flag without a value. */
+export const yes: Reader<boolean> = () => true;

@@ -12,24 +12,16 @@
  * positions are as right as the window's from digits of its own.
  *
  * Memory is a stack: a node's right point, then its left half's subtree, which is given
- * back when the left half is walked. What is pending is one point a level: a checkpoint.
+ * back when the left half is walked. Transforms take ten times the memory of what they are
+ * made of: they are kept for the small spans, as many as the arena may take in comfort, and
+ * made again for the large ones. All is planned before the first byte is taken.
  */
 
 import { LimitError } from "../errors.js";
 import { writeLimbs } from "./bigint.js";
 import type { Kernel } from "./kernel.js";
 import type { WindowTable } from "./trajectory.js";
-
-/** A node of the recursion over leaves [from, to). */
-interface Span {
-  readonly from: number;
-  readonly to: number;
-  /** Bits of the point at its first move. */
-  readonly need: number;
-  /** Bits of its product's row-sum norm. */
-  readonly size: number;
-  readonly halves?: readonly [Span, Span];
-}
+import { keepsTransforms, type Span, treeMemory } from "./tree-memory.js";
 
 /** A product in doubles, for bounds: entries 2^exponent, within radius 2^exponent. */
 interface Rough {
@@ -39,14 +31,17 @@ interface Rough {
   readonly radius: number;
 }
 
-/** A node whose product has been formed. Entries live on the integer stack until its parent is formed. */
-interface Built {
+interface Entries {
   readonly entries: number;
   readonly limbs: number;
   readonly bits: number;
+}
+
+/** A node whose product has been formed. Entries live on the integer stack until its parent is formed. */
+interface Built extends Entries {
   readonly halves?: readonly [Built, Built];
-  /** The transforms of its left half's entries. */
-  readonly left?: Transforms;
+  /** Its left half's product, as it is kept: transformed, or as a copy of the entries. */
+  readonly left?: Transforms | Entries;
 }
 
 interface Transforms {
@@ -81,6 +76,8 @@ const KEPT_BYTES = 2 ** 26;
 const WIDTHS = [14, 12, 10, 8];
 /** What the proof asks a coefficient's error to stay below. */
 const ERROR_LIMIT = 0.4375;
+/** Bytes up to which transforms are kept rather than made again. */
+const COMFORT = 2 ** 28;
 /** Bits of a leaf's product: where the transform overtakes the window (bench/tree.ts measures it). */
 const LEAF_BITS = 900;
 
@@ -106,12 +103,16 @@ export class TreeRun {
   private readonly plans = new Map<number, number>();
   private readonly root: Span;
   private integers = 0;
+  private firstLeaf = 0;
+  /** Leaves of the largest span whose transforms are kept. */
+  private keep = 1;
   private constants: Point = { top: 0, stride: 0, limbs: 0 };
 
   /**
    * @param choices the moves, u16, all of them
    * @param words 64-bit words of each coordinate of a position
    * @param leafMoves moves of a leaf; by default what makes products of some 900 bits
+   * @param comfort bytes up to which transforms are kept rather than made again
    * @throws LimitError
    */
   constructor(
@@ -120,6 +121,7 @@ export class TreeRun {
     choices: Uint16Array,
     private readonly words: number,
     private readonly leafMoves: number = defaultLeaf(table),
+    private readonly comfort: number = COMFORT,
   ) {
     const { raw } = kernel;
     const { dimension, inputs, matrices, norms } = table;
@@ -164,6 +166,11 @@ export class TreeRun {
   }
 
   readonly steps: number;
+
+  /** Bits that the moves consume, at most: of the whole product's row-sum norm. */
+  get consumes(): number {
+    return this.root.size;
+  }
 
   /** 64-bit limbs that each fraction of the start and each constant must have. */
   get limbs(): number {
@@ -217,18 +224,21 @@ export class TreeRun {
 
   /**
    * Walks from the start: `digits` holds, for each component (coordinates, then constants),
-   * floor(x 2^(64 limbs)) modulo 2^(64 limbs).
+   * floor(x 2^(64 limbs)) modulo 2^(64 limbs). With `from`, the walk goes to that move by
+   * products alone, and blocks begin with the leaf that it is in.
    * @throws LimitError before any memory is taken that does not fit
    */
-  *walk(digits: readonly bigint[]): Generator<TreeBlock, void, void> {
+  *walk(digits: readonly bigint[], from = 0): Generator<TreeBlock, void, void> {
     const { kernel, inputs, limbs } = this;
     const stride = 8 * limbs;
     const at = kernel.alloc(stride * inputs, "the start's digits");
-    for (const [j, x] of digits.entries()) writeLimbs(kernel.u64(at + j * stride, limbs), x);
     this.makePlans(this.root);
     this.integers = kernel.alloc(this.integerBytes(), "the products of moves");
+    this.planMemory();
+    for (const [j, x] of digits.entries()) writeLimbs(kernel.u64(at + j * stride, limbs), x);
     const start = { top: at + stride, stride, limbs };
     this.constants = { top: start.top + this.d * stride, stride, limbs };
+    this.firstLeaf = Math.min(this.leaves - 1, Math.floor(from / this.leafMoves));
     yield* this.node(this.root, start, undefined);
     this.kernel.raw.windowEmit(this.window, this.out);
     yield { first: this.steps, rows: 1, positions: kernel.u64(this.out, this.d * this.words) };
@@ -248,9 +258,12 @@ export class TreeRun {
     const after = raw.mark();
     const whole = built?.halves !== undefined ? built : undefined;
     const leftBuilt = whole?.halves?.[0] ?? this.build(left, this.integers);
-    const transforms = whole?.left ?? this.transform(span, leftBuilt);
-    const lost = this.apply(transforms, cutHere, at, stride);
-    yield* this.node(left, cutHere, leftBuilt);
+    const product = whole?.left ?? leftBuilt;
+    const lost =
+      "plan" in product
+        ? this.apply(product, cutHere, at, stride)
+        : this.kernel.scoped(() => this.apply(this.transform(span, product), cutHere, at, stride));
+    if (left.to > this.firstLeaf) yield* this.node(left, cutHere, leftBuilt);
     raw.release(after);
     const moved = { top: at + stride, stride, limbs: cutHere.limbs - lost };
     yield* this.node(right, moved, whole?.halves?.[1]);
@@ -277,10 +290,52 @@ export class TreeRun {
     if (span.halves === undefined) return this.buildLeaf(span, to);
     const [left, right] = span.halves;
     const l = this.build(left, to);
-    const transforms = this.transform(span, l);
-    const r = this.build(right, to + this.entryBytes(l.limbs));
-    const { limbs, bits } = this.multiply(transforms, r, to);
-    return { entries: to, limbs, bits, halves: [l, r], left: transforms };
+    const bytes = this.entryBytes(l.limbs);
+    if (keepsTransforms(span, this.keep)) {
+      const transforms = this.transform(span, l);
+      const r = this.build(right, to + bytes);
+      return { ...this.multiply(transforms, r, to), halves: [l, r], left: transforms };
+    }
+    const { kernel } = this;
+    const copy = kernel.alloc(bytes, "a product of moves");
+    kernel.u8(copy, bytes).set(kernel.u8(l.entries, bytes));
+    const r = this.build(right, to + bytes);
+    const product = kernel.scoped(() => this.multiply(this.transform(span, l), r, to));
+    return { ...product, halves: [l, r], left: { entries: copy, limbs: l.limbs, bits: l.bits } };
+  }
+
+  /**
+   * Decides which transforms are kept, and takes the walk's memory at once (a page fault
+   * costs more than the arithmetic on the page).
+   * @throws LimitError where even the most frugal walk would pass the limit
+   */
+  private planMemory(): void {
+    const { d, inputs, kernel } = this;
+    const limbs = (span: Span) => Math.ceil((span.size + 66) / 64) + 1;
+    const count = d * inputs;
+    // Each block is aligned, and its end too.
+    const rounded = (bytes: number) => bytes + 128;
+    const halves = (span: Span) => span.halves as readonly [Span, Span];
+    const transform = (span: Span) => 16 * this.shape(span).length;
+    const costs = {
+      point: (span: Span) => rounded(8 * limbsFor(span) * d),
+      entries: (span: Span) => rounded(this.entryBytes(limbs(span))),
+      transforms: (span: Span) => rounded(transform(span) * count) + rounded(NOTE_BYTES * count),
+      multiply: (span: Span) =>
+        rounded(transform(span) * d) +
+        rounded(NOTE_BYTES * d) +
+        rounded(transform(span)) +
+        rounded(this.entryBytes(limbs(halves(span)[0]) + limbs(halves(span)[1]))),
+      apply: (span: Span) =>
+        rounded(transform(span) * inputs) + rounded(NOTE_BYTES * inputs) + rounded(transform(span)),
+    };
+    this.keep = this.leaves;
+    let bytes = treeMemory(this.root, this.keep, costs);
+    while (bytes > this.comfort && this.keep > 1) {
+      this.keep = Math.ceil(this.keep / 2);
+      bytes = treeMemory(this.root, this.keep, costs);
+    }
+    kernel.scoped(() => kernel.alloc(bytes, `an exact walk of ${this.steps} moves`));
   }
 
   private buildLeaf(span: Span, to: number): Built {
@@ -340,7 +395,7 @@ export class TreeRun {
   }
 
   /** The transforms of a left half's entries, kept on the arena. */
-  private transform(span: Span, left: Built): Transforms {
+  private transform(span: Span, left: Entries): Transforms {
     const { kernel, d, inputs } = this;
     const { length, width } = this.shape(span);
     const plan = this.plans.get(length) as number;
@@ -352,11 +407,7 @@ export class TreeRun {
   }
 
   /** The product (right half) (left half), packed to `to`. */
-  private multiply(
-    transforms: Transforms,
-    right: Built,
-    to: number,
-  ): { readonly limbs: number; readonly bits: number } {
+  private multiply(transforms: Transforms, right: Built, to: number): Entries {
     const { kernel, d, inputs } = this;
     const { raw } = kernel;
     const { plan, length, width, at, notes } = transforms;
@@ -379,7 +430,7 @@ export class TreeRun {
       const bits = raw.treeBits(out, d * inputs, limbs);
       const fewer = Math.ceil(bits / 64);
       raw.treePack(to, fewer, out, limbs, d * inputs);
-      return { limbs: fewer, bits };
+      return { entries: to, limbs: fewer, bits };
     });
   }
 

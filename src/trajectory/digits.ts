@@ -1,6 +1,8 @@
 /** Binary digits of exact numbers, as the window kernel holds them. */
 import type { ExactNumber } from "../exact/number.js";
 import { Rational } from "../exact/rational.js";
+import { drawStartWords } from "../kernel/draws.js";
+import type { Kernel } from "../kernel/kernel.js";
 import type { StartDigits } from "../kernel/trajectory.js";
 
 /** Writes m (0 <= m < 2^(32 limbs)) to every `stride`-th place from `first`, least significant limb first. */
@@ -27,6 +29,18 @@ export function binaryFloor(x: ExactNumber, bits: number): bigint {
     const low = (m - 1n) >> BigInt(spare);
     if (low === (m + 1n) >> BigInt(spare) || spare > MOST_SPARE) return low;
   }
+}
+
+/** The first 64 `words` bits of one coordinate of a replicate's uniform point, as an integer. */
+export function uniformFloor(
+  kernel: Kernel,
+  seed: bigint,
+  replicate: number,
+  coordinate: number,
+  words: number,
+): bigint {
+  const drawn = drawStartWords(kernel, seed, replicate, coordinate, words);
+  return BigInt(`0x${Array.from(drawn, (w) => w.toString(16).padStart(16, "0")).join("")}`);
 }
 
 /** The first 32 `limbs` bits after the binary point of each number modulo 1, rounded down; absent numbers: zeros. */

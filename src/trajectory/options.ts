@@ -4,6 +4,7 @@ import type { CommonOptions } from "../session.js";
 import type { Walk } from "../walk/walk.js";
 import type { PositionBlock } from "./block.js";
 import { checkChoices } from "./choices.js";
+import type { TrajectoryResult } from "./result.js";
 
 /** What a sink is told before the first block. */
 export interface PositionShape {
@@ -12,16 +13,30 @@ export interface PositionShape {
   readonly dimension: number;
   /** Decimals that are proved. */
   readonly digits: number;
+  /** All that decides the positions, in words: version, walk, seed, steps, ... */
+  readonly identity: Readonly<Record<string, string>>;
+}
+
+/** How far a walk has come: rows that are written, and the positions to be reported among them. */
+export interface SavedWalk {
+  readonly rows: number;
+  readonly positions: TrajectoryResult["positions"];
 }
 
 /** A consumer of all positions in order, such as a file: see src/output/. */
 export interface PositionSink {
   /** What the result calls it. */
   readonly file: string;
+  /** What an earlier run has written: the walk goes on after it. `rows` is the end of a block. */
+  readonly saved?: SavedWalk;
   write(block: PositionBlock): Promise<void>;
+  /** Called between blocks, often: the moment to remember how far the walk has come. */
+  save?(walk: () => SavedWalk): Promise<void>;
   /** All positions have been written. */
   finish(): Promise<void>;
-  /** The walk was stopped: leave nothing behind. */
+  /** The caller stopped the walk: keep what is written. @returns how to go on, in words */
+  suspend?(walk: () => SavedWalk): Promise<string>;
+  /** The walk failed, or was stopped where `suspend` is not offered: let go of what is held. */
   discard(): Promise<void>;
 }
 

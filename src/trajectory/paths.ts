@@ -1,14 +1,16 @@
 /**
- * One walk as a stream of blocks: the window kernel for irrational points, the residue
- * kernel or BigInt for rational ones.
+ * One walk as a stream of blocks: for irrational points the window kernel where the walk is
+ * short and the tree where it is long, for rational ones the residue kernel or BigInt.
  */
+import type { ExactNumber } from "../exact/number.js";
 import { cumulativeWeights, drawMoves } from "../kernel/draws.js";
 import { type Kernel, loadKernel } from "../kernel/kernel.js";
 import { ResidueRun } from "../kernel/residue.js";
-import { WindowRun } from "../kernel/trajectory.js";
+import { WindowRun, type WindowTable } from "../kernel/trajectory.js";
+import { TreeRun } from "../kernel/tree.js";
 import type { Walk } from "../walk/walk.js";
 import { FractionBlock, type PositionBlock, WordBlock, wordsFor } from "./block.js";
-import { startDigits } from "./digits.js";
+import { binaryFloor, startDigits, uniformFloor } from "./digits.js";
 import { type RationalWalk, rationalWalk, residueTable, windowTable } from "./table.js";
 
 export interface PathOptions {
@@ -19,6 +21,8 @@ export interface PathOptions {
   /** Decimal digits that positions will be asked for. */
   readonly digits: number;
   readonly memoryLimit: number;
+  /** Bits from which the tree is taken; for tests and benches. */
+  readonly treeBits?: number;
 }
 
 export interface Path {
@@ -29,8 +33,13 @@ export interface Path {
   readonly bitsHeld?: number;
   /** Bits that the moves consume at most, from the plan. */
   readonly consumes?: number;
-  /** Positions 0, ..., steps in order. A pause is safe between blocks: each is some ten milliseconds of work. */
-  blocks(): Generator<PositionBlock, void>;
+  /**
+   * Positions in order, up to number `steps`. A pause is safe between blocks: each is some ten
+   * milliseconds of work (before the first one of a tree there is more).
+   * @param from where the first block ends later: blocks are cut alike whatever it is, and
+   * those that end before it are left out
+   */
+  blocks(from: number): Generator<PositionBlock, void>;
 }
 
 /** Positions of one block at most, and bytes that their words may take. */
@@ -43,8 +52,16 @@ const WORK = 2e7;
 export async function openPath(walk: Walk, options: PathOptions): Promise<Path> {
   const kernel = await loadKernel({ memoryLimit: options.memoryLimit });
   const rational = rationalWalk(walk);
-  if (rational === undefined) return windowPath(walk, options, kernel);
-  return residuePath(walk, options, kernel, rational) ?? fractionPath(walk, options, kernel, rational);
+  const path =
+    rational === undefined
+      ? realPath(walk, options, kernel)
+      : (residuePath(walk, options, kernel, rational) ?? fractionPath(walk, options, kernel, rational));
+  return { ...path, blocks: (from) => after(path.blocks(from), from) };
+}
+
+/** The blocks that end after `from`. */
+function* after(blocks: Generator<PositionBlock, void>, from: number): Generator<PositionBlock, void> {
+  for (const block of blocks) if (block.first + block.rows > from) yield block;
 }
 
 /** The draws of replicate 0. */
@@ -53,18 +70,79 @@ function drawAll(walk: Walk, kernel: Kernel, { seed, steps }: PathOptions): Uint
   return drawMoves(kernel, weights, seed, 0, 0, steps);
 }
 
-function windowPath(walk: Walk, options: PathOptions, kernel: Kernel): Path {
-  const { seed, steps, digits } = options;
+/**
+ * Bits that a walk consumes from which the tree is quicker than the window, measured by
+ * bench/trajectory.ts: 60 to 170 thousand, by dimension and entries.
+ */
+const TREE_BITS = 100_000;
+/** Moves by which a walk's bits are foretold. */
+const SAMPLE = 8192;
+
+/** From an irrational or a uniform point. */
+function realPath(walk: Walk, options: PathOptions, kernel: Kernel): Path {
   const { table, constants } = windowTable(walk);
+  const choices = options.choices ?? drawAll(walk, kernel, options);
+  const sample = Math.min(SAMPLE, choices.length);
+  const bits = kernel.scoped(() => {
+    const run = new WindowRun(kernel, table, sample, 1, 1);
+    run.choices.set(choices.subarray(0, sample));
+    run.plan();
+    return (run.consumes / Math.max(1, sample)) * choices.length;
+  });
+  const build = bits < (options.treeBits ?? TREE_BITS) ? windowPath : treePath;
+  return build(walk, options, kernel, table, constants, choices);
+}
+
+/** The start's components: a point's coordinates, or nothing for a uniform one. */
+function startPoint(walk: Walk): readonly (ExactNumber | undefined)[] {
+  return walk.start.type === "point" ? walk.start.point : new Array<undefined>(walk.dimension).fill(undefined);
+}
+
+function treePath(
+  walk: Walk,
+  { seed, steps, digits }: PathOptions,
+  kernel: Kernel,
+  table: WindowTable,
+  constants: readonly ExactNumber[],
+  choices: Uint16Array,
+): Path {
   const words = wordsFor(digits);
   const d = walk.dimension;
-  const choices = options.choices ?? drawAll(walk, kernel, options);
+  const run = new TreeRun(kernel, table, choices, words);
+  return {
+    method: "divide and conquer over the moves, bits from the products of the moves drawn",
+    exact: false,
+    choices,
+    bitsHeld: 64 * run.limbs,
+    consumes: run.consumes,
+    *blocks(from) {
+      const bits = 64 * run.limbs;
+      const start = [...startPoint(walk), ...constants].map((x, j) =>
+        x === undefined ? uniformFloor(kernel, seed, 0, j, run.limbs) : BigInt.asUintN(bits, binaryFloor(x, bits)),
+      );
+      for (const { first, rows, positions } of run.walk(start, from)) {
+        if (rows > 0) yield new WordBlock(first, Math.min(rows, steps + 1 - first), d, words, positions);
+      }
+    },
+  };
+}
+
+function windowPath(
+  walk: Walk,
+  options: PathOptions,
+  kernel: Kernel,
+  table: WindowTable,
+  constants: readonly ExactNumber[],
+  choices: Uint16Array,
+): Path {
+  const { seed, steps, digits } = options;
+  const words = wordsFor(digits);
+  const d = walk.dimension;
   const run = new WindowRun(kernel, table, steps, words, Math.min(ROWS, Math.floor(BYTES / (8 * d * words))));
   run.choices.set(choices);
   const limbs = run.plan();
-  const point = walk.start.type === "point" ? walk.start.point : new Array<undefined>(d).fill(undefined);
   run.reserve(limbs);
-  run.hold(startDigits([...point, ...constants], limbs));
+  run.hold(startDigits([...startPoint(walk), ...constants], limbs));
   if (walk.start.type === "uniform") run.startUniform(limbs, seed, 0);
   else run.start(limbs);
   return {

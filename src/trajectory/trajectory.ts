@@ -1,52 +1,65 @@
 /** Where exactly is the walk? Positions of one walk, every digit proved. */
+import { StoppedError } from "../errors.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
+import { fnv1a64, walkHash } from "../walk/hash.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
+import type { Walk } from "../walk/walk.js";
 import { consumedBits } from "./consumed.js";
-import { type PositionSink, readOptions, type TrajectoryOptions } from "./options.js";
+import { type PositionSink, readOptions, type TrajectoryOptions, type TrajectoryRequest } from "./options.js";
 import { openPath, type Path } from "./paths.js";
 import type { TrajectoryResult } from "./result.js";
+import { stream } from "./stream.js";
 import { refuseDensity } from "./walker.js";
-
-/** Milliseconds of work between two breaths, in which a stop is noticed and progress shown. */
-const BREATH = 50;
-
-function breathe(): Promise<void> {
-  return new Promise((resolve) => setTimeout(resolve, 0));
-}
 
 type Position = TrajectoryResult["positions"][number];
 
 /** Runs the walk, hands every block to the sink and keeps the positions asked for. */
 async function collect(
   path: Path,
-  steps: number,
-  at: readonly number[],
-  digits: number,
+  { steps, at, digits }: TrajectoryRequest,
   session: Session,
   sink: PositionSink | undefined,
 ): Promise<Position[]> {
-  const positions: Position[] = [];
-  let next = 0;
-  let breath = performance.now();
-  for (const block of path.blocks()) {
-    for (; next < at.length && (at[next] as number) < block.first + block.rows; next++) {
-      const step = at[next] as number;
-      const row = step - block.first;
-      const point = block.decimals(row, digits);
-      positions.push({ step, point, ...(block.fractions ? { fractions: block.fractions(row) } : {}) });
+  const positions: Position[] = [...(sink?.saved?.positions ?? [])];
+  let rows = sink?.saved?.rows ?? 0;
+  let next = at.findIndex((step) => step >= rows);
+  if (next < 0) next = at.length;
+  const state = () => ({ rows, positions: [...positions] });
+  try {
+    for await (const block of stream(path, rows, steps, session)) {
+      if (block.first !== rows) throw new Error(`the walk went on at move ${block.first}, not ${rows}`);
+      for (; next < at.length && (at[next] as number) < block.first + block.rows; next++) {
+        const step = at[next] as number;
+        const row = step - block.first;
+        const point = block.decimals(row, digits);
+        positions.push({ step, point, ...(block.fractions ? { fractions: block.fractions(row) } : {}) });
+      }
+      if (sink === undefined && next === at.length) break;
+      await sink?.write(block);
+      rows = block.first + block.rows;
+      await sink?.save?.(state);
     }
-    if (sink !== undefined) await sink.write(block);
-    else if (next === at.length) break;
-    if (performance.now() - breath > BREATH) {
-      session.progress("walking", block.first + block.rows, steps + 1);
-      await breathe();
-      session.checkStop();
-      breath = performance.now();
-    }
+  } catch (error) {
+    if (!(error instanceof StoppedError) || sink?.suspend === undefined || rows === 0) throw error;
+    const how = await sink.suspend(state);
+    throw new StoppedError(`stopped after move ${rows - 1} of ${steps}, with what is written kept: ${how}`);
   }
-  session.progress("walking", steps + 1, steps + 1);
   return positions;
+}
+
+/** All that decides the bytes of a file of positions. */
+function identity(walk: Walk, session: Session, request: TrajectoryRequest): Record<string, string> {
+  const { steps, at, digits, choices } = request;
+  return {
+    "version of torwend": VERSION,
+    walk: walkHash(walk),
+    seed: String(session.seed),
+    "number of steps": String(steps),
+    "number of digits": String(digits),
+    "list of reported steps": fnv1a64(at.join()),
+    ...(choices === undefined ? {} : { "list of choices": fnv1a64(choices.join()) }),
+  };
 }
 
 /**
@@ -56,8 +69,8 @@ async function collect(
  * held with the bits that the product of the moves drawn is computed to need. From a
  * rational start, with rational translations, positions are exact fractions too.
  *
- * Moves are the draws of (seed, replicate 0), or `choices`. Time grows with the square of
- * the number of moves (some seconds for a million small moves); a rational walk's with the number.
+ * Moves are the draws of (seed, replicate 0), or `choices`. Time grows little faster than the
+ * number of moves (some seconds for ten million small moves in dimension 2), memory with it.
  *
  * @throws WalkError for a faulty walk, OptionsError for wrong options and for a density start
  * @throws LimitError where the memory would not suffice (before anything is run), or a row of a matrix passes 2^62
@@ -70,14 +83,19 @@ export async function trajectory(
     const walk = asWalk(input);
     refuseDensity(walk);
     const request = readOptions(walk, options);
-    const { steps, at, digits } = request;
+    const { steps, digits } = request;
     const path = await openPath(walk, { ...request, seed: session.seed, memoryLimit: session.memoryLimit });
     session.checkStop();
     const consumed = consumedBits(walk, path.choices, path.consumes);
-    const sink = await options.out?.({ rows: steps + 1, dimension: walk.dimension, digits });
+    const sink = await options.out?.({
+      rows: steps + 1,
+      dimension: walk.dimension,
+      digits,
+      identity: identity(walk, session, request),
+    });
     let positions: Position[];
     try {
-      positions = await collect(path, steps, at, digits, session, sink);
+      positions = await collect(path, request, session, sink);
       await sink?.finish();
     } catch (error) {
       await sink?.discard();

@@ -1,8 +1,9 @@
-import { mkdtemp, readdir, readFile, rm } from "node:fs/promises";
+import { mkdtemp, readFile, rm } from "node:fs/promises";
 import { tmpdir } from "node:os";
 import { join } from "node:path";
+import { tableFromIPC } from "apache-arrow";
 import { afterAll, beforeAll, describe, expect, it } from "vitest";
-import { OptionsError, StoppedError } from "../../src/errors.js";
+import { OptionsError } from "../../src/errors.js";
 import { positionFile } from "../../src/output/file.js";
 import { npyHeader } from "../../src/output/npy.js";
 import { trajectory } from "../../src/trajectory/trajectory.js";
@@ -69,14 +70,28 @@ describe("files of positions", () => {
   });
 
   it("leaves nothing half-written behind, and names what it cannot write", async () => {
-    expect(() => positionFile("path.arrow")).toThrow(/--out: found path.arrow; accepted: .*\.npy or \.csv/);
+    expect(() => positionFile("path.txt")).toThrow(/--out: found path.txt; accepted: .*\.npy, \.csv or \.arrow/);
     const lost = trajectory(walk, { steps: 5, out: positionFile(join(folder, "no", "path.npy")) });
     await expect(lost).rejects.toThrow(OptionsError);
-    const controller = new AbortController();
-    setTimeout(() => controller.abort(), 100);
-    const file = join(folder, "stopped.csv");
-    const stopped = trajectory(walk, { steps: 100_000, signal: controller.signal, out: positionFile(file) });
-    await expect(stopped).rejects.toThrow(StoppedError);
-    expect((await readdir(folder)).filter((name) => name.startsWith("stopped"))).toEqual([]);
+  });
+
+  it("arrow: steps and positions, as Arrow's own reader reads them", async () => {
+    const file = join(folder, "path.arrow");
+    const steps = 9000;
+    await trajectory(walk, { steps, at: [steps], seed: 2, out: positionFile(file) });
+    await trajectory(walk, { steps, at: [steps], seed: 2, out: positionFile(join(folder, "same.npy")) });
+    const table = tableFromIPC(await readFile(file));
+    expect(table.schema.fields.map((f) => `${f.name}: ${f.type}`)).toEqual([
+      "step: Uint32",
+      "x1: Float64",
+      "x2: Float64",
+      "x3: Float64",
+    ]);
+    expect(table.getChild("step")?.toArray()).toEqual(Uint32Array.from({ length: steps + 1 }, (_, k) => k));
+    const { values } = readNpy(await readFile(join(folder, "same.npy")));
+    for (const j of [0, 1, 2]) {
+      const column = values.filter((_, i) => i % 3 === j);
+      expect(table.getChild(`x${j + 1}`)?.toArray()).toEqual(Float64Array.from(column));
+    }
   });
 });

@@ -56,11 +56,19 @@ function tableOf({ d, constants, moves }: Case): WindowTable {
 }
 
 /** Walks the case both ways and expects every word within one unit of the true floor. */
-async function agree(c: Case, n: number, target: KernelTarget, leaf: number, seed: number, words = 1): Promise<void> {
+async function agree(
+  c: Case,
+  n: number,
+  target: KernelTarget,
+  leaf: number,
+  seed: number,
+  words = 1,
+  comfort?: number,
+): Promise<void> {
   const next = source(seed);
   const choices = Uint16Array.from({ length: n }, () => next() % c.moves.length);
   const kernel = await loadKernel({ target });
-  const run = new TreeRun(kernel, tableOf(c), choices, words, leaf);
+  const run = new TreeRun(kernel, tableOf(c), choices, words, leaf, comfort);
   const bits = 64 * run.limbs;
   const inputs = c.d + c.constants;
   const start = Array.from({ length: inputs }, () => {
@@ -104,6 +112,22 @@ describe.each(["simd", "plain"] as KernelTarget[])("TreeRun (%s)", (target) => {
       await agree(randomCase(d, d === 2 ? 3 : 1, 2, source(40 + d)), 300, target, 24, 200 + d);
     });
   }
+  it("in little memory, with transforms made again", async () => {
+    await agree(randomCase(2, 0, 2, source(77)), 700, target, 20, 7, 1, 0);
+    await agree(randomCase(3, 2, 2, source(78)), 700, target, 20, 8, 1, 100_000);
+  });
+  it("takes its memory at once, as planned", async () => {
+    for (const comfort of [0, 2 ** 18, 2 ** 30]) {
+      const next = source(9);
+      const kernel = await loadKernel({ target });
+      const choices = Uint16Array.from({ length: 3000 }, () => next() % 3);
+      const run = new TreeRun(kernel, tableOf(randomCase(2, 1, 2, next)), choices, 1, 16, comfort);
+      const walk = run.walk(new Array(3).fill(1n));
+      walk.next();
+      const planned = kernel.u8(0, 1).buffer.byteLength;
+      for (const _ of walk) expect(kernel.u8(0, 1).buffer.byteLength).toBe(planned);
+    }
+  });
   it("entries up to 2^40", async () => {
     await agree(randomCase(2, 0, 2 ** 20, source(7)), 300, target, 8, 300);
   });
