@@ -7,8 +7,15 @@ import { bitsPerMove, defaultSampling } from "./sampled.js";
 export interface AveragesOptions extends CommonOptions {
   /** Moves of each sampled replicate; default by effort. */
   readonly steps?: number;
-  /** Number of sampled replicates; default by effort. */
+  /** Number of sampled replicates; default by effort, fewer where more moves are asked for (8 at least). */
   readonly replicates?: number;
+}
+
+/** Where only the moves are given: as many replicates as make the usual work of it, but enough to compare. */
+const FEWEST = 8;
+function replicatesFor(steps: number, usual: { readonly steps: number; readonly replicates: number }): number {
+  const share = Math.floor((usual.steps * usual.replicates) / steps);
+  return Math.min(usual.replicates, Math.max(FEWEST, Number.isFinite(share) ? share : FEWEST));
 }
 
 /** @throws OptionsError naming every option that is wrong. */
@@ -18,7 +25,7 @@ export function samplingOf(
   walk: Walk,
 ): { steps: number; replicates: number } {
   const usual = defaultSampling(session.effort, walk.dimension, bitsPerMove(walk));
-  const { steps = usual.steps, replicates = usual.replicates } = options;
+  const { steps = usual.steps, replicates = replicatesFor(steps, usual) } = options;
   const faults: Fault[] = [];
   for (const [pointer, found, most] of [
     ["--steps", steps, 2 ** 31],

@@ -1,6 +1,7 @@
 /** Replicates of exact walks, reduced to sums of the observables over segments of each path. */
 import { type KernelTarget, loadKernel } from "../kernel/kernel.js";
 import { Observer } from "../kernel/observe.js";
+import { openPath } from "../trajectory/paths.js";
 import { prepareWalker } from "../trajectory/walker.js";
 import type { Walk } from "../walk/walk.js";
 import { observeProgram } from "./program.js";
@@ -19,6 +20,9 @@ export interface SegmentsRequest {
   readonly target?: KernelTarget;
 }
 
+/** Paths up to this length are held whole, one preparation for all; longer ones are consumed block by block. */
+export const HELD_MOVES = 100_000;
+
 /**
  * The walk that is sampled. No point can be drawn from a density that need not be positive,
  * and the limits do not depend on one, so replicates then start from Haar measure.
@@ -35,9 +39,19 @@ export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise
   const { seed, steps, first, count, ends, memoryLimit } = request;
   const options = { memoryLimit, ...(request.target === undefined ? {} : { target: request.target }) };
   const observer = new Observer(await loadKernel(options), observeProgram(walk));
-  const walker = await prepareWalker(sampledWalk(walk), { ...options, seed, steps });
   const stride = walk.observables.length * ends.length;
   const sums = new Float64Array(count * stride);
+  if (steps > HELD_MOVES) {
+    // The last position is not part of the average, and need not be reached.
+    const path = { seed, steps: steps - 1, digits: 1, memoryLimit };
+    for (let r = 0; r < count; r++) {
+      const out = sums.subarray(r * stride, (r + 1) * stride);
+      const { blocks } = await openPath(sampledWalk(walk), { ...path, replicate: first + r });
+      for (const block of blocks(0)) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
+    }
+    return sums;
+  }
+  const walker = await prepareWalker(sampledWalk(walk), { ...options, seed, steps });
   for (let r = 0; r < count; r++) {
     const { positions } = walker.run(first + r);
     observer.segmentSums(positions, ends, sums.subarray(r * stride, (r + 1) * stride));

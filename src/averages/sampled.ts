@@ -5,6 +5,7 @@ import type { Effort, Session } from "../session.js";
 import type { Walk } from "../walk/walk.js";
 import { segmentsJob } from "./jobs.js";
 import { evaluationError, observableSize, observableSwing } from "./program.js";
+import { HELD_MOVES } from "./replicates.js";
 import type { SampledAverage } from "./result.js";
 import { planSegments } from "./segments.js";
 import { summarise } from "./summary.js";
@@ -58,10 +59,11 @@ export function bitsPerMove(walk: Walk): number {
 /**
  * Replicates in one job, by a rule that knows of the walk and the moves alone: about a
  * quarter of a second, as far as a move's time can be told beforehand (measured: some
- * d^2 (0.03 + 2e-6 steps) microseconds, the second part for the digits that it carries).
+ * d^2 (0.03 + 2e-6 steps) microseconds, the second part for the digits that it carries, up
+ * to the lengths from which the cost of a move hardly grows).
  */
 function replicatesPerJob(dimension: number, steps: number, observables: number): number {
-  const move = dimension * dimension * (0.03 + 2e-6 * steps) + 0.02 * observables;
+  const move = dimension * dimension * (0.03 + 2e-6 * Math.min(steps, HELD_MOVES)) + 0.02 * observables;
   return Math.max(1, Math.min(256, Math.floor(250_000 / (move * steps))));
 }
 

@@ -107,13 +107,21 @@ export class Observer {
    * @param ends increasing, all >= 1
    */
   segmentSums(path: BigUint64Array, ends: readonly number[], out: Float64Array): void {
-    const count = this.program.observables.length;
-    const rows = ends.at(-1) ?? 0;
     out.fill(0);
-    let segment = 0;
-    for (let from = 0; from < rows; from += OBSERVE_BLOCK) {
-      const to = Math.min(from + OBSERVE_BLOCK, rows);
-      this.evaluate(path, from, to - from);
+    this.addToSegments(path, 0, ends.at(-1) ?? 0, ends, out);
+  }
+
+  /**
+   * Adds a part of a path to its segments' sums: rows first, ..., first + rows - 1 of the
+   * whole; those beyond the last end are passed over.
+   */
+  addToSegments(path: BigUint64Array, first: number, rows: number, ends: readonly number[], out: Float64Array): void {
+    const count = this.program.observables.length;
+    const last = Math.min(first + rows, ends.at(-1) ?? 0);
+    let segment = ends.findIndex((end) => end > first);
+    for (let from = first; from < last; from += OBSERVE_BLOCK) {
+      const to = Math.min(from + OBSERVE_BLOCK, last);
+      this.evaluate(path, from - first, to - from);
       for (let at = from; at < to; ) {
         const end = Math.min(ends[segment] as number, to);
         for (let i = 0; i < count; i++) {

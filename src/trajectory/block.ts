@@ -11,6 +11,8 @@ export interface PositionBlock {
   readonly dimension: number;
   /** rows x dimension doubles in [0, 1): the first 53 bits after the binary point. */
   doubles(): Float64Array<ArrayBuffer>;
+  /** rows x dimension 64-bit words, floor(x 2^64) up to one unit on the circle; overwritten by the next block. */
+  fixed(): BigUint64Array;
   /** One position, each coordinate with `digits` decimals: see `decimal`. */
   decimals(row: number, digits: number): string[];
   /** One position as exact fractions, where the walk is rational. */
@@ -57,6 +59,14 @@ export class WordBlock implements PositionBlock {
     return toDoubles(this.positions, this.words, new Float64Array(this.rows * this.dimension));
   }
 
+  fixed(): BigUint64Array {
+    if (this.words === 1) return this.positions;
+    return BigUint64Array.from(
+      { length: this.rows * this.dimension },
+      (_, i) => this.positions[i * this.words] as bigint,
+    );
+  }
+
   decimals(row: number, digits: number): string[] {
     const scale = 1n << BigInt(64 * this.words);
     return Array.from({ length: this.dimension }, (_, j) => {
@@ -76,6 +86,8 @@ export class FractionBlock implements PositionBlock {
     readonly dimension: number,
     private readonly numerators: ArrayLike<bigint>,
     private readonly denominator: bigint,
+    /** floor(x 2^64), where a kernel has them. */
+    private readonly words?: () => BigUint64Array,
   ) {}
 
   private row(row: number): bigint[] {
@@ -84,6 +96,9 @@ export class FractionBlock implements PositionBlock {
 
   doubles(): Float64Array<ArrayBuffer> {
     return Float64Array.from(this.numerators, (n) => Number((n << 53n) / this.denominator) * 2 ** -53);
+  }
+  fixed(): BigUint64Array {
+    return this.words?.() ?? BigUint64Array.from(this.numerators, (n) => (n << 64n) / this.denominator);
   }
   decimals(row: number, digits: number): string[] {
     return this.row(row).map((n) => decimal(n, this.denominator, digits));

@@ -15,6 +15,8 @@ import { type RationalWalk, rationalWalk, residueTable, windowTable } from "./ta
 
 export interface PathOptions {
   readonly seed: bigint;
+  /** Which replicate's draws (and uniform point), unsigned 32-bit; default 0. */
+  readonly replicate?: number;
   readonly steps: number;
   /** In place of draws: `steps` move indices. */
   readonly choices?: Uint16Array;
@@ -64,10 +66,10 @@ function* after(blocks: Generator<PositionBlock, void>, from: number): Generator
   for (const block of blocks) if (block.first + block.rows > from) yield block;
 }
 
-/** The draws of replicate 0. */
-function drawAll(walk: Walk, kernel: Kernel, { seed, steps }: PathOptions): Uint16Array {
+/** The draws of the replicate. */
+function drawAll(walk: Walk, kernel: Kernel, { seed, replicate = 0, steps }: PathOptions): Uint16Array {
   const weights = cumulativeWeights(walk.moves.map((m) => m.probability));
-  return drawMoves(kernel, weights, seed, 0, 0, steps);
+  return drawMoves(kernel, weights, seed, replicate, 0, steps);
 }
 
 /**
@@ -100,7 +102,7 @@ function startPoint(walk: Walk): readonly (ExactNumber | undefined)[] {
 
 function treePath(
   walk: Walk,
-  { seed, steps, digits }: PathOptions,
+  { seed, replicate = 0, steps, digits }: PathOptions,
   kernel: Kernel,
   table: WindowTable,
   constants: readonly ExactNumber[],
@@ -118,7 +120,9 @@ function treePath(
     *blocks(from) {
       const bits = 64 * run.limbs;
       const start = [...startPoint(walk), ...constants].map((x, j) =>
-        x === undefined ? uniformFloor(kernel, seed, 0, j, run.limbs) : BigInt.asUintN(bits, binaryFloor(x, bits)),
+        x === undefined
+          ? uniformFloor(kernel, seed, replicate, j, run.limbs)
+          : BigInt.asUintN(bits, binaryFloor(x, bits)),
       );
       for (const { first, rows, positions } of run.walk(start, from)) {
         if (rows > 0) yield new WordBlock(first, Math.min(rows, steps + 1 - first), d, words, positions);
@@ -135,7 +139,7 @@ function windowPath(
   constants: readonly ExactNumber[],
   choices: Uint16Array,
 ): Path {
-  const { seed, steps, digits } = options;
+  const { seed, replicate = 0, steps, digits } = options;
   const words = wordsFor(digits);
   const d = walk.dimension;
   const run = new WindowRun(kernel, table, steps, words, Math.min(ROWS, Math.floor(BYTES / (8 * d * words))));
@@ -143,7 +147,7 @@ function windowPath(
   const limbs = run.plan();
   run.reserve(limbs);
   run.hold(startDigits([...startPoint(walk), ...constants], limbs));
-  if (walk.start.type === "uniform") run.startUniform(limbs, seed, 0);
+  if (walk.start.type === "uniform") run.startUniform(limbs, seed, replicate);
   else run.start(limbs);
   return {
     method: "fixed-point window, bits from the products of the moves drawn",
@@ -181,10 +185,10 @@ function residuePath(walk: Walk, options: PathOptions, kernel: Kernel, rational:
         const rows = Math.min(ROWS, steps - first);
         run.choices.set(choices.subarray(first, first + rows));
         run.run(rows, false);
-        yield new FractionBlock(first, rows, d, run.numerators(rows), rational.denominator);
+        yield new FractionBlock(first, rows, d, run.numerators(rows), rational.denominator, () => run.positions(rows));
       }
       run.run(0, false);
-      yield new FractionBlock(steps, 1, d, run.numerators(1), rational.denominator);
+      yield new FractionBlock(steps, 1, d, run.numerators(1), rational.denominator, () => run.positions(1));
     },
   };
 }
