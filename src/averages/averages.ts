@@ -2,17 +2,24 @@
  * Time averages of observables along the walk: their limit, the limit variance, whether it
  * is 0, and the moves that a given accuracy takes; the exact part beside what replicates show.
  */
-import { quantityNumber } from "../quantity/quantity.js";
+import { type Quantity, quantityNumber } from "../quantity/quantity.js";
 import { type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import { exactAverages } from "./exact.js";
 import { type AveragesOptions, samplingOf } from "./options.js";
-import type { AveragesResult } from "./result.js";
+import type { AveragesResult, SampledAverage } from "./result.js";
 import { sampleAverages } from "./sampled.js";
 import { stepsFor } from "./steps.js";
 
 export type { AveragesOptions } from "./options.js";
+
+/** Replicates from which the variance over them is a better estimate than the batch means within them. */
+const MANY = 100;
+
+function sampledVariance(seen: SampledAverage): Quantity {
+  return seen.replicates < MANY ? seen.batchMeansVariance : seen.variance;
+}
 
 /**
  * Findings for every observable of the walk, in its order; averages run over positions 0 to n - 1.
@@ -37,7 +44,7 @@ export async function averages(
       ...(orbit === undefined ? {} : { orbit }),
       observables: findings.map(({ spread, variance: known, ...finding }, i) => {
         const seen = sampled[i]!;
-        const variance = known ?? seen.variance;
+        const variance = known ?? sampledVariance(seen);
         return { ...finding, variance, stepsFor: stepsFor(variance, session.level, spread), sampled: seen };
       }),
       warnings,

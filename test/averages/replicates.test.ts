@@ -1,5 +1,5 @@
 import { describe, expect, it } from "vitest";
-import { segmentSums } from "../../src/averages/replicates.js";
+import { HELD_MOVES, segmentSums } from "../../src/averages/replicates.js";
 import { bitLength } from "../../src/exact/rational.js";
 import { cumulativeWeights, drawMoves, drawStartWords } from "../../src/kernel/draws.js";
 import { type KernelTarget, loadKernel } from "../../src/kernel/kernel.js";
@@ -156,5 +156,37 @@ describe("segmentSums of replicates", () => {
     const walk = makeWalk(STROKES, { type: "uniform" }, [wave([1, 0], 1)]);
     const request = { seed: 1n, steps: 2_000_000, first: 0, count: 1, ends: [2_000_000], memoryLimit: 2 ** 21 };
     await expect(segmentSums(walk, request)).rejects.toThrow(/needs .* MiB/);
+  });
+});
+
+describe("long paths", () => {
+  it("are summed block by block to what a whole path gives", async () => {
+    const walk = makeWalk(STROKES, { type: "uniform" }, [
+      wave([1, 0], 1),
+      box(
+        [
+          [0, 1],
+          [0, 1],
+        ],
+        [
+          [1, 2],
+          [1, 4],
+        ],
+      ),
+    ]);
+    const request = { seed: 3n, first: 2, count: 2, memoryLimit: 2 ** 30 };
+    const steps = HELD_MOVES + 7000;
+    const ends = [1, 1000, 50_000, HELD_MOVES, steps];
+    const streamed = await segmentSums(walk, { ...request, steps, ends });
+    // The same moves in a path that is held: whatever its length, draws do not depend on it.
+    const held = await segmentSums(walk, { ...request, steps: HELD_MOVES, ends: ends.slice(0, 4) });
+    for (let r = 0; r < 2; r++) {
+      for (let i = 0; i < 2; i++) {
+        for (let s = 0; s < 4; s++) {
+          const [a, b] = [streamed[(2 * r + i) * 5 + s]!, held[(2 * r + i) * 4 + s]!];
+          expect(Math.abs(a - b)).toBeLessThan(1e-9);
+        }
+      }
+    }
   });
 });
