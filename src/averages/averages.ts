@@ -15,7 +15,7 @@ import { stepsFor } from "./steps.js";
 export type { AveragesOptions } from "./options.js";
 
 /** Replicates from which the variance over them is a better estimate than the batch means within them. */
-const MANY = 100;
+const MANY = 30;
 
 function sampledVariance(seen: SampledAverage): Quantity {
   return seen.replicates < MANY ? seen.batchMeansVariance : seen.variance;
