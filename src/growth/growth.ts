@@ -53,7 +53,7 @@ export async function growth(walk: WalkInput, options: GrowthOptions & SharedSes
 export async function growthOf(walk: Walk, wishes: GrowthWishes, session: Session): Promise<GrowthResult> {
   const real = await loadReal();
   const group = walk.dimension === 2 ? planarGroup(walk) : undefined;
-  const proof = group === undefined && walk.dimension === 2 ? provePositive(walk, wishes, session, real) : undefined;
+  const proof = group === undefined ? provePositive(walk, wishes, session, real) : undefined;
   if (group === undefined && proof === undefined && walk.moves.length > 1) requireMoments(wishes.pressure);
   const found =
     group === undefined ? await sampled(walk, wishes, session, real, proof) : await known(walk, group, session, real);
@@ -83,9 +83,10 @@ async function sampled(
     walk.moves.map((m) => m.matrix),
     cumulativeWeights(walk.moves.map((m) => m.probability)),
   );
-  // Beside a proof, samples are for the curve only.
-  const full = samplingPlan(table, proof === undefined ? session.effort : "quick", wishes.steps);
-  const plan = proof === undefined ? full : { ...full, replicates: Math.min(full.replicates, 64) };
+  // Beside a proof of all exponents, samples are for the curve only.
+  const light = proof?.exponents.every((q) => q !== undefined) === true;
+  const full = samplingPlan(table, light ? "quick" : session.effort, wishes.steps);
+  const plan = light ? { ...full, replicates: Math.min(full.replicates, 64) } : full;
   const tolerance = proof === undefined ? wishes.tolerance : undefined;
   const samples = await sampleReplicates(session, table, plan, tolerance);
   const { estimates, residual } = exponentEstimates(samples, session.level);
@@ -101,8 +102,8 @@ async function sampled(
   }
   const exponents = exponentQuantities(walk.dimension, widened, samples, session.level);
   const top = widened[0] as RateEstimate;
-  const bounds = walk.dimension === 2 ? {} : await enumeratedBounds(walk, session);
-  const enclosed = proof?.exponent ?? bounds.enclosure;
+  const bounds = walk.dimension === 2 || proof !== undefined ? {} : await enumeratedBounds(walk, session);
+  const enclosed = proof?.exponents[0] ?? bounds.enclosure;
   const biased = excludes(top, enclosed, bounds.upperBound?.value);
   if (biased) {
     warnings.push(
@@ -111,7 +112,7 @@ async function sampled(
   }
   const narrow = enclosed !== undefined && (biased || widthOf(enclosed) <= 2 * top.halfWidth);
   return {
-    exponents: narrow ? withTop(exponents, enclosed) : exponents,
+    exponents: exponents.map((q, j) => proof?.exponents[j] ?? (j === 0 && narrow ? enclosed : q)),
     logNormVariance:
       proof?.variance ?? estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
     ...(narrow ? { sampled: exponents[0] as Quantity } : bounds),
@@ -134,24 +135,6 @@ function excludes(estimate: RateEstimate, enclosed: Quantity | undefined, upper:
   const most = enclosed ?? upper;
   if (most !== undefined && estimate.value > Number(most.high) + room) return true;
   return enclosed !== undefined && estimate.value < Number(enclosed.low) - room;
-}
-
-/** The exponents with a proved first one. */
-function withTop(exponents: readonly Quantity[], top: Quantity): Quantity[] {
-  return exponents.length === 2 ? [top, opposite(top)] : [top, ...exponents.slice(1)];
-}
-
-/** The second exponent of dimension 2 from the first: determinants are +-1. */
-function opposite(top: Quantity): Quantity {
-  const negative = (text: string | undefined) =>
-    text === "0" ? "0" : text?.startsWith("-") ? text.slice(1) : `-${text}`;
-  return {
-    value: typeof top.value === "number" ? 0 - top.value : `-${top.value}`,
-    standing: top.standing,
-    low: negative(top.high),
-    high: negative(top.low),
-    method: "minus the first: determinants are +-1",
-  } as Quantity;
 }
 
 /** Dimension 2, group finite or keeping lines: no sampling but for the curve, in exact integers. */

@@ -3,7 +3,8 @@ import type { Quantity } from "../quantity/quantity.js";
 import type { RateRow } from "./rate.js";
 
 export interface GrowthProof {
-  readonly exponent: Quantity;
+  /** Largest first, as many as the dimension; undefined where an exponent is not proved. The first one is. */
+  readonly exponents: readonly (Quantity | undefined)[];
   readonly variance: Quantity | undefined;
   /** Lambda(s). */
   readonly pressure: (s: number) => Quantity | undefined;

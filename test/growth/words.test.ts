@@ -100,17 +100,22 @@ describe("wordNorms", () => {
   });
 });
 
-describe("growth in dimension 3", () => {
+describe("growth in dimension 3 and more", () => {
   const here = { workers: 0, effort: "quick", steps: 20_000 } as const;
 
-  it("encloses the top exponent of non-negative moves, whatever their signs", async () => {
-    const [plain, hidden] = await Promise.all([POSITIVE_3, HIDDEN_3].map((s) => growth(walkOf(s), here)));
-    expect(plain!.exponents[0]).toMatchObject({ standing: "enclosed" });
-    expect(hidden!.exponents[0]).toEqual(plain!.exponents[0]);
-    const { low, high } = plain!.exponents[0]!;
-    expect(Number(high) - Number(low)).toBeLessThan(1e-8);
-    expect(Number(plain!.sampled!.low) < Number(high) && Number(low) < Number(plain!.sampled!.high)).toBe(true);
-    expect(plain!.warnings).toEqual([]);
+  it("encloses the top exponent of non-negative moves of dimension 4", async () => {
+    const move = [
+      [1, 1, 1, 1],
+      [1, 2, 2, 2],
+      [1, 2, 3, 3],
+      [1, 2, 3, 4],
+    ];
+    const { exponents, sampled, warnings } = await growth(walkOf([move, move.toReversed()]), here);
+    expect(exponents[0]).toMatchObject({ standing: "enclosed" });
+    const [low, high] = [Number(exponents[0]!.low), Number(exponents[0]!.high)];
+    expect(high - low).toBeLessThan(1e-6);
+    expect(Number(sampled!.low) < high && low < Number(sampled!.high)).toBe(true);
+    expect(warnings).toEqual([]);
   });
 
   it("bounds it from above otherwise", async () => {

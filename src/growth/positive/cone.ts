@@ -1,189 +1,97 @@
 /**
- * Dimension 2: an interval of directions that every move maps into its own inside, found
- * where there is one, whatever the basis ("the moves are positive on a common cone").
+ * A cone that every move maps into itself, in coordinates in which its directions are the box
+ * [-1, 1]^n, n one less than the dimension: the direction of (u, 1) for u in the box. A move
+ * with integer rows R acts by u_k -> (R_k . (u, 1)) / (R_n . (u, 1)), and (R_n . (u, 1)) / scale is
+ * the factor by which it stretches the last coordinate. That is a linear form positive on the
+ * cone, and any such form has the growth of the norm, as all are comparable on products' images.
  *
- * Each move must be hyperbolic (or plus or minus the identity): it then attracts to one
- * eigendirection and repels from the other. The interval contains every attracting direction
- * and no repelling one, so in the circle of directions the attracting ones stand together.
- * From their hull on, H grows by its images to the least invariant interval, and R, from the
- * hull of the repelling directions, by the inverses' images. Where H and R stay apart, an
- * interval a little wider than H is strictly invariant: between H and R every move contracts
- * the metric of the complement of R. (The inverses need no search of their own: the complement
- * of an interval for the moves is one for the inverses.)
- *
- * The search is done in doubles; what it finds is checked in integers. Coordinates are then
- * chosen such that the interval is [-1, 1] and R as far as possible, |u| >= reach: a move acts
- * by u -> (a u + b) / (c u + d), and (c u + d) / scale is the factor by which it stretches the
- * second coordinate, a linear form positive on the cone. Any such form has the growth of the norm.
+ * Whoever finds such coordinates does so in doubles; `coneIn` rounds them to integers and proves
+ * what they promise: a map of the box with positive last form takes it to the hull of the
+ * corners' images, so that the corners are enough.
  */
 import { Rational } from "../../exact/rational.js";
-import type { Real } from "../../kernel/real.js";
 import type { Walk } from "../../walk/walk.js";
 import { integerWeights } from "../../walk/weights.js";
 
-/** A move in the interval's coordinates: integers, c u + d > 0 for |u| <= 1, ad - bc = +-scale^2. */
 export interface ConeMove {
-  readonly a: bigint;
-  readonly b: bigint;
-  readonly c: bigint;
-  readonly d: bigint;
+  /** Integers; the last row is positive on the box. Over the cone's scale, the determinant is +-1. */
+  readonly rows: readonly (readonly bigint[])[];
   /** Probability over the cone's `total`. */
   readonly weight: bigint;
 }
 
 export interface PositiveCone {
+  /** Coordinates of a direction: one less than the walk's dimension. */
+  readonly coordinates: number;
   readonly moves: readonly ConeMove[];
   readonly scale: bigint;
   readonly total: bigint;
-  /** Above 1, in floating point: directions with |u| < reach are drawn into the interval, nearly. */
+  /** Above 1, in floating point: complex u with |u_k| < reach are drawn into the box, nearly. */
   readonly reach: number;
 }
 
-type Entries = readonly [number, number, number, number];
+type Matrix = readonly (readonly bigint[])[];
 
-/** Sweeps of images until the hulls have settled; sets that need more contract too slowly for this method. */
-const SWEEPS = 4000;
-/** By how much of its own length (in the contracted metric) the interval is wider than H at either end, and at least. */
-const MARGIN = 0.02;
-const LEAST_MARGIN = 1e-5;
 /** Bits of the integer coordinates. */
 const COORDINATE_BITS = 50;
 
-interface Eigendirections {
-  readonly attracting: number;
-  readonly repelling: number;
-}
-
-/** Angles in [0, pi) of the eigendirections; undefined where the move is not hyperbolic. */
-function eigendirections(
-  matrix: readonly (readonly bigint[])[],
-  determinant: number,
-  real: Real,
-): Eigendirections | undefined {
-  const trace = matrix[0][0] + matrix[1][1];
-  if (determinant === 1 ? trace * trace <= 4n : trace === 0n) return undefined;
-  const [a, b, c, d] = matrix.flat().map(Number);
-  const t = Number(trace);
-  const large = (t + Math.sign(t) * Math.sqrt(t * t - 4 * determinant)) / 2;
-  return { attracting: angleOf(a, b, c, d, large, real), repelling: angleOf(a, b, c, d, determinant / large, real) };
-}
-
-/** Angle of the kernel of M - x, from its larger row. Only for finding: the result is checked in integers. */
-function angleOf(a: number, b: number, c: number, d: number, x: number, real: Real): number {
-  const [p, q] = Math.abs(b) + Math.abs(a - x) > Math.abs(c) + Math.abs(d - x) ? [b, x - a] : [x - d, c];
-  return turned(real.atan2(q, p));
-}
-
-const turned = (angle: number) => angle - Math.PI * Math.floor(angle / Math.PI);
-
-/** The hull of an interval and its images under (a x + b) / (c x + d), grown until it settles. */
-function invariantHull(from: readonly [number, number], maps: readonly Entries[]): [number, number] | undefined {
-  let [low, high] = from;
-  for (let sweep = 0; sweep < SWEEPS; sweep++) {
-    let [l, h] = [low, high];
-    for (const [a, b, c, d] of maps) {
-      const [p, q] = [c * low + d, c * high + d];
-      if (!(p * q > 0)) return undefined; // the pole is inside
-      const ends = [(a * low + b) / p, (a * high + b) / q];
-      l = Math.min(l, ...ends);
-      h = Math.max(h, ...ends);
-    }
-    const settled = Math.max(low - l, h - high) <= 1e-13 * (h - l);
-    [low, high] = [l, h];
-    if (settled) return [low, high];
-  }
-  return undefined;
-}
-
-/** Rows of a linear map of the plane that takes the interval to |u| <= 1 and R to |u| >= reach, u the rows' quotient. */
-function coordinates(walk: Walk, real: Real): { rows: Entries; reach: number } | undefined {
-  const directions: Eigendirections[] = [];
-  const maps: Entries[] = [];
-  for (const { matrix, determinant } of walk.moves) {
-    if (isScalar(matrix)) continue;
-    const found = eigendirections(matrix, determinant, real);
-    if (found === undefined) return undefined;
-    directions.push(found);
-    maps.push(matrix.flat().map(Number) as unknown as Entries);
-  }
-  if (maps.length === 0) return undefined;
-  // Angles from the first repelling direction on: the attracting ones stand together in (0, pi).
-  const origin = directions[0].repelling;
-  const attracting = directions.map((e) => turned(e.attracting - origin));
-  const repelling = directions.map((e) => turned(e.repelling - origin));
-  const [low, high] = [Math.min(...attracting), Math.max(...attracting)];
-  if (repelling.some((r) => r >= low && r <= high)) return undefined;
-  const before = Math.max(0, ...repelling.filter((r) => r < low));
-  const after = Math.min(Math.PI, ...repelling.filter((r) => r > high));
-  // Turn the plane so that the middle of the repelling directions is the point at infinity of x = v1 / v2.
-  const middle = origin + (before + after - Math.PI) / 2;
-  const [x, y] = [real.cos(middle), real.sin(middle)];
-  const turn = maps.map(([a, b, c, d]): Entries => {
-    const [p, q, r, s] = [a * x + b * y, -a * y + b * x, c * x + d * y, -c * y + d * x];
-    return [p * x + r * y, q * x + s * y, -p * y + r * x, -q * y + s * x];
-  });
-  const away = (angle: number) => real.sin(angle + origin - middle) / real.cos(angle + origin - middle);
-  const place = (angle: number) => 1 / away(angle);
-  const hull = invariantHull([place(high), place(low)], turn);
-  // Inverses up to a factor, in the coordinate v2 / v1, where the repelling directions are near 0.
-  const inverses = turn.map(([a, b, c, d]): Entries => [a, -c, -b, d]);
-  const others = invariantHull([Math.min(0, away(after)), Math.max(0, away(before))], inverses);
-  if (hull === undefined || others === undefined) return undefined;
-  // Linear forms that vanish at R's ends 1/x; their quotient is positive outside R.
-  const below = (v: number) => 1 - others[0] * v; // 0 at x = 1 / others[0] < 0, the lower end
-  const above = (v: number) => 1 - others[1] * v;
-  if (!(below(hull[0]) > 0 && above(hull[1]) > 0 && below(hull[1]) > 0 && above(hull[0]) > 0)) return undefined;
-  // The quotient of the forms grows with x where others[0] < others[1].
-  if (!(others[0] < others[1])) return undefined;
-  const [s0, s1] = [below(hull[0]) / above(hull[0]), below(hull[1]) / above(hull[1])];
-  const margin = (1 + LEAST_MARGIN) * real.pow(s1 / s0, MARGIN);
-  const [from, to] = [s0 / margin, s1 * margin];
-  const kappa = Math.sqrt(to / from);
-  const g = 1 / Math.sqrt(to * from);
-  const tau = (kappa - 1) / (kappa + 1);
-  // u = (g below - above) / (tau (g below + above)), with below = v2 - others[0] v1 and so on, v turned back.
-  const form = (p: number, q: number): [number, number] => [p * x - q * y, p * y + q * x];
-  const u1 = form(-g * others[0] + others[1], g - 1);
-  const u2 = form(tau * (-g * others[0] - others[1]), tau * (g + 1));
-  return { rows: [...u1, ...u2], reach: 1 / tau };
-}
-
-function isScalar(matrix: readonly (readonly bigint[])[]): boolean {
-  const [[a, b], [c, d]] = matrix as readonly [readonly [bigint, bigint], readonly [bigint, bigint]];
-  return b === 0n && c === 0n && a === d;
-}
-
 const abs = (x: bigint) => (x < 0n ? -x : x);
 
-/** The common cone of a walk in dimension 2, or undefined where none was found. */
-export function positiveCone(walk: Walk, real: Real): PositiveCone | undefined {
-  const found = coordinates(walk, real);
-  if (found === undefined || !(found.reach > 1)) return undefined;
-  const size = Math.max(...found.rows.map(Math.abs));
-  if (!Number.isFinite(size) || size === 0) return undefined;
-  const [p, q, r, s] = found.rows.map((e) => BigInt(Math.round((e / size) * 2 ** COORDINATE_BITS)));
-  const determinant = p * s - q * r;
-  if (determinant === 0n) return undefined;
-  const scale = abs(determinant);
-  const { weights, total } = integerWeights(walk);
-  const moves: ConeMove[] = [];
-  for (const [i, { matrix }] of walk.moves.entries()) {
-    const [[a, b], [c, d]] = matrix as unknown as readonly [readonly [bigint, bigint], readonly [bigint, bigint]];
-    // U A adj(U), U the rows (p, q), (r, s): the move in the new coordinates times det U.
-    const [e, f, g, h] = [p * a + q * c, p * b + q * d, r * a + s * c, r * b + s * d];
-    const image = [e * s - f * r, -e * q + f * p, g * s - h * r, -g * q + h * p];
-    const sign = image[3] < 0n ? -1n : 1n;
-    const [a1, b1, c1, d1] = image.map((x) => sign * x);
-    const [low, high] = [d1 - c1, d1 + c1];
-    // The proof: the stretch factor is positive at both ends and both ends go into [-1, 1].
-    if (low <= 0n || high <= 0n || abs(b1 - a1) > low || abs(b1 + a1) > high) return undefined;
-    moves.push({ a: a1, b: b1, c: c1, d: d1, weight: weights[i] });
-  }
-  return { moves, scale, total, reach: found.reach };
+function product(a: Matrix, b: Matrix): bigint[][] {
+  return a.map((row) => (b[0] as readonly bigint[]).map((_, k) => row.reduce((s, x, j) => s + x * b[j][k], 0n)));
 }
 
-/** The move's entries over the cone's scale, as doubles. */
-export function coneEntries(cone: PositiveCone, move: ConeMove): [number, number, number, number] {
-  const number = (x: bigint) => Rational.of(x, cone.scale).toNumber();
-  return [number(move.a), number(move.b), number(move.c), number(move.d)];
+function determinant(m: Matrix): bigint {
+  if (m.length === 1) return m[0][0];
+  return m[0].reduce((sum, x, j) => {
+    if (x === 0n) return sum;
+    return sum + (j % 2 === 0 ? x : -x) * determinant(minor(m, 0, j));
+  }, 0n);
+}
+
+const minor = (m: Matrix, i: number, j: number) =>
+  m.filter((_, r) => r !== i).map((row) => row.filter((_, c) => c !== j));
+
+function adjugate(m: Matrix): bigint[][] {
+  return m.map((_, i) => m.map((_, j) => ((i + j) % 2 === 0 ? 1n : -1n) * determinant(minor(m, j, i))));
+}
+
+/** The corners of the box, with 1 as last coordinate. */
+export function corners(coordinates: number): bigint[][] {
+  return Array.from({ length: 2 ** coordinates }, (_, bits) => [
+    ...Array.from({ length: coordinates }, (_, k) => ((bits >> k) & 1 ? 1n : -1n)),
+    1n,
+  ]);
+}
+
+/** The cone in the coordinates whose linear forms are the rows given, or undefined where it is not invariant. */
+export function coneIn(walk: Walk, forms: readonly (readonly number[])[], reach: number): PositiveCone | undefined {
+  const size = Math.max(...forms.flat().map(Math.abs));
+  if (!Number.isFinite(size) || size === 0) return undefined;
+  const u = forms.map((row) => row.map((e) => BigInt(Math.round((e / size) * 2 ** COORDINATE_BITS))));
+  const scale = abs(determinant(u));
+  if (scale === 0n) return undefined;
+  const back = adjugate(u);
+  const { weights, total } = integerWeights(walk);
+  const n = walk.dimension - 1;
+  const box = corners(n);
+  const moves: ConeMove[] = [];
+  for (const [i, { matrix }] of walk.moves.entries()) {
+    // The move in the new coordinates, times the scale, with the sign that makes the last form positive.
+    const image = product(product(u, matrix), back);
+    const sign = image[n][n] < 0n ? -1n : 1n;
+    const rows = image.map((row) => row.map((x) => sign * x));
+    for (const corner of box) {
+      const at = rows.map((row) => row.reduce((s, x, k) => s + x * corner[k], 0n));
+      const last = at[n];
+      if (last <= 0n || at.some((x) => abs(x) > last)) return undefined;
+    }
+    moves.push({ rows, weight: weights[i] });
+  }
+  return { coordinates: n, moves, scale, total, reach };
+}
+
+/** The move's rows over the cone's scale, as doubles. */
+export function coneRows(cone: PositiveCone, move: ConeMove): number[][] {
+  return move.rows.map((row) => row.map((x) => Rational.of(x, cone.scale).toNumber()));
 }

@@ -1,4 +1,4 @@
-/** Chebyshev points of the cone's interval with what the moves do there, as balls. */
+/** Chebyshev points of the cone's box with what the moves do there, as balls. */
 import { type Ball, divideBalls } from "../../exact/ball.js";
 import { logOfBall } from "../../exact/elementary.js";
 import { chebyshevRoots } from "./chebyshev.js";
@@ -6,29 +6,41 @@ import type { PositiveCone } from "./cone.js";
 
 /** One point u; for each move, where it goes and the logarithm of the stretch factor. */
 export interface Sample {
-  readonly at: Ball;
-  readonly images: readonly Ball[];
+  readonly at: readonly Ball[];
+  readonly images: readonly (readonly Ball[])[];
   readonly logs: readonly Ball[];
 }
 
-export function sampleAt(cone: PositiveCone, at: Ball, p: number): Sample {
-  const images: Ball[] = [];
+function sampleAt(cone: PositiveCone, at: readonly Ball[], p: number): Sample {
+  const images: Ball[][] = [];
   const logs: Ball[] = [];
   const one = 1n << BigInt(p);
-  const form = (x: bigint, y: bigint): Ball => ({ mid: x * at.mid + y * one, rad: (x < 0n ? -x : x) * at.rad });
-  for (const { a, b, c, d } of cone.moves) {
-    const factor = form(c, d);
-    const image = divideBalls(form(a, b), factor, p);
-    // The true image is inside [-1, 1]; a middle that rounding left outside moves in.
-    const mid = image.mid > one ? one : image.mid < -one ? -one : image.mid;
-    images.push({ mid, rad: image.rad });
+  const n = cone.coordinates;
+  const form = (row: readonly bigint[]): Ball => {
+    let mid = row[n] * one;
+    let rad = 0n;
+    for (const [k, x] of at.entries()) {
+      mid += row[k] * x.mid;
+      rad += (row[k] < 0n ? -row[k] : row[k]) * x.rad;
+    }
+    return { mid, rad };
+  };
+  // The true image is inside [-1, 1]; a middle that rounding left outside moves in.
+  const inside = ({ mid, rad }: Ball): Ball => ({ mid: mid > one ? one : mid < -one ? -one : mid, rad });
+  for (const { rows } of cone.moves) {
+    const factor = form(rows[n]);
+    images.push(rows.slice(0, n).map((row) => inside(divideBalls(form(row), factor, p))));
     logs.push(logOfBall({ mid: factor.mid / cone.scale, rad: factor.rad / cone.scale + 2n }, p));
   }
   return { at, images, logs };
 }
 
+/** All points whose coordinates are roots of T_count. */
 export function sampleGrid(cone: PositiveCone, count: number, p: number): Sample[] {
-  return chebyshevRoots(count, p).map((at) => sampleAt(cone, at, p));
+  const roots = chebyshevRoots(count, p);
+  let points: Ball[][] = [[]];
+  for (let j = 0; j < cone.coordinates; j++) points = points.flatMap((u) => roots.map((x) => [...u, x]));
+  return points.map((at) => sampleAt(cone, at, p));
 }
 
 /** Sum of weight_i x_i over the total weight. */

@@ -1,18 +1,26 @@
 /**
  * The mean of a function under the stationary law of directions, enclosed: for any h,
  *     min (f + P h - h) <= mean of f <= max (f + P h - h)
- * over the cone's interval. h is a polynomial in Chebyshev's basis, found by collocation, and
- * the bounds hold between the points because the residual is analytic around the interval.
+ * over the cone's box. h is a polynomial in Chebyshev's basis, found by collocation, and
+ * the bounds hold between the points because the residual is analytic around the box.
  */
 import { addBalls, type Ball, negateBall } from "../../exact/ball.js";
 import type { Real } from "../../kernel/real.js";
-import { interpolationTail, lebesgue, type Polynomial, polynomial, units, valueOnBall } from "./chebyshev.js";
+import {
+  interpolationTail,
+  lebesgue,
+  type Polynomial,
+  polynomial,
+  truncated,
+  units,
+  valueOnBalls,
+} from "./chebyshev.js";
 import type { PositiveCone } from "./cone.js";
 import { type Ellipse, polynomialBound } from "./ellipse.js";
 import { average, type Sample, sampleGrid } from "./grid.js";
 import { chebyshevRow, refine, toDouble } from "./solve.js";
 
-/** A function on the interval: its values, and log2 of a bound on the ellipse. */
+/** A function on the box: its values, and log2 of a bound on the ellipse. */
 export interface Observed {
   readonly value: (sample: Sample) => Ball;
   readonly bound: number;
@@ -22,7 +30,7 @@ export interface EnclosedMean {
   /** Contains the stationary mean. */
   readonly mean: Ball;
   readonly h: Polynomial;
-  /** At least the largest |derivative| of the residual f + P h - h on the interval, units of 2^-p. */
+  /** At least the largest sum of |partial derivatives| of the residual f + P h - h on the box, units of 2^-p. */
   readonly slope: bigint;
 }
 
@@ -30,7 +38,9 @@ export interface EnclosedMean {
 export class StationaryMeans {
   private readonly points: readonly Sample[];
   private readonly matrix: number[][];
-  private finer: Sample[] = [];
+  private finer: readonly Sample[] = [];
+  /** Roots in each coordinate of `finer`. */
+  private count = 0;
 
   constructor(
     readonly cone: PositiveCone,
@@ -42,9 +52,17 @@ export class StationaryMeans {
     this.points = sampleGrid(cone, size, p);
     // Unknowns: the mean in place of the constant coefficient, which P h - h does not feel.
     this.matrix = this.points.map(({ at, images }) => {
-      const here = chebyshevRow(toDouble(at.mid, p), size);
-      const there = images.map((y) => chebyshevRow(toDouble(y.mid, p), size));
-      return here.map((t, k) =>
+      const here = chebyshevRow(
+        at.map((x) => toDouble(x.mid, p)),
+        size,
+      );
+      const there = images.map((y) =>
+        chebyshevRow(
+          y.map((x) => toDouble(x.mid, p)),
+          size,
+        ),
+      );
+      return Array.from(here, (t, k) =>
         k === 0
           ? 1
           : t - there.reduce((s, row, i) => s + Number(cone.moves[i].weight) * row[k], 0) / Number(cone.total),
@@ -55,7 +73,10 @@ export class StationaryMeans {
   /** The points of a certificate for functions bounded by 2^bound: tails below 2^-p. */
   private certificate(bound: number): readonly Sample[] {
     const wanted = Math.max(this.size + 1, Math.ceil((bound + this.p + 8) / this.ellipse.r));
-    if (this.finer.length < wanted) this.finer = sampleGrid(this.cone, wanted, this.p);
+    if (this.count < wanted) {
+      this.finer = sampleGrid(this.cone, wanted, this.p);
+      this.count = wanted;
+    }
     return this.finer;
   }
 
@@ -67,9 +88,9 @@ export class StationaryMeans {
   gain(h: Polynomial, sample: Sample): Ball {
     const there = average(
       this.cone,
-      sample.images.map((y) => valueOnBall(h, y, this.p)),
+      sample.images.map((y) => valueOnBalls(h, y, this.p)),
     );
-    return addBalls(there, negateBall(valueOnBall(h, sample.at, this.p)));
+    return addBalls(there, negateBall(valueOnBalls(h, sample.at, this.p)));
   }
 
   /** log2 of a bound of P h - h on the ellipse. */
@@ -81,11 +102,11 @@ export class StationaryMeans {
   solve(f: Observed): Polynomial {
     const { size } = this;
     const values = this.points.map((s) => f.value(s).mid);
-    const found = refine(this.matrix, new Array<bigint>(size).fill(0n), (x) => {
-      const h = { ...polynomial([]), coefficients: [0n, ...x.slice(1)] };
+    const found = refine(this.matrix, new Array<bigint>(this.points.length).fill(0n), (x) => {
+      const h: Polynomial = { size, coefficients: [0n, ...x.slice(1)], slope: 0n, bend: 0n };
       return this.points.map((s, j) => values[j] + this.gain(h, s).mid - x[0]);
     });
-    return polynomial([0n, ...found.slice(1)]);
+    return polynomial(truncated([0n, ...found.slice(1)], size), size);
   }
 
   enclose(f: Observed): EnclosedMean {
@@ -100,13 +121,14 @@ export class StationaryMeans {
     }
     const mid = (low + high) >> 1n;
     const most = high - mid + 1n;
-    const tail = interpolationTail(bound, this.ellipse.r, points.length, this.real);
-    const between = (most * BigInt(Math.ceil(lebesgue(points.length) * 1024))) / 1024n + 1n;
+    const count = this.count;
+    const tail = interpolationTail(bound, this.ellipse.r, count, this.cone.coordinates, this.real);
+    const between = (most * BigInt(Math.ceil(lebesgue(count, this.cone.coordinates) * 1024))) / 1024n + 1n;
     // The constant `mid` changes the residual's bound on the ellipse by a factor of 2 at most.
     return {
       mean: { mid, rad: between + units(tail.value + 1, this.p) },
       h,
-      slope: between * BigInt((points.length - 1) ** 2) + units(tail.slope + 1, this.p),
+      slope: between * BigInt(this.cone.coordinates * (count - 1) * (count - 1)) + units(tail.slope + 1, this.p),
     };
   }
 }

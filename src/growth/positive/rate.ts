@@ -13,14 +13,14 @@ import type { Enclosure } from "./positive.js";
 /** Lambda at a double, or undefined where it could not be enclosed. */
 export type EnclosePressure = (s: number) => Enclosure | undefined;
 
-/** Half the distance of the chords' ends: the bounds part by its square times Lambda''. */
-const STEP = 2 ** -26;
-
 const most = (a: Rational, b: Rational) => (a.compare(b) < 0 ? b : a);
 
-/** I(x) from three s near the one where the supremum is taken; undefined where `s` is too far off. */
-export function encloseRate(speed: number, s: number, pressure: EnclosePressure): Enclosure | undefined {
-  const [left, right] = [s - STEP, s + STEP];
+/**
+ * I(x) from three s near the one where the supremum is taken, `step` apart: the bounds part by
+ * its square times Lambda''. Undefined where `s` is too far off, or Lambda not known well enough.
+ */
+export function encloseRate(speed: number, s: number, step: number, pressure: EnclosePressure): Enclosure | undefined {
+  const [left, right] = [s - step, s + step];
   const [before, at, after] = [pressure(left), pressure(s), pressure(right)];
   if (before === undefined || at === undefined || after === undefined) return undefined;
   const exact = Rational.fromNumber;

@@ -4,12 +4,12 @@ import type { RateRow } from "../rate.js";
 import type { PositiveSet } from "./positive.js";
 import { encloseRate } from "./rate.js";
 
-const BITS = 64;
+/** By the number of coordinates: bits of each Lambda(s), and rows at least (at most two and a half times as many). */
+const BITS = [0, 64, 28];
+const ROWS = [0, 10, 5];
 /** Speeds run from Lambda'(-S) to Lambda'(S), S as many of the log norm's standard deviations' inverses, and at most. */
 const DEVIATIONS = 2;
 const MOST = 16;
-/** Rows at least; at most two and a half times as many. */
-const ROWS = 10;
 
 /** The largest of 1, 2, 5 times a power of ten that is at most x. */
 function roundStep(x: number): number {
@@ -25,22 +25,23 @@ export function positiveRates(
   variance: number,
   tick: (done: number, total: number) => void,
 ): RateRow[] {
-  const log = (s: number) => set.approximatePressure(s, BITS) ?? Number.NaN;
+  const bits = set.bitsWithin(BITS[set.cone.coordinates]);
+  const log = (s: number) => set.approximatePressure(s, bits) ?? Number.NaN;
   const slope = (s: number) => (log(s + 2 ** -10) - log(s - 2 ** -10)) * 2 ** 9;
   const most = Math.min(MOST, DEVIATIONS / Math.sqrt(Math.max(variance, 1e-12)));
   const [slowest, fastest] = [slope(-most), slope(most)];
   if (!(fastest > slowest)) return [];
-  const step = roundStep((fastest - slowest) / ROWS);
+  const step = roundStep((fastest - slowest) / ROWS[set.cone.coordinates]);
   const first = Math.ceil(slowest / step);
   const last = Math.floor(fastest / step);
   const rows: RateRow[] = [];
-  let s = -most;
+  let from = { s: -most, slope: slowest };
   for (let k = first; k <= last; k++) {
     tick(k - first, last - first + 1);
     const speed = Number((k * step).toPrecision(12));
-    const found = rateNear(set, speed, s, slope, most);
+    const found = rateNear(set, bits, speed, from, slope, variance);
     if (found === undefined) continue;
-    s = found.s;
+    from = { s: found.s, slope: speed };
     rows.push({ speed, rate: enclosedBetween(found.rate.low, found.rate.high, METHOD) });
   }
   return rows;
@@ -48,25 +49,37 @@ export function positiveRates(
 
 const METHOD = "Legendre transform of the enclosed pressure, chords of the convex function";
 
-/** Newton's method for Lambda'(s) = speed, in doubles and then with chords of enclosures. */
-function rateNear(set: PositiveSet, speed: number, from: number, slope: (s: number) => number, most: number) {
-  let s = from;
-  const bend = (at: number) => (slope(at + 2 ** -4) - slope(at - 2 ** -4)) * 2 ** 3;
+/** The s with Lambda'(s) = speed by the secant method, in doubles and then with chords of enclosures. */
+function rateNear(
+  set: PositiveSet,
+  bits: number,
+  speed: number,
+  from: { readonly s: number; readonly slope: number },
+  slope: (s: number) => number,
+  variance: number,
+) {
+  let last = from;
+  let bend = variance;
+  let s = from.s;
   for (let sweep = 0; sweep < 40; sweep++) {
-    const curvature = bend(s);
-    const step = (speed - slope(s)) / curvature;
-    if (!Number.isFinite(step) || curvature <= 0) return undefined;
-    s = Math.max(-most - 1, Math.min(most + 1, s + Math.max(-1, Math.min(1, step))));
-    if (Math.abs(step) < 1e-6) break;
+    const move = (speed - last.slope) / bend;
+    if (!Number.isFinite(move)) return undefined;
+    // Not far at once: the curve bends.
+    s = last.s + Math.max(-2, Math.min(2, move));
+    if (Math.abs(move) < 1e-6) break;
+    const next = { s, slope: slope(s) };
+    const chord = (next.slope - last.slope) / (next.s - last.s);
+    if (chord > 0) bend = chord;
+    last = next;
   }
-  const pressure = (t: number) => set.pressure(t, BITS);
+  const step = 2 ** -Math.floor(0.4 * bits);
+  const pressure = (t: number) => set.pressure(t, bits);
   for (let sweep = 0; sweep < 4; sweep++) {
-    const rate = encloseRate(speed, s, pressure);
+    const rate = encloseRate(speed, s, step, pressure);
     if (rate !== undefined) return { s, rate };
-    const [before, after] = [pressure(s - 2 ** -20), pressure(s + 2 ** -20)];
+    const [before, after] = [pressure(s - step), pressure(s + step)];
     if (before === undefined || after === undefined) return undefined;
-    const exact = after.low.sub(before.low).toNumber() * 2 ** 19;
-    s += (speed - exact) / bend(s);
+    s += (speed - after.low.sub(before.low).toNumber() / (2 * step)) / bend;
   }
   return undefined;
 }

@@ -11,11 +11,18 @@ export function toDouble(m: bigint, p: number): number {
   return Number(m >> BigInt(drop)) * 2 ** (drop - p);
 }
 
-/** T_0(x), ..., T_{count-1}(x). */
-export function chebyshevRow(x: number, count: number): number[] {
-  const row = [1, x];
-  for (let k = 2; k < count; k++) row.push(2 * x * row[k - 1] - row[k - 2]);
-  return row.slice(0, count);
+/** All products of T_0, ..., T_{size-1} of the coordinates, in the order of a polynomial's coefficients. */
+export function chebyshevRow(u: readonly number[], size: number): Float64Array {
+  let row = Float64Array.of(1);
+  for (const x of u) {
+    const one = new Float64Array(size).fill(1);
+    one[1] = x;
+    for (let k = 2; k < size; k++) one[k] = 2 * x * one[k - 1] - one[k - 2];
+    const next = new Float64Array(row.length * size);
+    for (const [i, t] of row.entries()) for (let k = 0; k < size; k++) next[i * size + k] = t * one[k];
+    row = next;
+  }
+  return row;
 }
 
 /**

@@ -1,16 +1,17 @@
 import { describe, expect, it } from "vitest";
 import { Rational } from "../../../src/exact/rational.js";
-import { positiveCone } from "../../../src/growth/positive/cone.js";
+import { planarCone } from "../../../src/growth/positive/interval.js";
 import { loadReal } from "../../../src/kernel/real.js";
 import { type Numbers, RANDOM_FIBONACCI, shear, walkOf } from "../walks.js";
 import { POSITIVE_SETS } from "./walks.js";
 
-describe("positiveCone", () => {
+describe("planarCone", () => {
   for (const [name, set] of POSITIVE_SETS) {
     it(`finds an interval that is mapped into itself: ${name}`, async () => {
-      const cone = positiveCone(walkOf(set), await loadReal());
+      const cone = planarCone(walkOf(set), await loadReal());
       expect(cone?.reach).toBeGreaterThan(2);
-      for (const { a, b, c, d } of cone!.moves) {
+      for (const { rows } of cone!.moves) {
+        const [[a, b], [c, d]] = rows as [[bigint, bigint], [bigint, bigint]];
         const determinant = a * d - b * c;
         expect(determinant < 0n ? -determinant : determinant).toBe(cone!.scale * cone!.scale);
         for (const u of [Rational.of(-1), Rational.of(1, 3), Rational.ONE]) {
@@ -60,7 +61,7 @@ describe("positiveCone", () => {
   ];
   for (const [name, set] of none) {
     it(`finds none: ${name}`, async () => {
-      expect(positiveCone(walkOf(set), await loadReal())).toBeUndefined();
+      expect(planarCone(walkOf(set), await loadReal())).toBeUndefined();
     });
   }
 });
