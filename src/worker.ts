@@ -4,6 +4,7 @@ import "./averages/jobs.js";
 import "./orbits/jobs.js";
 import { listen } from "#worker-port";
 import "./averages/correlation-jobs.js";
+import "./averages/modular-jobs.js";
 import "./growth/jobs.js";
 import "./start/jobs.js";
 import { findJob } from "./kernel/jobs.js";

@@ -100,7 +100,7 @@ export class Green {
   /** @param walk first passages of the transposed moves */
   constructor(private readonly walk: Passage) {}
 
-  /** Expected visits from just after the first draw, by the state in which they happen. */
+  /** Expected visits to the identity before a draw with that swap and sign, by the state of the walk that stands there. */
   private end(swap: boolean, sign: 1 | -1): VectorBounds | undefined {
     const key = `${swap}${sign}`;
     const known = this.ends.get(key);

@@ -1,9 +1,10 @@
 /**
  * A walk on PGL_2(Z), letter by letter, and its first passages (see words.ts).
  *
- * The walk g_n = B_1 ... B_n is expanded: a state says which move is being read, how many
- * of its letters are done, whether a swap is pending (it exchanges v and V in what
- * follows) and, where signs are kept, the sign of the matrix against its word. F_x, for a
+ * The walk g_n = B_1 ... B_n is expanded: a state says which letters of the drawn move are
+ * still to be read (none: the next move is to be drawn), whether a swap is pending (it
+ * exchanges v and V in what follows) and, where signs are kept, the sign of the matrix
+ * against its word. F_x, for a
  * letter x, has in row i, column j the probability that the walk, started at the identity
  * in state i, ever stands at x and then is in state j the first time. The Cayley graph is
  * a tree of triangles, so these solve
@@ -39,9 +40,9 @@ export interface Passage {
   /** Whether some move has determinant -1. */
   readonly swaps: boolean;
   readonly first: Readonly<Record<Letter, MatrixBounds>>;
-  /** Row vector: the states just after the first draw, with their weights. */
+  /** Row vector: 1 at the state before the first draw. */
   readonly initial: VectorBounds;
-  /** Column: 1 at states that have just drawn a move, have that swap and that sign. */
+  /** Column: 1 at the state before a draw with that swap and that sign. */
   readonly drawn: (swap: boolean, sign: 1 | -1) => Float64Array;
   /** Solver for visits: x = f + R x. */
   readonly visits: LeastSolver;
@@ -59,18 +60,64 @@ interface Chain {
 
 const LETTERS: readonly Letter[] = ["u", "v", "V"];
 
-/** The expanded chain of moves with the given words and probabilities. */
-function expand(words: readonly Word[], weights: readonly { low: number; high: number }[], signs: boolean): Chain {
-  const starts: number[] = [];
-  let base = 0;
-  for (const w of words) {
-    starts.push(base);
-    base += Math.max(1, w.letters.length);
+/** A draw of one of the moves that begin alike and go on alike. */
+interface Draw {
+  readonly letter: Letter | "e";
+  /** The letters that are left, and whether the swap follows; "" where the next move is drawn at once. */
+  readonly rest: string;
+  /** Whether the swap follows at once: moves of at most one letter. */
+  readonly swap: boolean;
+  readonly turns: boolean;
+  probability: Rational;
+}
+
+/** The rest of a word after `read` letters, as a state's name. */
+function restOf(word: Word, read: number): string {
+  const letters = word.letters.slice(read).join("");
+  return letters === "" ? "" : `${letters}${word.swap ? "s" : ""}`;
+}
+
+function drawsOf(words: readonly Word[], probabilities: readonly Rational[], signs: boolean): Draw[] {
+  const draws = new Map<string, Draw>();
+  for (const [i, word] of words.entries()) {
+    const probability = probabilities[i] as Rational;
+    const rest = restOf(word, 1);
+    const draw: Omit<Draw, "probability"> = {
+      letter: word.letters[0] ?? "e",
+      rest,
+      swap: rest === "" && word.swap,
+      turns: signs && word.sign < 0,
+    };
+    const key = `${draw.letter} ${rest} ${draw.swap} ${draw.turns}`;
+    const before = draws.get(key);
+    if (before === undefined) draws.set(key, { ...draw, probability });
+    else before.probability = before.probability.add(probability);
   }
+  return [...draws.values()];
+}
+
+/** The names of the states: "" before a draw, and the rests of words, each once. */
+function positionsOf(words: readonly Word[]): string[] {
+  const names = words.flatMap((w) => w.letters.map((_, j) => (j === 0 ? "" : restOf(w, j))));
+  return [...new Set(["", ...names])];
+}
+
+/** z p between doubles; exact where p is a short dyadic fraction and z is 1. */
+function weigh(p: Rational, z: number): { low: number; high: number } {
+  const w = p.toNumber() * z;
+  const exact = z === 1 && p.den <= 1n << 40n && (p.den & (p.den - 1n)) === 0n;
+  return exact ? { low: w, high: w } : { low: w * (1 - 2 ** -51), high: w * (1 + 2 ** -51) };
+}
+
+/** The expanded chain of moves with the given words and probabilities. */
+function expand(words: readonly Word[], draws: readonly Draw[], z: number, signs: boolean): Chain {
+  const positions = positionsOf(words);
+  const base = positions.length;
+  const place = new Map(positions.map((name, i) => [name, i]));
   const swaps = words.some((w) => w.swap) ? 2 : 1;
   const n = base * swaps * (signs ? 2 : 1);
-  const at = (sign: number, swap: number, move: number, letter: number) =>
-    ((signs ? sign : 0) * swaps + swap) * base + starts[move]! + letter;
+  const at = (sign: number, swap: number, rest: string) =>
+    ((signs ? sign % 2 : 0) * swaps + swap) * base + (place.get(rest) as number);
   const zero = () => ({
     u: new Float64Array(n * n),
     v: new Float64Array(n * n),
@@ -81,26 +128,24 @@ function expand(words: readonly Word[], weights: readonly { low: number; high: n
   const high = zero();
   for (let sign = 0; sign < (signs ? 2 : 1); sign++) {
     for (let swap = 0; swap < swaps; swap++) {
-      for (const [i, word] of words.entries()) {
-        const length = word.letters.length;
-        for (let j = 0; j < Math.max(1, length); j++) {
-          const letter = word.letters[j];
-          const x = letter === undefined ? "e" : swap ? swapped(letter) : letter;
-          const row = at(sign, swap, i, j) * n;
-          if (j + 1 < length) {
-            low[x][row + at(sign, swap, i, j + 1)] = 1;
-            high[x][row + at(sign, swap, i, j + 1)] = 1;
-            continue;
-          }
-          // The swap of u is -u: with s u s = -u, each u read under a pending swap turns the sign.
-          const turns = (word.sign < 0 ? 1 : 0) + (swap ? word.letters.filter((l) => l === "u").length : 0);
-          const nextSign = (sign + turns) % 2;
-          const nextSwap = word.swap ? 1 - swap : swap;
-          for (const [i2, w] of weights.entries()) {
-            low[x][row + at(nextSign, nextSwap, i2, 0)]! += w.low;
-            high[x][row + at(nextSign, nextSwap, i2, 0)]! += w.high;
-          }
-        }
+      // The swap of u is -u: with s u s = -u, each u read under a pending swap turns the sign.
+      const turned = (x: string) => (swap && x === "u" ? 1 : 0);
+      const under = (x: Letter | "e") => (x === "e" ? x : swap ? swapped(x) : x);
+      for (const { letter, rest, swap: toggles, turns, probability } of draws) {
+        const to = at(sign + (turns ? 1 : 0) + turned(letter), toggles ? 1 - swap : swap, rest);
+        const cell = at(sign, swap, "") * n + to;
+        const w = weigh(probability, z);
+        low[under(letter)][cell] = w.low;
+        high[under(letter)][cell] = w.high;
+      }
+      for (const name of positions) {
+        if (name === "") continue;
+        const letter = name[0] as Letter;
+        const rest = name.slice(1);
+        const last = rest === "" || rest === "s";
+        const to = at(sign + turned(letter), last && rest === "s" ? 1 - swap : swap, last ? "" : rest);
+        low[under(letter)][at(sign, swap, name) * n + to] = 1;
+        high[under(letter)][at(sign, swap, name) * n + to] = 1;
       }
     }
   }
@@ -113,21 +158,14 @@ function expand(words: readonly Word[], weights: readonly { low: number; high: n
     }
     return out;
   };
-  const initialLow = new Float64Array(n);
-  const initialHigh = new Float64Array(n);
-  for (const [i, w] of weights.entries()) {
-    initialLow[at(0, 0, i, 0)] = w.low;
-    initialHigh[at(0, 0, i, 0)] = w.high;
-  }
+  const initial = new Float64Array(n);
+  initial[at(0, 0, "")] = 1;
   const drawn: Passage["drawn"] = (swap, sign) => {
     const out = new Float64Array(n);
-    if (swap && swaps === 1) return out;
-    for (const [i] of words.entries()) {
-      out[at(sign < 0 ? 1 : 0, swap ? 1 : 0, i, 0)] = 1;
-    }
+    if (!swap || swaps === 2) out[at(sign < 0 ? 1 : 0, swap ? 1 : 0, "")] = 1;
     return out;
   };
-  return { n, low, high, turn, initial: { low: initialLow, high: initialHigh }, drawn };
+  return { n, low, high, turn, initial: { low: initial, high: initial }, drawn };
 }
 
 type Triple = Record<Letter, Dense>;
@@ -188,15 +226,9 @@ export function passage(
 ): Passage | undefined {
   const { signs = false, z = 1, mostStates = 400 } = options;
   const words = matrices.map(wordOf);
-  const weights = probabilities.map((p) => {
-    const w = p.toNumber() * z;
-    // Two roundings at most; weights that are exact doubles stay exact at z = 1.
-    const exact = z === 1 && Number.isInteger(w * 2 ** 40) && p.den <= 1n << 40n && (p.den & (p.den - 1n)) === 0n;
-    return exact ? { low: w, high: w } : { low: w * (1 - 2 ** -51), high: w * (1 + 2 ** -51) };
-  });
-  const length = words.reduce((s, w) => s + Math.max(1, w.letters.length), 0);
-  if (length * (signs ? 2 : 1) * (words.some((w) => w.swap) ? 2 : 1) > mostStates) return undefined;
-  const chain = expand(words, weights, signs);
+  const size = positionsOf(words).length * (signs ? 2 : 1) * (words.some((w) => w.swap) ? 2 : 1);
+  if (size > mostStates) return undefined;
+  const chain = expand(words, drawsOf(words, probabilities, signs), z, signs);
   const { n } = chain;
   const zeros = (): Triple => ({ u: new Float64Array(n * n), v: new Float64Array(n * n), V: new Float64Array(n * n) });
 
