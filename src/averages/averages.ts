@@ -32,7 +32,7 @@ export async function averages(
   const walk = asWalk(input);
   return withSession(options, async (session) => {
     const sampling = samplingOf(options, session, walk);
-    const { findings, orbit, warnings } = await exactAverages(walk, session);
+    const { findings, orbit, warnings } = await exactAverages(walk, session, undefined, options.generating);
     const sampled = await sampleAverages(walk, session, {
       ...sampling,
       means: findings.map((f) => quantityNumber(f.mean)),

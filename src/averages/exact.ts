@@ -42,6 +42,7 @@ export async function exactAverages(
   walk: Walk,
   session: Session,
   budget: ExactBudget = EXACT_BUDGET[session.effort],
+  generating: readonly number[] = [],
 ): Promise<ExactAverages> {
   const denominator = commonDenominator(walk);
   if (denominator !== undefined) {
@@ -57,7 +58,7 @@ export async function exactAverages(
       };
     }
     return {
-      findings: (await haarFindings(walk, session, budget)).map(asEstimate),
+      findings: (await haarFindings(walk, session, budget, generating)).map(asEstimate),
       warnings: [
         `The start is rational with denominator ${denominator}: averages converge to the mean over a finite orbit, which has more points than this effort lists (${budget.points}); integrals are given in its place.`,
       ],
@@ -79,5 +80,5 @@ export async function exactAverages(
       "A coordinate of the start is not proved irrational: if all are rational, the limit is a finite orbit's mean.",
     );
   }
-  return { findings: await haarFindings(walk, session, budget), warnings };
+  return { findings: await haarFindings(walk, session, budget, generating), warnings };
 }

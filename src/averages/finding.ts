@@ -1,4 +1,5 @@
 import type { Quantity, Verdict } from "../quantity/quantity.js";
+import type { GeneratingValue } from "./generating.js";
 
 /** What is known of one observable without sampling. */
 export interface ExactFinding {
@@ -9,6 +10,7 @@ export interface ExactFinding {
   readonly degenerate: Verdict;
   readonly correlations: readonly Quantity[];
   readonly lastTerms?: readonly { readonly step: number; readonly value: Quantity }[];
+  readonly generating?: readonly GeneratingValue[];
   readonly reached?: { readonly step: number; readonly reason: string };
   /** Where the variance is 0: |sum over n positions - n mean| is at most this. */
   readonly spread?: number;

@@ -1,24 +1,22 @@
 /**
- * The exact part under Haar measure: mean, correlations by the dual walk, their partial sum
- * as the variance, and whether the variance is 0.
+ * The exact part under Haar measure, in which the walk is stationary: mean, correlations by
+ * the dual walk, the limit variance, and whether that is 0.
  */
 
-import { isSelfAdjoint } from "../dual/adjoint.js";
 import { encloseAround, formQuantity } from "../dual/enclose.js";
-import { adjointMoves, forwardMoves } from "../dual/moves.js";
-import { polynomialOf, shapeOf, type TrigPolynomial, tableTerms } from "../dual/polynomial.js";
+import { polynomialOf, type TrigPolynomial } from "../dual/polynomial.js";
 import { Rational } from "../exact/rational.js";
-import { estimatedQuantity, exactQuantity, type Quantity } from "../quantity/quantity.js";
+import { exactQuantity, type Quantity, type Verdict } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
 import type { Observable, Walk } from "../walk/walk.js";
 import type { ExactBudget } from "./budget.js";
-import { correlationsJob } from "./correlation-jobs.js";
-import type { CorrelationSums, CorrelationsPayload } from "./correlations.js";
+import { type Computed, computeSums } from "./computed.js";
+import type { CorrelationSums } from "./correlations.js";
 import { boxDegeneracy, type Degeneracy, type Differences, degeneracyOf, differencesOf } from "./degenerate.js";
 import type { ExactFinding } from "./finding.js";
+import { generatingFunction } from "./generating.js";
 import { type Box, boxMean, boxSquareNorm, isWholeTorus } from "./integral.js";
-
-const LAST_SHOWN = 5;
+import { LAST_SHOWN, limitVariance } from "./limit-variance.js";
 
 const END: Readonly<Record<CorrelationSums["end"], string>> = {
   done: "as many terms as are ever computed",
@@ -60,57 +58,58 @@ function correlationQuantities(f: TrigPolynomial, { values, errors }: Correlatio
   );
 }
 
-/** <f, f> + 2 sum of the correlations from n = 1 on, as far as they are known. */
-function partialSum(values: readonly number[]): number {
-  let sum = 0;
-  for (let n = values.length - 1; n >= 1; n--) sum += values[n]!;
-  return Math.max(0, values[0]! + 2 * sum);
-}
-
 function ofTerms(
   label: string,
   f: TrigPolynomial,
   degeneracy: Degeneracy,
-  sums: CorrelationSums | undefined,
+  computed: Computed | undefined,
+  at: readonly number[],
 ): ExactFinding {
   const mean = formQuantity(f.constant, "integral: the constant term");
-  const degenerate = degeneracy.verdict;
-  if (sums === undefined) {
+  if (computed === undefined) {
     const zero = exactQuantity(0n, "the observable is constant");
-    return { label, mean, variance: zero, degenerate, correlations: [zero], spread: 0, notes: [] };
-  }
-  const correlations = correlationQuantities(f, sums);
-  const last = sums.values.length - 1;
-  const lastTerms = correlations.map((value, step) => ({ step, value })).slice(-LAST_SHOWN);
-  const reached = { step: last, reason: END[sums.end] };
-  const notes: string[] = [];
-  if (degeneracy.g !== undefined) {
-    const variance = exactQuantity(0n, "f - mean = g - P g with g invariant: sums stay bounded");
+    const generating = at.map((z) => ({ z, value: zero }));
     return {
       label,
       mean,
-      variance,
-      degenerate,
-      correlations,
-      lastTerms,
-      reached,
-      spread: spreadOf(degeneracy.g),
-      notes,
+      variance: zero,
+      degenerate: degeneracy.verdict,
+      correlations: [zero],
+      ...(at.length === 0 ? {} : { generating }),
+      spread: 0,
+      notes: [],
     };
   }
-  const value = partialSum(sums.values);
-  const tail = 2 * sums.values.slice(-LAST_SHOWN).reduce((s, x) => s + Math.abs(x), 0);
-  const share = tail / sums.values[0]!;
-  if (share > 0.05) {
-    notes.push(
-      `The last ${lastTerms.length} correlations computed still add ${(100 * share).toFixed(0)} % of <f, f>: the partial sum may be far from the limit.`,
-    );
+  const { sums, modular } = computed;
+  const correlations = correlationQuantities(f, sums);
+  const reached = { step: sums.values.length - 1, reason: END[sums.end] };
+  const generating = generatingFunction(at, sums, modular);
+  const common = { label, mean, correlations, reached, ...(at.length === 0 ? {} : { generating }) };
+  if (degeneracy.g !== undefined) {
+    const variance = exactQuantity(0n, "f - mean = g - P g with g invariant: sums stay bounded");
+    const spread = spreadOf(degeneracy.g);
+    return { ...common, variance, degenerate: degeneracy.verdict, spread, notes: [] };
   }
-  const variance = estimatedQuantity(
-    value,
-    `<f, f> + 2 sum of <f, P^n f> for n = 1 to ${last}; the terms beyond are left out`,
-  );
-  return { label, mean, variance, degenerate, correlations, lastTerms, reached, notes };
+  const { variance, terms, notes } = limitVariance(computed);
+  const lastTerms = correlations.map((value, step) => ({ step, value })).slice(-LAST_SHOWN);
+  return {
+    ...common,
+    variance,
+    degenerate: decidedBy(variance, degeneracy.verdict),
+    ...(terms ? { lastTerms } : {}),
+    notes,
+  };
+}
+
+/** Where algebra left it open, an enclosure that excludes 0 decides. */
+function decidedBy(variance: Quantity, verdict: Verdict): Verdict {
+  if (verdict.verdict !== "undecided" || variance.standing !== "enclosed" || !(Number(variance.low) > 0))
+    return verdict;
+  return {
+    verdict: "fails",
+    reason: "The variance is proved to lie in an interval that does not contain 0.",
+    evidence: { low: variance.low, high: variance.high },
+  };
 }
 
 function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
@@ -132,41 +131,30 @@ function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
   };
 }
 
-export async function haarFindings(walk: Walk, session: Session, budget: ExactBudget): Promise<ExactFinding[]> {
+export async function haarFindings(
+  walk: Walk,
+  session: Session,
+  budget: ExactBudget,
+  at: readonly number[] = [],
+): Promise<ExactFinding[]> {
   const differences = differencesOf(walk);
-  const phases = walk.moves.some((m) => m.translation !== undefined);
-  const forward = forwardMoves(walk);
-  const backward = isSelfAdjoint(walk) ? {} : { backward: adjointMoves(walk) };
   const parts = walk.observables.map((observable) => {
     if (observable.type === "box") return { observable };
     const f = polynomialOf(observable.terms);
     return { observable, f, degeneracy: degeneracyOf(walk, f, differences) };
   });
   const followed = parts.flatMap((part) => (part.f !== undefined && !constantOf(part.degeneracy) ? [part] : []));
-  const payloads: CorrelationsPayload[] = followed.map(({ f }) => {
-    const shape = shapeOf(f, walk.dimension, phases);
-    return {
-      shape,
-      forward,
-      ...backward,
-      ...tableTerms(f, shape),
-      entries: budget.entries,
-      products: budget.products / followed.length,
-      last: budget.last,
-      memoryLimit: session.memoryLimit,
-    };
-  });
-  const stage = "correlations by the dual walk";
-  session.progress(stage, 0, payloads.length);
-  const sums = await session.pool.map(correlationsJob, payloads, {
-    signal: session.signal,
-    onDone: (done) => session.progress(stage, done, payloads.length),
-  });
-  session.checkStop();
+  const computed = await computeSums(
+    walk,
+    followed.map(({ f }) => f),
+    session,
+    budget,
+    at,
+  );
   return parts.map((part) => {
     const { label } = part.observable as Observable;
     if (part.f === undefined) return ofBox(part.observable as Box, differences);
-    const at = followed.indexOf(part as (typeof followed)[number]);
-    return ofTerms(label, part.f, part.degeneracy, sums[at]);
+    const place = followed.indexOf(part as (typeof followed)[number]);
+    return ofTerms(label, part.f, part.degeneracy, computed[place], at);
   });
 }

@@ -1,5 +1,5 @@
 /** The sums of averages in dimension 2 without enumeration: what goes to src/modular, and what comes back. */
-import type { ExactForm } from "../dual/form.js";
+import { ExactForm } from "../dual/form.js";
 import type { TrigPolynomial } from "../dual/polynomial.js";
 import { Rational } from "../exact/rational.js";
 import { PlanarSums, type PlanarTerm } from "../modular/variance.js";
@@ -12,6 +12,7 @@ export interface ModularPayload {
     readonly num: bigint;
     readonly den: bigint;
   }[];
+  /** Then `observables` are the F of `dominating`. */
   readonly translated: boolean;
   readonly states: number;
   /** Each z at which generating functions are asked for, in (0, 1]. */
@@ -42,18 +43,17 @@ export function planarTerms(f: TrigPolynomial): PlanarTerm[] {
   }));
 }
 
-/** The coefficients' moduli, as cosines. */
-function moduli(terms: readonly PlanarTerm[]): PlanarTerm[] {
-  return terms.map(({ frequency, cos, sin }) => {
-    const size = isExactZero(sin) ? magnitude(cos) : root(plus(times(cos, cos), times(sin, sin)));
-    return { frequency, cos: size, sin: point(0) };
+/** The coefficients' moduli, as cosines: from above, and within a few units in the last place. */
+export function moduliOf(f: TrigPolynomial): TrigPolynomial {
+  const harmonics = f.harmonics.map(({ frequency, cos, sin }) => {
+    const size = sin.isZero && cos.rational !== undefined ? cos.rational.abs() : upperModulus(around(cos), around(sin));
+    return { frequency, cos: ExactForm.ofRational(size), sin: ExactForm.ZERO };
   });
+  return { constant: ExactForm.ZERO, harmonics };
 }
 
-const isExactZero = (x: Interval) => x.low === 0 && x.high === 0;
-/** The larger end on both sides would do as a bound; this keeps numbers that are exact. */
-const magnitude = (x: Interval): Interval =>
-  x.low >= 0 ? x : x.high <= 0 ? { low: -x.high, high: -x.low } : { low: 0, high: Math.max(-x.low, x.high) };
+const upperModulus = (cos: Interval, sin: Interval) =>
+  Rational.fromNumber(root(plus(times(cos, cos), times(sin, sin))).high);
 
 /** Everything asked of the observables; the observables share the walk's first passages. */
 export function modularSums({ moves, translated, states, at, observables }: ModularPayload): ModularSums[] {
@@ -62,7 +62,7 @@ export function modularSums({ moves, translated, states, at, observables }: Modu
   const damped = at.map((z) => (z === 1 ? whole : new PlanarSums(list, z, states)));
   return observables.map((terms) => {
     if (translated) {
-      const dominating = whole.twice(moduli(terms));
+      const dominating = whole.twice(terms);
       return { ...(dominating === undefined ? {} : { dominating }), generating: at.map(() => undefined) };
     }
     const variance = whole.variance(terms);
@@ -76,11 +76,12 @@ export function modularPayload(
   states: number,
   at: readonly number[],
 ): ModularPayload {
+  const translated = walk.moves.some((m) => m.translation !== undefined);
   return {
     moves: walk.moves.map(({ matrix, probability }) => ({ matrix, num: probability.num, den: probability.den })),
-    translated: walk.moves.some((m) => m.translation !== undefined),
+    translated,
     states,
     at,
-    observables: observables.map(planarTerms),
+    observables: observables.map((f) => planarTerms(translated ? moduliOf(f) : f)),
   };
 }

@@ -9,6 +9,8 @@ export interface AveragesOptions extends CommonOptions {
   readonly steps?: number;
   /** Number of sampled replicates; default by effort, fewer where more moves are asked for (8 at least). */
   readonly replicates?: number;
+  /** Points z in (0, 1] at which to evaluate the correlations' generating function, sum of z^n <f, P^n f>. */
+  readonly generating?: readonly number[];
 }
 
 /** Where only the moves are given: as many replicates as make the usual work of it, but enough to compare. */
@@ -33,6 +35,10 @@ export function samplingOf(
   ] as const) {
     if (Number.isInteger(found) && found >= 2 && found <= most) continue;
     faults.push({ pointer, message: `found ${found}; accepted: a whole number from 2 to ${most}` });
+  }
+  for (const z of options.generating ?? []) {
+    if (z > 0 && z <= 1) continue;
+    faults.push({ pointer: "--generating", message: `found ${z}; accepted: numbers above 0, at most 1` });
   }
   if (faults.length > 0) throw new OptionsError(faults);
   return { steps, replicates };

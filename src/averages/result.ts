@@ -49,6 +49,8 @@ export interface ObservableResult {
   readonly degenerate: Verdict;
   /** <f, P^n f> of the centred observable, n = 0, 1, ... */
   readonly correlations: readonly Quantity[];
+  /** Sums of z^n <f, P^n f> over n >= 0 (f centred), for each z asked for; under Haar measure only. */
+  readonly generating?: readonly { readonly z: number; readonly value: Quantity }[];
   /** The last correlations that went into the variance; absent where it is no partial sum. */
   readonly lastTerms?: readonly { readonly step: number; readonly value: Quantity }[];
   /** The last n of the correlations, and why it is the last. */

@@ -14,7 +14,7 @@ const term = (frequency: number[], cos: number, sin = 0): Term => ({
   sin: number(sin),
 });
 const terms = (label: string, ...list: Term[]): Observable => ({ type: "terms", label, terms: list });
-const small = { entries: 2 ** 16, products: 2e5, last: 60, points: 2000 };
+const small = { entries: 2 ** 16, products: 2e5, last: 60, states: 100, points: 2000 };
 const run = (walk: Walk, options: CommonOptions = {}) =>
   withSession({ effort: "quick", workers: 0, ...options }, (session) => exactAverages(walk, session, small));
 const first = async (walk: Walk) => (await run(walk)).findings[0] as ExactFinding;
@@ -190,8 +190,7 @@ describe("correlations under Haar measure", () => {
       walkOf(pair, { type: "uniform" }, [terms("probe", term([1, 0], 1))]),
     );
     expect(correlations.slice(1).every((c) => c.standing === "exact" && c.value === 0)).toBe(true);
-    expect(variance!.value).toBe(0.5);
-    expect(variance!.standing).toBe("estimated");
+    inside(variance!, 0.5, 1e-11);
   });
 
   it("give <f, f> alone where a matrix entry needs more than 63 bits", async () => {

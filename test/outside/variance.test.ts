@@ -1,6 +1,8 @@
 /** Variances in closed form, derived here, against the enclosure by Green's function. */
 import { describe, expect, it } from "vitest";
-import { PlanarVariance } from "../../src/modular/variance.js";
+import { planarTerms } from "../../src/averages/modular.js";
+import { polynomialOf } from "../../src/dual/polynomial.js";
+import { PlanarSums } from "../../src/modular/variance.js";
 import { parseWalk } from "../../src/walk/parse.js";
 
 function walkOf(moves: readonly (readonly (readonly number[])[])[], observables: unknown) {
@@ -14,10 +16,10 @@ function walkOf(moves: readonly (readonly (readonly number[])[])[], observables:
 }
 
 function enclosed(walk: ReturnType<typeof walkOf>) {
-  const planar = new PlanarVariance(walk);
+  const planar = new PlanarSums(walk.moves);
   return walk.observables.map((o) => {
     if (o.type !== "terms") throw new Error("a box has no finite list of terms");
-    const found = planar.enclose(o.terms);
+    const found = planar.variance(planarTerms(polynomialOf(o.terms)));
     if (found === undefined) throw new Error("no enclosure");
     return found;
   });

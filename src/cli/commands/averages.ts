@@ -2,11 +2,12 @@ import { averages } from "../../averages/averages.js";
 import type { ObservableResult } from "../../averages/result.js";
 import type { Question } from "../command.js";
 import { block, cells, number, page, paragraph, table, verdict } from "../render.js";
-import { whole } from "../values.js";
+import { realList, whole } from "../values.js";
 
 interface Values {
   readonly steps?: number;
   readonly replicates?: number;
+  readonly generating?: readonly number[];
 }
 
 const CORRELATIONS = 8;
@@ -34,6 +35,14 @@ function observable(o: ObservableResult): string {
       ["lag n", "<f, P^n f>", "interval", "standing"],
       shownCorrelations.map((q, n) => [String(n), ...cells(q)]),
     ) + (o.correlations.length > CORRELATIONS ? `\n  to lag ${o.correlations.length - 1} with --json` : ""),
+    ...(o.generating === undefined
+      ? []
+      : [
+          table(
+            ["z", "sum of z^n <f, P^n f>", "interval", "standing"],
+            o.generating.map((g) => [number(g.z, 6), ...cells(g.value)]),
+          ),
+        ]),
     statistic === null || pValue === null
       ? "  Distance to the normal law: not defined, the variance is 0."
       : `  Distance of the sampled averages to the normal law: ${number(statistic)}, p-value ${number(pValue, 3)}.`,
@@ -49,6 +58,11 @@ export const averagesQuestion: Question<Values> = {
   options: [
     { flags: "--steps <n>", text: "moves of each sampled replicate", read: whole },
     { flags: "--replicates <r>", text: "number of sampled replicates", read: whole },
+    {
+      flags: "--generating <z>",
+      text: "sums of z^n <f, P^n f> over n >= 0, z in (0, 1], comma-separated",
+      read: realList,
+    },
   ],
   ask: async ({ walk, values, common }) => {
     const result = await averages(walk, { ...common, ...values });

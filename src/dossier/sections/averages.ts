@@ -57,6 +57,19 @@ function flat(o: ObservableResult): Html | undefined {
   return html`<p>The correlations ⟨<i>f</i>, <i>P<sup>n</sup> f</i>⟩ are ${proved ? "" : "computed as "}0 for <i>n</i> = 1 to ${rest.length}.</p>`;
 }
 
+function generatingTable(o: ObservableResult): Html | undefined {
+  if (o.generating === undefined || o.generating.length === 0) return undefined;
+  const sums = quantityColumn(
+    "sum",
+    o.generating.map((g) => g.value),
+  );
+  return table(
+    html`The correlations' generating function, the sum over <i>n</i> ≥ 0 of <i>z<sup>n</sup></i>⟨<i>f</i>, <i>P<sup>n</sup> f</i>⟩.`,
+    [{ name: html`<i>z</i>`, n: true }, sums.column],
+    o.generating.map((g) => html`<td class="n">${brief(g.z, 6)}</td>${sums.show(g.value)}`),
+  );
+}
+
 function sampledTable(o: ObservableResult): Html {
   const s = o.sampled;
   const { median, largest } = s.iteratedLogarithm;
@@ -107,6 +120,7 @@ ${
     o.stepsFor.map((s) => html`<td class="n">±${brief(s.halfWidth)}</td>${steps.show(s.steps)}`),
   )
 }
+${generatingTable(o)}
 ${correlationsPlot(o, index) ?? flat(o)}
 ${pair(runningPlot(o, index, level), histogramPlot(o, index))}
 ${sampledTable(o)}

@@ -1,0 +1,94 @@
+/** What is computed of trigonometric polynomials under Haar measure: correlations, and in dimension 2 sums over all n. */
+import { isSelfAdjoint } from "../dual/adjoint.js";
+import { adjointMoves, forwardMoves } from "../dual/moves.js";
+import { shapeOf, type TrigPolynomial, tableTerms } from "../dual/polynomial.js";
+import type { Session } from "../session.js";
+import type { Move, Walk } from "../walk/walk.js";
+import type { ExactBudget } from "./budget.js";
+import { correlationsJob } from "./correlation-jobs.js";
+import type { CorrelationSums, CorrelationsPayload } from "./correlations.js";
+import { type ModularSums, modularPayload, moduliOf } from "./modular.js";
+import { modularJob } from "./modular-jobs.js";
+
+export interface Computed {
+  readonly sums: CorrelationSums;
+  /** In dimension 2. */
+  readonly modular?: ModularSums;
+  /** Beside `modular.dominating`: the same terms one by one, <F, Q^n F> (see ModularSums). */
+  readonly head?: CorrelationSums;
+}
+
+const isTranslated = (walk: Walk) => walk.moves.some((m) => m.translation !== undefined);
+
+function withoutTranslations(walk: Walk): Walk {
+  return { ...walk, moves: walk.moves.map(({ translation: _, ...move }): Move => move) };
+}
+
+function correlationsOf(
+  walk: Walk,
+  list: readonly TrigPolynomial[],
+  session: Session,
+  budget: ExactBudget,
+  share: number,
+): CorrelationsPayload[] {
+  const phases = isTranslated(walk);
+  const forward = forwardMoves(walk);
+  const backward = isSelfAdjoint(walk) ? {} : { backward: adjointMoves(walk) };
+  return list.map((f) => {
+    const shape = shapeOf(f, walk.dimension, phases);
+    return {
+      shape,
+      forward,
+      ...backward,
+      ...tableTerms(f, shape),
+      entries: budget.entries,
+      products: budget.products / share,
+      last: budget.last,
+      memoryLimit: session.memoryLimit,
+    };
+  });
+}
+
+/**
+ * @param list centred or not (constants are passed over), none of them constant
+ * @param at where generating functions are asked for
+ */
+export async function computeSums(
+  walk: Walk,
+  list: readonly TrigPolynomial[],
+  session: Session,
+  budget: ExactBudget,
+  at: readonly number[],
+): Promise<Computed[]> {
+  if (list.length === 0) return [];
+  let modular: readonly ModularSums[] = [];
+  if (walk.dimension === 2) {
+    const stage = "sums over all n by Green's function";
+    session.progress(stage, 0, 1);
+    const payload = modularPayload(walk, list, budget.states, at);
+    [modular = []] = await session.pool.map(modularJob, [payload], { signal: session.signal });
+    session.progress(stage, 1, 1);
+    session.checkStop();
+  }
+  const dominated = list.filter((_, i) => modular[i]?.dominating !== undefined);
+  const share = list.length + dominated.length;
+  const payloads = [
+    ...correlationsOf(walk, list, session, budget, share),
+    ...correlationsOf(withoutTranslations(walk), dominated.map(moduliOf), session, budget, share),
+  ];
+  const stage = "correlations by the dual walk";
+  session.progress(stage, 0, payloads.length);
+  const sums = await session.pool.map(correlationsJob, payloads, {
+    signal: session.signal,
+    onDone: (done) => session.progress(stage, done, payloads.length),
+  });
+  session.checkStop();
+  return list.map((f, i): Computed => {
+    const place = dominated.indexOf(f);
+    return {
+      sums: sums[i] as CorrelationSums,
+      ...(modular[i] === undefined ? {} : { modular: modular[i] }),
+      ...(place < 0 ? {} : { head: sums[list.length + place] as CorrelationSums }),
+    };
+  });
+}

@@ -1,0 +1,75 @@
+/**
+ * The limit variance <f, f> + 2 sum over n >= 1 of <f, P^n f>, as well as it is known.
+ *
+ * With translations, |<f, P^n f>| <= <F, Q^n F>: F has the coefficients |f_k|, Q is the walk
+ * without translations, since each path of frequencies has the same weight in both and a
+ * phase of modulus 1 in the first. So what is left after N terms is at most the sum of all
+ * 2 <F, Q^n F>, which Green's function gives, less its first terms, which are enumerated.
+ */
+import { above, below, type Interval, minus, plus, point } from "../quantity/interval.js";
+import { enclosedQuantity, estimatedQuantity, type Quantity } from "../quantity/quantity.js";
+import type { Computed } from "./computed.js";
+import type { CorrelationSums } from "./correlations.js";
+
+export const LAST_SHOWN = 5;
+
+export interface LimitVariance {
+  readonly variance: Quantity;
+  /** Whether it was summed term by term. */
+  readonly terms: boolean;
+  readonly notes: readonly string[];
+}
+
+/** An interval around the sum of weight(n) <f, P^n f> for n from 0 to `last`. */
+export function summed({ values, errors }: CorrelationSums, last: number, weight: (n: number) => number): Interval {
+  let sum = point(0);
+  for (let n = last; n >= 0; n--) {
+    const [w, value, error] = [weight(n), values[n]!, errors[n]!];
+    sum = plus(sum, { low: below(below(w * value) - w * error), high: above(above(w * value) + above(w * error)) });
+  }
+  return sum;
+}
+
+const GREEN =
+  "Green's function of the dual walk: first passages of reduced words in the modular group, bounded on both sides, summed over cosets";
+
+export function limitVariance({ sums, modular, head }: Computed): LimitVariance {
+  if (modular?.variance !== undefined) {
+    const { low, high } = modular.variance;
+    return { variance: enclosedQuantity(low, high, GREEN), terms: false, notes: [] };
+  }
+  if (modular?.dominating !== undefined && head !== undefined) {
+    const last = Math.min(sums.values.length, head.values.length) - 1;
+    const first = summed(sums, last, (n) => (n === 0 ? 1 : 2));
+    const tail = Math.max(
+      0,
+      minus(
+        modular.dominating,
+        summed(head, last, () => 2),
+      ).high,
+    );
+    const low = Math.max(0, below(first.low - tail));
+    const high = above(first.high + tail);
+    const method = `<f, f> + 2 sum of <f, P^n f> for n = 1 to ${last}; the terms beyond add at most ${tail.toExponential(2)}: the sum without phases, by Green's function of the dual walk, less its first terms`;
+    const middle = Math.min(high, Math.max(low, (first.low + first.high) / 2));
+    return { variance: { ...enclosedQuantity(low, high, method), value: middle }, terms: true, notes: [] };
+  }
+  return partialSum(sums);
+}
+
+function partialSum({ values }: CorrelationSums): LimitVariance {
+  const last = values.length - 1;
+  let sum = 0;
+  for (let n = last; n >= 1; n--) sum += values[n]!;
+  const value = Math.max(0, values[0]! + 2 * sum);
+  const left = values.slice(-LAST_SHOWN);
+  const share = (2 * left.reduce((s, x) => s + Math.abs(x), 0)) / values[0]!;
+  const notes =
+    share > 0.05
+      ? [
+          `The last ${left.length} correlations computed still add ${(100 * share).toFixed(0)} % of <f, f>: the partial sum may be far from the limit.`,
+        ]
+      : [];
+  const method = `<f, f> + 2 sum of <f, P^n f> for n = 1 to ${last}; the terms beyond are left out`;
+  return { variance: estimatedQuantity(value, method), terms: true, notes };
+}
