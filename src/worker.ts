@@ -6,6 +6,7 @@ import { listen } from "#worker-port";
 import "./averages/correlation-jobs.js";
 import "./averages/modular-jobs.js";
 import "./growth/jobs.js";
+import "./growth/positive/jobs.js";
 import "./start/jobs.js";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";

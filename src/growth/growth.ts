@@ -53,7 +53,7 @@ export async function growth(walk: WalkInput, options: GrowthOptions & SharedSes
 export async function growthOf(walk: Walk, wishes: GrowthWishes, session: Session): Promise<GrowthResult> {
   const real = await loadReal();
   const group = walk.dimension === 2 ? planarGroup(walk) : undefined;
-  const proof = group === undefined ? provePositive(walk, wishes, session, real) : undefined;
+  const proof = group === undefined ? await provePositive(walk, wishes, session, real) : undefined;
   if (group === undefined && proof === undefined && walk.moves.length > 1) requireMoments(wishes.pressure);
   const found =
     group === undefined ? await sampled(walk, wishes, session, real, proof) : await known(walk, group, session, real);
@@ -63,7 +63,7 @@ export async function growthOf(walk: Walk, wishes: GrowthWishes, session: Sessio
     walk: walk.title,
     ...rest,
     pressure: await pressureTable(walk, wishes.pressure, estimator, proof),
-    rate: proof?.rates() ?? (await rateTable(estimator)),
+    rate: proof?.rates ?? (await rateTable(estimator)),
   };
 }
 

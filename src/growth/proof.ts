@@ -6,9 +6,9 @@ export interface GrowthProof {
   /** Largest first, as many as the dimension; undefined where an exponent is not proved. The first one is. */
   readonly exponents: readonly (Quantity | undefined)[];
   readonly variance: Quantity | undefined;
-  /** Lambda(s). */
+  /** Lambda(s) at the s that were asked for. */
   readonly pressure: (s: number) => Quantity | undefined;
-  /** Rows of the rate function; undefined where the pressure is not known. */
-  readonly rates: () => RateRow[] | undefined;
+  /** Rows of the rate function. */
+  readonly rates: readonly RateRow[] | undefined;
   readonly warnings: readonly string[];
 }

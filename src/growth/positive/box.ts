@@ -8,7 +8,7 @@
  * begin), the others along K's own extent. Boxes around K, from tight to wide, are tried; the
  * one in whose coordinates the widest product of discs goes into itself serves polynomials best.
  */
-import type { Walk } from "../../walk/walk.js";
+import type { WeightedMoves } from "../../walk/weights.js";
 import { coneIn, coneRows, type PositiveCone } from "./cone.js";
 import { imageOfDiscs } from "./ellipse.js";
 
@@ -65,7 +65,7 @@ function reachOf(cone: PositiveCone): number {
 }
 
 /** The common cone of a walk in dimension 3 and more, or undefined where none was found. */
-export function boxCone(walk: Walk): PositiveCone | undefined {
+export function boxCone(walk: WeightedMoves): PositiveCone | undefined {
   const matrices = walk.moves.map((m) => m.matrix.map((row) => row.map(Number)));
   const transposes = matrices.map((m) => m.map((_, j) => m.map((row) => row[j])));
   const points = directions(matrices);

@@ -10,8 +10,7 @@
  * corners' images, so that the corners are enough.
  */
 import { Rational } from "../../exact/rational.js";
-import type { Walk } from "../../walk/walk.js";
-import { integerWeights } from "../../walk/weights.js";
+import { integerWeights, type WeightedMoves } from "../../walk/weights.js";
 
 export interface ConeMove {
   /** Integers; the last row is positive on the box. Over the cone's scale, the determinant is +-1. */
@@ -65,7 +64,11 @@ export function corners(coordinates: number): bigint[][] {
 }
 
 /** The cone in the coordinates whose linear forms are the rows given, or undefined where it is not invariant. */
-export function coneIn(walk: Walk, forms: readonly (readonly number[])[], reach: number): PositiveCone | undefined {
+export function coneIn(
+  walk: WeightedMoves,
+  forms: readonly (readonly number[])[],
+  reach: number,
+): PositiveCone | undefined {
   const size = Math.max(...forms.flat().map(Math.abs));
   if (!Number.isFinite(size) || size === 0) return undefined;
   const u = forms.map((row) => row.map((e) => BigInt(Math.round((e / size) * 2 ** COORDINATE_BITS))));

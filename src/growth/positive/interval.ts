@@ -16,7 +16,7 @@
  * by u -> (a u + b) / (c u + d).
  */
 import type { Real } from "../../kernel/real.js";
-import type { Walk } from "../../walk/walk.js";
+import type { WeightedMoves } from "../../walk/weights.js";
 import { coneIn, type PositiveCone } from "./cone.js";
 
 type Entries = readonly [number, number, number, number];
@@ -74,7 +74,7 @@ function invariantHull(from: readonly [number, number], maps: readonly Entries[]
 }
 
 /** Rows of a linear map of the plane that takes the interval to |u| <= 1 and R to |u| >= reach, u the rows' quotient. */
-function coordinates(walk: Walk, real: Real): { rows: Entries; reach: number } | undefined {
+function coordinates(walk: WeightedMoves, real: Real): { rows: Entries; reach: number } | undefined {
   const directions: Eigendirections[] = [];
   const maps: Entries[] = [];
   for (const { matrix, determinant } of walk.moves) {
@@ -132,7 +132,7 @@ function isScalar(matrix: readonly (readonly bigint[])[]): boolean {
 }
 
 /** The common cone of a walk in dimension 2, or undefined where none was found. */
-export function planarCone(walk: Walk, real: Real): PositiveCone | undefined {
+export function planarCone(walk: WeightedMoves, real: Real): PositiveCone | undefined {
   const found = coordinates(walk, real);
   if (found === undefined || !(found.reach > 1)) return undefined;
   const [p, q, r, s] = found.rows;

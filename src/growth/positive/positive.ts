@@ -5,7 +5,7 @@
 import type { Ball } from "../../exact/ball.js";
 import { Rational } from "../../exact/rational.js";
 import type { Real } from "../../kernel/real.js";
-import type { Walk } from "../../walk/walk.js";
+import type { WeightedMoves } from "../../walk/weights.js";
 import { boxCone } from "./box.js";
 import type { PositiveCone } from "./cone.js";
 import { PressureGrid } from "./eigen.js";
@@ -17,6 +17,8 @@ import { encloseVariance } from "./variance.js";
 
 /** Degrees of polynomials, by the number of coordinates: more cost more than other methods, or cannot be held. */
 const MAX_SIZE = [0, 480, 24];
+/** Coefficients times points times moves at most: some tenths of a second, each time a residual is taken. */
+const MAX_WORK = 3e6;
 /** Sets that need more for so many bits contract too slowly. */
 const LEAST_BITS = 30;
 /** Bits that rounding may cost: some units at a point, slopes, Lebesgue's constant. */
@@ -38,12 +40,11 @@ export function enclosureOf({ mid, rad }: Ball, p: number): Enclosure {
 }
 
 /** The walk that takes `length` moves at a time. */
-function wordsOf(walk: Walk, length: number): Walk {
+function wordsOf(walk: WeightedMoves, length: number): WeightedMoves {
   let words = walk.moves;
   for (let n = 1; n < length; n++) {
     words = words.flatMap((w) =>
       walk.moves.map((m) => ({
-        ...m,
         matrix: m.matrix.map((row) => row.map((_, k) => row.reduce((s, x, j) => s + x * w.matrix[j][k], 0n))),
         determinant: (m.determinant * w.determinant) as 1 | -1,
         probability: m.probability.mul(w.probability),
@@ -66,7 +67,7 @@ export class PositiveSet {
   ) {}
 
   /** Undefined where no common cone was found, or the moves contract it too slowly. */
-  static of(walk: Walk, real: Real): PositiveSet | undefined {
+  static of(walk: WeightedMoves, real: Real): PositiveSet | undefined {
     if (walk.dimension - 1 >= MAX_SIZE.length) return undefined;
     // Words contract more, and have an invariant box where the moves, which do not know of boxes, have none.
     for (let length = 1; length === 1 || (walk.moves.length ** length <= WORDS && length <= 4); length++) {
@@ -93,7 +94,10 @@ export class PositiveSet {
   }
 
   private get mostSize(): number {
-    return MAX_SIZE[this.cone.coordinates] ?? 0;
+    const n = this.cone.coordinates;
+    let size = MAX_SIZE[n];
+    while (size ** (2 * n) * this.cone.moves.length > MAX_WORK) size--;
+    return size;
   }
 
   /** Degree of polynomials that follow functions analytic in |u| < reach to so many bits. */

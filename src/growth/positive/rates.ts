@@ -1,7 +1,5 @@
 /** The rate function of a positive set on an even grid of round speeds. */
-import { enclosedBetween } from "../../quantity/quantity.js";
-import type { RateRow } from "../rate.js";
-import type { PositiveSet } from "./positive.js";
+import type { Enclosure, PositiveSet } from "./positive.js";
 import { encloseRate } from "./rate.js";
 
 /** By the number of coordinates: bits of each Lambda(s), and rows at least (at most two and a half times as many). */
@@ -19,48 +17,46 @@ function roundStep(x: number): number {
   return [5, 2, 1].map((m) => m * power).find((step) => step <= x) ?? power;
 }
 
-/** @param tick called between rows: for progress and to stop */
-export function positiveRates(
-  set: PositiveSet,
-  variance: number,
-  tick: (done: number, total: number) => void,
-): RateRow[] {
-  const bits = set.bitsWithin(BITS[set.cone.coordinates]);
+/** Bits of Lambda(s) behind a rate. */
+const bitsOf = (set: PositiveSet) => set.bitsWithin(BITS[set.cone.coordinates]);
+
+/** Lambda'(s) in doubles. */
+function slopeOf(set: PositiveSet): (s: number) => number {
+  const bits = bitsOf(set);
   const log = (s: number) => set.approximatePressure(s, bits) ?? Number.NaN;
-  const slope = (s: number) => (log(s + 2 ** -10) - log(s - 2 ** -10)) * 2 ** 9;
-  const most = Math.min(MOST, DEVIATIONS / Math.sqrt(Math.max(variance, 1e-12)));
-  const [slowest, fastest] = [slope(-most), slope(most)];
-  if (!(fastest > slowest)) return [];
-  const step = roundStep((fastest - slowest) / ROWS[set.cone.coordinates]);
-  const first = Math.ceil(slowest / step);
-  const last = Math.floor(fastest / step);
-  const rows: RateRow[] = [];
-  let from = { s: -most, slope: slowest };
-  for (let k = first; k <= last; k++) {
-    tick(k - first, last - first + 1);
-    const speed = Number((k * step).toPrecision(12));
-    const found = rateNear(set, bits, speed, from, slope, variance);
-    if (found === undefined) continue;
-    from = { s: found.s, slope: speed };
-    rows.push({ speed, rate: enclosedBetween(found.rate.low, found.rate.high, METHOD) });
-  }
-  return rows;
+  return (s) => (log(s + 2 ** -10) - log(s - 2 ** -10)) * 2 ** 9;
 }
 
-const METHOD = "Legendre transform of the enclosed pressure, chords of the convex function";
+/** Largest |s| of the grid: a number of the log norm's standard deviations' inverses. */
+function furthest(slope: (s: number) => number): number {
+  const variance = (slope(2 ** -6) - slope(-(2 ** -6))) * 2 ** 5;
+  return Math.min(MOST, DEVIATIONS / Math.sqrt(Math.max(variance, 1e-12)));
+}
+
+/** An even grid of round speeds between Lambda'(-S) and Lambda'(S); empty where nothing varies. */
+export function roundSpeeds(set: PositiveSet): number[] {
+  const slope = slopeOf(set);
+  const most = furthest(slope);
+  const [slowest, fastest] = [slope(-most), slope(most)];
+  if (!(fastest - slowest > 1e-9)) return [];
+  const step = roundStep((fastest - slowest) / ROWS[set.cone.coordinates]);
+  const first = Math.ceil(slowest / step);
+  const count = Math.floor(fastest / step) - first + 1;
+  return Array.from({ length: count }, (_, k) => Number(((first + k) * step).toPrecision(12)));
+}
 
 /** The s with Lambda'(s) = speed by the secant method, in doubles and then with chords of enclosures. */
-function rateNear(
-  set: PositiveSet,
-  bits: number,
-  speed: number,
-  from: { readonly s: number; readonly slope: number },
-  slope: (s: number) => number,
-  variance: number,
-) {
-  let last = from;
-  let bend = variance;
-  let s = from.s;
+export function rateAt(set: PositiveSet, speed: number): Enclosure | undefined {
+  const bits = bitsOf(set);
+  const slope = slopeOf(set);
+  const most = furthest(slope);
+  const ends = [
+    { s: -most, slope: slope(-most) },
+    { s: most, slope: slope(most) },
+  ];
+  let bend = (ends[1].slope - ends[0].slope) / (2 * most);
+  let [last] = Math.abs(ends[0].slope - speed) < Math.abs(ends[1].slope - speed) ? ends : [ends[1]];
+  let s = last.s;
   for (let sweep = 0; sweep < 40; sweep++) {
     const move = (speed - last.slope) / bend;
     if (!Number.isFinite(move)) return undefined;
@@ -76,7 +72,7 @@ function rateNear(
   const pressure = (t: number) => set.pressure(t, bits);
   for (let sweep = 0; sweep < 4; sweep++) {
     const rate = encloseRate(speed, s, step, pressure);
-    if (rate !== undefined) return { s, rate };
+    if (rate !== undefined) return rate;
     const [before, after] = [pressure(s - step), pressure(s + step)];
     if (before === undefined || after === undefined) return undefined;
     s += (speed - after.low.sub(before.low).toNumber() / (2 * step)) / bend;
