@@ -6,6 +6,7 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   draws: () => import("./draws.js"),
   exact: () => import("./exact.js"),
   growth: () => import("./growth.js"),
+  positive: () => import("./positive.js"),
   sampling: () => import("./sampling.js"),
   dual: () => import("./dual.js"),
   orbits: () => import("./orbits.js"),

@@ -127,10 +127,18 @@ export function ratePlot(growth: GrowthResult): Html | undefined {
   const typical = quantityNumber(lambda);
   const x = padded([...rows.map((r) => r.at), typical]);
   const y: [number, number] = [0, padded(rows.flatMap((r) => [0, r.value, r.high]))[1]];
+  // What a normal law of the log norm's variance would give, as far as the frame goes.
+  const variance = quantityNumber(growth.logNormVariance);
+  const reach = Math.sqrt(2 * variance * y[1]);
+  const [from, to] = [Math.max(x[0], typical - reach), Math.min(x[1], typical + reach)];
+  const normal = Array.from({ length: variance > 0 ? 41 : 0 }, (_, k) => {
+    const at = from + ((to - from) * k) / 40;
+    return { at, value: (at - typical) ** 2 / (2 * variance) };
+  });
   return smallFigure({
     id: "plot-rate",
     label: "Rate of large deviations against speed, zero at lambda 1.",
-    caption: html`<b>Large deviations.</b> The chance that (1/<i>n</i>) log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>| is near a speed other than λ<sub>1</sub> (dashed) falls like exp(−<i>n</i> × rate).`,
+    caption: html`<b>Large deviations.</b> The chance that (1/<i>n</i>) log |<i>A<sub>n</sub></i>…<i>A</i><sub>1</sub>| is near a speed other than λ<sub>1</sub> (dashed) falls like exp(−<i>n</i> × rate).${normal.length > 0 && html` Dotted: the rate of a normal law with the log norm's variance, right near λ<sub>1</sub> only.`}`,
     draw: (size) => ({
       ...MARGINS,
       height: size.narrow ? 220 : 260,
@@ -148,6 +156,7 @@ export function ratePlot(growth: GrowthResult): Html | undefined {
           dy: 6,
           fill: "var(--c2)",
         }),
+        Plot.line(normal, { x: "at", y: "value", stroke: "var(--c3)", strokeDasharray: "2 3" }),
         Plot.line(rows, { x: "at", y: "value", stroke: "var(--c1)", curve: "monotone-x" }),
         Plot.dot(rows, { x: "at", y: "value", fill: "var(--c1)", r: 3 }),
       ],

@@ -175,13 +175,18 @@ export class PressureGrid {
     const first = Array.from(start.coefficients, (c, k) =>
       k === 0 ? one : BigInt(Math.round(c * 2 ** 60)) << BigInt(p - 60),
     );
-    const found = refine(matrix, first, (x) => {
-      const h: Polynomial = { size: this.size, coefficients: [one, ...x.slice(1)], slope: 0n, bend: 0n };
-      return this.points.map((sample, j) => {
-        const image = this.image(h, sample, factors[j]).mid;
-        return image - ((x[0] * this.at(h, sample)) >> BigInt(p));
-      });
-    });
+    const found = refine(
+      matrix,
+      first,
+      (x) => {
+        const h: Polynomial = { size: this.size, coefficients: [one, ...x.slice(1)], slope: 0n, bend: 0n };
+        return this.points.map((sample, j) => {
+          const image = this.image(h, sample, factors[j]).mid;
+          return image - ((x[0] * this.at(h, sample)) >> BigInt(p));
+        });
+      },
+      p,
+    );
     return this.certify(
       polynomial(truncated([one, ...found.slice(1)], this.size), this.size),
       { mid: found[0], rad: 0n },

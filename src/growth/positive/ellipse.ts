@@ -17,6 +17,8 @@ import { degreeOf, type Polynomial } from "./chebyshev.js";
 import { coneRows, type PositiveCone } from "./cone.js";
 
 const ARCS = 96;
+/** Natural logarithm of the widest ellipse's parameter: each further point gains 8 bits. */
+const WIDEST = 6.5;
 const SLACK = 1 + 1e-9;
 
 export interface MoveBound {
@@ -99,7 +101,8 @@ function around(cone: PositiveCone, r: number, real: Real): Ellipse | undefined 
 /** A wide ellipse on which everything is bounded, or undefined where even a narrow one meets a pole. */
 export function wideEllipse(cone: PositiveCone, real: Real): Ellipse | undefined {
   // The disc |u| < reach is mapped into itself: its ellipse, less a part of its logarithm.
-  const log = real.log(parameter(2 * cone.reach));
+  // No wider than serves: roundings of high coefficients are large far away.
+  const log = Math.min(real.log(parameter(2 * cone.reach)), WIDEST);
   for (const part of [0.85, 0.7, 0.5, 0.3]) {
     const found = around(cone, real.exp(part * log), real);
     if (found !== undefined) return found;

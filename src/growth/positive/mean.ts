@@ -13,6 +13,7 @@ import {
   polynomial,
   truncated,
   units,
+  valueAt,
   valueOnBalls,
 } from "./chebyshev.js";
 import type { PositiveCone } from "./cone.js";
@@ -102,10 +103,28 @@ export class StationaryMeans {
   solve(f: Observed): Polynomial {
     const { size } = this;
     const values = this.points.map((s) => f.value(s).mid);
-    const found = refine(this.matrix, new Array<bigint>(this.points.length).fill(0n), (x) => {
-      const h: Polynomial = { size, coefficients: [0n, ...x.slice(1)], slope: 0n, bend: 0n };
-      return this.points.map((s, j) => values[j] + this.gain(h, s).mid - x[0]);
-    });
+    const start = new Array<bigint>(this.points.length).fill(0n);
+    const found = refine(
+      this.matrix,
+      start,
+      (x, q) => {
+        const cut = BigInt(this.p - q);
+        const h = [0n, ...x.slice(1).map((c) => c >> cut)];
+        const at = (u: readonly Ball[]) =>
+          valueAt(
+            h,
+            size,
+            u.map((y) => y.mid >> cut),
+            q,
+          );
+        return this.points.map(({ at: here, images }, j) => {
+          let there = 0n;
+          for (const [i, u] of images.entries()) there += this.cone.moves[i].weight * at(u);
+          return values[j] - x[0] + ((there / this.cone.total - at(here)) << cut);
+        });
+      },
+      this.p,
+    );
     return polynomial(truncated([0n, ...found.slice(1)], size), size);
   }
 

@@ -25,35 +25,45 @@ export function chebyshevRow(u: readonly number[], size: number): Float64Array {
   return row;
 }
 
+/** Bits that a residual is taken to beyond its own leading one: more than a double's, and guard. */
+const BEYOND = 96;
+
 /**
  * Unknowns, in units of 2^-p, that make all residuals small: starting from `unknowns`, the
  * correction solves `matrix` with the residuals as right-hand side, until that helps no more.
+ * @param residuals in units of 2^-p, from arithmetic with `precision` bits, at most p: as many as
+ * the residual at hand calls for
  */
 export function refine(
   matrix: readonly (readonly number[])[],
   unknowns: bigint[],
-  residuals: (unknowns: readonly bigint[]) => bigint[],
+  residuals: (unknowns: readonly bigint[], precision: number) => bigint[],
+  p: number,
 ): bigint[] {
   const lu = new LuDecomposition(new Matrix(matrix.map((row) => [...row])));
   let best = unknowns;
   let least = -1;
   let stalled = 0;
+  let precision = Math.min(p, BEYOND);
   for (;;) {
-    const r = residuals(unknowns);
+    const r = residuals(unknowns, precision);
     let bits = 0;
     for (const x of r) bits = Math.max(bits, bitLength(x));
-    if (least >= 0 && bits >= least - 3) {
-      if (bits < least) best = unknowns;
-      if (stalled++ > 0) return best;
+    if (precision === p) {
+      if (least >= 0 && bits >= least - 3) {
+        if (bits < least) best = unknowns;
+        if (stalled++ > 0) return best;
+      }
+      if (least < 0 || bits < least) [best, least] = [unknowns, bits];
+      if (bits <= 4) return best;
     }
-    if (least < 0 || bits < least) [best, least] = [unknowns, bits];
-    if (bits <= 4) return best;
     // The residuals over the largest one: doubles, whatever the precision.
     const drop = Math.max(0, bits - 60);
     const scaled = r.map((x) => Number(x >> BigInt(drop)) / 2 ** 60);
     const step = lu.solve(Matrix.columnVector(scaled)).to1DArray();
     if (!step.every(Number.isFinite)) return best;
     unknowns = unknowns.map((x, k) => x + shifted(step[k], drop + 60));
+    precision = Math.min(p, Math.max(precision + 8, p - bits + BEYOND));
   }
 }
 
