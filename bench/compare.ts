@@ -16,6 +16,39 @@ export interface Comparison {
   readonly rows: readonly { readonly label: string; readonly milliseconds: number; readonly ratio: number }[];
 }
 
+/** Rows of ways whose times were taken elsewhere, each with its answer: they must agree. */
+export function comparison(
+  name: string,
+  rows: readonly { readonly label: string; readonly milliseconds: number; readonly answer?: unknown }[],
+): Comparison {
+  const [first] = rows;
+  for (const row of rows) {
+    if (row.answer !== undefined && row.answer !== first?.answer) {
+      throw new Error(`${name}: ${row.label} gives another answer`);
+    }
+  }
+  return {
+    name,
+    rows: rows.map(({ label, milliseconds }) => ({
+      label,
+      milliseconds,
+      ratio: milliseconds / (first?.milliseconds as number),
+    })),
+  };
+}
+
+/** Median milliseconds of some runs, after one that warms up. */
+export async function medianTime(runs: number, run: () => unknown): Promise<number> {
+  await run();
+  const times: number[] = [];
+  for (let i = 0; i < runs; i++) {
+    const start = performance.now();
+    await run();
+    times.push(performance.now() - start);
+  }
+  return times.sort((a, b) => a - b)[runs >> 1] as number;
+}
+
 /**
  * @param same whether two answers agree; a disagreement throws before timing.
  * @param time milliseconds to spend on each contender at least.

@@ -11,6 +11,8 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   dual: () => import("./dual.js"),
   orbits: () => import("./orbits.js"),
   trajectory: () => import("./trajectory.js"),
+  tree: () => import("./tree.js"),
+  ensemble: () => import("./ensemble.js"),
 };
 
 const wanted = process.argv.slice(2);
