@@ -8,29 +8,38 @@
  * of consecutive moves. |M| below is the largest row sum of absolute entries.
  *
  * Batches. Consecutive moves are multiplied while |product| <= 2^30; the positions inside
- * a batch are read off a copy of the top 64 words + 32 bits, moved one move at a time, and
+ * a batch are read off a copy of the top 64 words + 64 bits (or some more), moved one move at a time, and
  * the whole vector is moved once, by the product. A move that is larger alone (at most
  * 2^62) is a batch by itself.
  *
  * Bits. Let M_i be the product of batch i, m_i the largest |prefix| of it, and
  *   L_i = max(log2 m_i, log2 |M_i| + L_(i+1)),  L_end = 0.
  * Cutting x and z to w bits before batch i moves each later position by at most
- * 2^(L_i - w). With w_i = 64 words + 2 + log2(batches + 2) + L_i the cuts of all batches
- * and of the start together move no position by more than 2^-(64 words + 2), and reading
- * inside a batch adds at most 2^30 2^-(64 words + 32), the same: every position is right
- * to 2^-(64 words + 1) before its last floor. The |M_i| are exact integers of the actual
- * draws; moves that cancel inside a batch cost nothing, and only the joints between
- * batches are bounded by submultiplicativity.
+ * 2^(L_i - w). With w_i = 64 words + GUARD + log2(batches + 2) + L_i the cuts of all batches
+ * and of the start together move no position by more than 2^-(64 words + GUARD), and reading
+ * inside a batch adds at most 2^30 2^-(64 words + 64), the same: every position is right
+ * to 2^-(64 words + GUARD - 1) before its last floor. So a word is the floor of the true
+ * one, or the next below it where the true one is within that of a whole unit: GUARD = 34
+ * makes that about one word in 2^33. The |M_i| are exact integers of the actual draws; moves
+ * that cancel inside a batch cost nothing, and only the joints between batches are bounded
+ * by submultiplicativity.
  */
 import { FULL, OK } from "../status";
 
+/** Bits that are held beside those shown, so that floors come out right: see above. */
+const GUARD: u32 = 34;
 /** Largest row sum of a batch. */
 const NARROW: f64 = 1073741824.0;
+const NARROW_INTEGER: i64 = 1073741824;
+/** Moves of row sums up to this are multiplied to a batch without a thought of overflow. */
+const MODEST: f64 = 2147483648.0;
+/** Moves of row sums up to this leave room for digits of 56 bits in a signed word of 64. */
+const SMALL: f64 = 63.0;
 /** Largest row sum that a product of 64-bit integers is let near. */
 const WIDE: f64 = <f64>((<u64>1) << 62);
 /** A batch's positions are written together: bounds the caller's buffer. */
 const LONGEST: u32 = 256;
-/** Covers the rounding of a logarithm and of a sum of at most 2^31 bits. */
+/** Covers the rounding of a bound on a logarithm and of a sum of at most 2^31 bits. */
 const MARGIN: f64 = 0.00000095367431640625;
 
 /** One run's state, at an address that the caller allocates. */
@@ -53,6 +62,10 @@ export class Window {
   hi: usize;
   /** Bits beside L_i: those shown and the guard. */
   base: f64;
+  /** The largest row sum of a move. */
+  largest: f64;
+  /** No move has a negative entry. */
+  positive: bool;
 }
 
 /** What is kept of a batch, followed by its product, d x inputs signed 64-bit integers. */
@@ -64,6 +77,22 @@ export class Batch {
   most: f64;
   length: u32;
   wide: u32;
+}
+
+/** Whether positions inside a batch may be read off digits of 56 bits. */
+export function smallMoves(w: Window): bool {
+  return w.largest <= SMALL;
+}
+
+/**
+ * log2 x from above, by at most 0.018, for x >= 1: with x = 2^e m, 1 <= m < 2, the quadratic through
+ * log2 at 1, 3/2 and 2 is never more than 0.0088 below log2 m.
+ */
+export function logAbove(x: f64): f64 {
+  const bits = reinterpret<i64>(x);
+  const e = <f64>((bits >> 52) - 1023);
+  const t = reinterpret<f64>((bits & 0xfffffffffffff) | 0x3ff0000000000000) - 1.0;
+  return e + t + 0.33985000288462474 * t * (1.0 - t) + 0.0089;
 }
 
 export function windowLongest(): u32 {
@@ -82,12 +111,12 @@ export function windowRecordBytes(dimension: u32, inputs: u32): u32 {
 
 /** Bytes of the work space: carries, one limb's components, a product, and the window. */
 export function windowWorkBytes(dimension: u32, inputs: u32, words: u32): u32 {
-  return 64 + (inputs << 3) + ((dimension * inputs) << 3) + (((2 * words + 1) * inputs) << 2);
+  return 64 + (inputs << 3) + ((dimension * inputs) << 3) + (((2 * words + 2) * inputs) << 2);
 }
 
 /**
  * @param moves matrices [A | E], d x inputs i64 each
- * @param norms |[A | E]| of each, f64, rounded up, at most 2^62
+ * @param norms |[A | E]| of each of `count` moves, f64, rounded up, at most 2^62
  */
 export function windowOpen(
   window: usize,
@@ -96,6 +125,7 @@ export function windowOpen(
   words: u32,
   moves: usize,
   norms: usize,
+  count: u32,
   work: usize,
 ): void {
   const w = changetype<Window>(window);
@@ -105,6 +135,13 @@ export function windowOpen(
   w.moves = moves;
   w.norms = norms;
   w.work = work;
+  let largest: f64 = 0;
+  for (let i: u32 = 0; i < count; i++) largest = max(largest, load<f64>(norms + ((<usize>i) << 3)));
+  w.largest = largest;
+  let least: i64 = 0;
+  const entries = count * dimension * inputs;
+  for (let i: u32 = 0; i < entries; i++) least = min(least, load<i64>(moves + ((<usize>i) << 3)));
+  w.positive = least == 0;
 }
 
 /** to := A of `move` times from, plus its E; returns |to|. */
@@ -148,19 +185,20 @@ function extend(w: Window, batch: Batch, k: u32, end: u32): u32 {
   return k;
 }
 
-/** `extend` in registers, for dimension 2 without translations. */
+/** `extend` in registers, for dimension 2 without translations and moves of row sums up to MODEST. */
 function extend2(w: Window, batch: Batch, k: u32, end: u32): u32 {
   const product = changetype<usize>(batch) + offsetof<Batch>();
   let p = load<i64>(product);
   let q = load<i64>(product, 8);
   let r = load<i64>(product, 16);
   let s = load<i64>(product, 24);
-  let norm = batch.need;
+  let norm = <i64>batch.need;
   let most = norm;
-  while (k < end) {
-    const c = <usize>load<u16>(w.choices + ((<usize>k) << 1));
-    if (norm * load<f64>(w.norms + (c << 3)) > WIDE) break;
-    const m = w.moves + (c << 5);
+  const moves = w.moves;
+  let choice = w.choices + ((<usize>k) << 1);
+  const last = w.choices + ((<usize>end) << 1);
+  for (; choice < last; choice += 2) {
+    const m = moves + ((<usize>load<u16>(choice)) << 5);
     const ma = load<i64>(m);
     const mb = load<i64>(m, 8);
     const mc = load<i64>(m, 16);
@@ -169,25 +207,71 @@ function extend2(w: Window, batch: Batch, k: u32, end: u32): u32 {
     const nq = ma * q + mb * s;
     const nr = mc * p + md * r;
     const ns = mc * q + md * s;
-    const top = (np < 0 ? -np : np) + (nq < 0 ? -nq : nq);
-    const low = (nr < 0 ? -nr : nr) + (ns < 0 ? -ns : ns);
-    const longer = <f64>max(top, low);
-    if (longer > NARROW) break;
+    const top = abs(np) + abs(nq);
+    const low = abs(nr) + abs(ns);
+    const longer = max(top, low);
+    if (longer > NARROW_INTEGER) break;
     p = np;
     q = nq;
     r = nr;
     s = ns;
     norm = longer;
-    if (norm > most) most = norm;
-    k++;
+    most = max(longer, most);
   }
   store<i64>(product, p);
   store<i64>(product, q, 8);
   store<i64>(product, r, 16);
   store<i64>(product, s, 24);
+  batch.need = <f64>norm;
+  batch.most = <f64>most;
+  return <u32>((choice - w.choices) >> 1);
+}
+
+/**
+ * `extend2` for moves without negative entries. Row sums are then only looked at where the
+ * bound |A| |M| has passed 2^30; and no prefix has a larger one than the whole, since each
+ * row of M goes into some row of A M.
+ */
+function extendPositive2(w: Window, batch: Batch, k: u32, end: u32): u32 {
+  const product = changetype<usize>(batch) + offsetof<Batch>();
+  let p = load<i64>(product);
+  let q = load<i64>(product, 8);
+  let r = load<i64>(product, 16);
+  let s = load<i64>(product, 24);
+  let bound = batch.need;
+  const moves = w.moves;
+  const norms = w.norms;
+  let choice = w.choices + ((<usize>k) << 1);
+  const last = w.choices + ((<usize>end) << 1);
+  for (; choice < last; choice += 2) {
+    const c = <usize>load<u16>(choice);
+    const m = moves + (c << 5);
+    const ma = load<i64>(m);
+    const mb = load<i64>(m, 8);
+    const mc = load<i64>(m, 16);
+    const md = load<i64>(m, 24);
+    const np = ma * p + mb * r;
+    const nq = ma * q + mb * s;
+    const nr = mc * p + md * r;
+    const ns = mc * q + md * s;
+    bound *= load<f64>(norms + (c << 3));
+    if (bound > NARROW) {
+      bound = <f64>max(np + nq, nr + ns);
+      if (bound > NARROW) break;
+    }
+    p = np;
+    q = nq;
+    r = nr;
+    s = ns;
+  }
+  store<i64>(product, p);
+  store<i64>(product, q, 8);
+  store<i64>(product, r, 16);
+  store<i64>(product, s, 24);
+  const norm = <f64>max(p + q, r + s);
   batch.need = norm;
-  batch.most = most;
-  return k;
+  batch.most = norm;
+  return <u32>((choice - w.choices) >> 1);
 }
 
 /**
@@ -201,7 +285,7 @@ export function windowPlan(window: usize, choices: usize, steps: u32, records: u
   w.choices = choices;
   const size = (<usize>(w.dimension * w.inputs)) << 3;
   const bytes = <usize>windowRecordBytes(w.dimension, w.inputs);
-  const plain2 = w.inputs == 2;
+  const plain2 = w.inputs == 2 && w.largest <= MODEST;
   let count: u32 = 0;
   let record = records;
   for (let k: u32 = 0; k < steps; ) {
@@ -217,7 +301,9 @@ export function windowPlan(window: usize, choices: usize, steps: u32, records: u
     const first = k++;
     if (!wide) {
       const end = min(steps, first + LONGEST);
-      k = plain2 ? extend2(w, batch, k, end) : extend(w, batch, k, end);
+      if (!plain2) k = extend(w, batch, k, end);
+      else if (w.positive) k = extendPositive2(w, batch, k, end);
+      else k = extend2(w, batch, k, end);
     }
     batch.length = k - first;
     count++;
@@ -227,7 +313,7 @@ export function windowPlan(window: usize, choices: usize, steps: u32, records: u
   for (let i = count; i > 0; i--) {
     record -= bytes;
     const batch = changetype<Batch>(record);
-    need = max(NativeMath.log2(batch.most), NativeMath.log2(batch.need) + need) + MARGIN;
+    need = max(logAbove(batch.most), logAbove(batch.need) + need) + MARGIN;
     batch.need = need;
   }
   windowReplay(window, choices, records, count);
@@ -240,7 +326,7 @@ export function windowReplay(window: usize, choices: usize, records: usize, coun
   w.choices = choices;
   w.records = records;
   w.batches = count;
-  w.base = <f64>(64 * w.words + 2) + NativeMath.log2(<f64>count + 2.0) + MARGIN;
+  w.base = <f64>(64 * w.words + GUARD) + logAbove(<f64>count + 2.0) + MARGIN;
   w.record = records;
   w.next = 0;
   w.step = 0;

@@ -3,7 +3,7 @@
  * proof that every position is right.
  */
 import { applyNarrow, applyNarrow2, applyWide } from "../fixed/limbs";
-import { Batch, limbsFor, Window, windowRecordBytes } from "./batches";
+import { Batch, limbsFor, smallMoves, Window, windowRecordBytes } from "./batches";
 
 /** Hands over the vector: `limbs` interleaved limbs at `lo`, the top limb last. */
 export function windowStart(window: usize, lo: usize, limbs: u32): void {
@@ -37,7 +37,7 @@ export function windowEmit(window: usize, out: usize): void {
 /** Positions inside a batch, from a copy of the top of the vector. */
 function inside(w: Window, length: u32, out: usize): void {
   const size = (<usize>(w.dimension * w.inputs)) << 3;
-  const bytes = (<usize>(2 * w.words + 1) * w.inputs) << 2;
+  const bytes = (<usize>(2 * w.words + 2) * w.inputs) << 2;
   const copy = w.work + 64 + ((<usize>w.inputs) << 3);
   const top = copy + bytes;
   const row = (<usize>w.dimension * w.words) << 3;
@@ -52,25 +52,40 @@ function inside(w: Window, length: u32, out: usize): void {
   }
 }
 
-/** `inside` in registers, for dimension 2, no translations, one word. */
+/** The low 56 bits. */
+const MASK56: i64 = 0xffffffffffffff;
+
+/**
+ * `inside` in registers, for dimension 2, no translations, one word: the top 128 bits as a
+ * digit of 16 bits (a multiple of 2^40) and two of 56, so that small moves leave the carries
+ * room in a signed word.
+ */
 function inside2(w: Window, length: u32, out: usize): void {
-  const low = load<u64>(w.hi - 24);
-  const mid = load<u64>(w.hi - 16);
-  const top = load<u64>(w.hi - 8);
-  let x0 = <i64>(low & 0xffffffff);
-  let x1 = <i64>(mid & 0xffffffff);
-  let x2 = <i64>(top & 0xffffffff);
-  let y0 = <i64>(low >> 32);
-  let y1 = <i64>(mid >> 32);
-  let y2 = <i64>(top >> 32);
+  const hi = w.hi;
+  const lowest = load<u64>(hi - 32);
+  const low = load<u64>(hi - 24);
+  const mid = load<u64>(hi - 16);
+  const top = load<u64>(hi - 8);
+  // Limbs of x lie in the low halves, limbs of y in the high ones.
+  const xh = ((top & 0xffffffff) << 32) | (mid & 0xffffffff);
+  const xl = ((low & 0xffffffff) << 32) | (lowest & 0xffffffff);
+  const yh = (top & 0xffffffff00000000) | (mid >> 32);
+  const yl = (low & 0xffffffff00000000) | (lowest >> 32);
+  let x2 = <i64>(xh >> 8);
+  let x1 = <i64>(((xh & 0xff) << 48) | (xl >> 16));
+  let x0 = <i64>((xl & 0xffff) << 40);
+  let y2 = <i64>(yh >> 8);
+  let y1 = <i64>(((yh & 0xff) << 48) | (yl >> 16));
+  let y0 = <i64>((yl & 0xffff) << 40);
+  const moves = w.moves;
   let choice = w.choices + ((<usize>w.step) << 1);
   const end = choice + ((<usize>length - 1) << 1);
   while (true) {
-    store<i64>(out, (x2 << 32) | x1);
-    store<i64>(out, (y2 << 32) | y1, 8);
+    store<i64>(out, (x2 << 8) | (x1 >> 48));
+    store<i64>(out, (y2 << 8) | (y1 >> 48), 8);
     if (choice == end) break;
     out += 16;
-    const m = w.moves + ((<usize>load<u16>(choice)) << 5);
+    const m = moves + ((<usize>load<u16>(choice)) << 5);
     choice += 2;
     const a = load<i64>(m);
     const b = load<i64>(m, 8);
@@ -78,16 +93,16 @@ function inside2(w: Window, length: u32, out: usize): void {
     const d = load<i64>(m, 24);
     let u = a * x0 + b * y0;
     let v = c * x0 + d * y0;
-    x0 = u & 0xffffffff;
-    y0 = v & 0xffffffff;
-    u = a * x1 + b * y1 + (u >> 32);
-    v = c * x1 + d * y1 + (v >> 32);
-    x1 = u & 0xffffffff;
-    y1 = v & 0xffffffff;
-    u = a * x2 + b * y2 + (u >> 32);
-    v = c * x2 + d * y2 + (v >> 32);
-    x2 = u & 0xffffffff;
-    y2 = v & 0xffffffff;
+    x0 = u & MASK56;
+    y0 = v & MASK56;
+    u = a * x1 + b * y1 + (u >> 56);
+    v = c * x1 + d * y1 + (v >> 56);
+    x1 = u & MASK56;
+    y1 = v & MASK56;
+    u = a * x2 + b * y2 + (u >> 56);
+    v = c * x2 + d * y2 + (v >> 56);
+    x2 = u & MASK56;
+    y2 = v & MASK56;
   }
 }
 
@@ -102,6 +117,7 @@ export function windowAdvance(window: usize, most: u32, out: usize): u32 {
   const row = (<usize>w.dimension * w.words) << 3;
   const limb = (<usize>w.inputs) << 2;
   const plain2 = w.inputs == 2;
+  const brief = plain2 && w.words == 1 && smallMoves(w);
   let done: u32 = 0;
   while (w.next < w.batches) {
     const batch = changetype<Batch>(w.record);
@@ -109,7 +125,7 @@ export function windowAdvance(window: usize, most: u32, out: usize): u32 {
     const needed = w.hi - <usize>limbsFor(w.base + batch.need) * limb;
     if (needed > w.lo) w.lo = needed;
     if (out != 0) {
-      if (plain2 && w.words == 1) inside2(w, batch.length, out);
+      if (brief) inside2(w, batch.length, out);
       else inside(w, batch.length, out);
       out += <usize>batch.length * row;
     }

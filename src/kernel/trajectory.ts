@@ -63,7 +63,7 @@ export class WindowRun {
     this.rest = raw.mark();
     kernel.i64(moves, matrices.length).set(matrices);
     kernel.f64(normsAt, norms.length).set(norms);
-    raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, work);
+    raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, norms.length, work);
   }
 
   /**

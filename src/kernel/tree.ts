@@ -140,7 +140,7 @@ export class TreeRun {
     kernel.i64(moves, matrices.length).set(matrices);
     kernel.f64(normsAt, norms.length).set(norms);
     kernel.u16(this.choicesAt, this.steps).set(choices);
-    raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, work);
+    raw.windowOpen(this.window, dimension, inputs, words, moves, normsAt, norms.length, work);
     let widest = 0;
     const leaves: { span: Span; rough: Rough }[] = [];
     let kept = 0;
