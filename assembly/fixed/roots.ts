@@ -12,8 +12,14 @@ const G2: u64 = 13;
 /** The longest plan whose products can be checked. */
 export const LONGEST: u32 = 5 << 20;
 
+/** Powers of rho that are kept: a block of digits is a sum of products with them. */
+export const BLOCK: u32 = 64;
+/** Of one prime: rho^BLOCK in Montgomery's form, its quotient by p modulo 2^32, rho^(M/2), then the powers. */
+const POWERS: usize = 16;
+const PRIME_BYTES: usize = POWERS + ((<usize>BLOCK) << 3);
+
 /** Bytes of the roots of a plan. */
-export const ROOTS_BYTES: usize = 48;
+export const ROOTS_BYTES: usize = 2 * PRIME_BYTES;
 
 function power(b: u64, e: u64, p: u64): u64 {
   let r: u64 = 1;
@@ -33,48 +39,42 @@ function inverse32(p: u32): u32 {
   return x;
 }
 
-/** a w / 2^32 modulo p, below p; w in Montgomery's form, wq = w / p modulo 2^32. */
-export function mont(a: u32, w: u32, wq: u32, p: u32): u32 {
-  const t = <i64>((<u64>a * w) >> 32) - <i64>((<u64>(a * wq) * p) >> 32);
-  return <u32>(t < 0 ? t + p : t);
-}
-
 function writePrime(at: usize, m: u32, p: u32, g: u64): void {
   const root = power(g, (<u64>p - 1) / (4 * <u64>m), p);
-  const inverse = inverse32(p);
-  const w = <u32>((root << 32) % p);
-  const v = <u32>((((root * root) % p) << 32) % p);
+  const w = <u32>((power(root, BLOCK, p) << 32) % p);
   store<u32>(at, w);
-  store<u32>(at, w * inverse, 4);
-  store<u32>(at, v, 8);
-  store<u32>(at, v * inverse, 12);
-  store<u32>(at, <u32>power(root, m >> 1, p), 16);
+  store<u32>(at, w * inverse32(p), 4);
+  store<u32>(at, <u32>power(root, m >> 1, p), 8);
+  let x: u64 = 1;
+  for (let j: u32 = 0; j < BLOCK; j++) {
+    store<f64>(at + POWERS + ((<usize>j) << 3), <f64>(x > <u64>p >> 1 ? <i64>x - <i64>p : <i64>x));
+    x = (x * root) % p;
+  }
 }
 
 /** Writes the roots for length m at `at`. */
 export function writeRoots(at: usize, m: u32): void {
   writePrime(at, m, P1, G1);
-  writePrime(at + 24, m, P2, G2);
+  writePrime(at + PRIME_BYTES, m, P2, G2);
 }
 
 /** The part of the roots that belongs to one of the primes. */
 export function ofPrime(roots: usize, second: bool): usize {
-  return second ? roots + 24 : roots;
+  return second ? roots + PRIME_BYTES : roots;
 }
 
-/** Of one prime: rho in Montgomery's form, its quotient by p modulo 2^32, the same of rho^2, and rho^(M/2) itself. */
-export function rho(at: usize): u32 {
+/** Of one prime: rho^BLOCK in Montgomery's form, and its quotient by p modulo 2^32. */
+export function blockStep(at: usize): u32 {
   return load<u32>(at);
 }
-export function rhoQuotient(at: usize): u32 {
+export function blockStepQuotient(at: usize): u32 {
   return load<u32>(at, 4);
 }
-export function rhoSquared(at: usize): u32 {
+/** rho^(M/2): from one quarter of the digits to the next. */
+export function quarterStep(at: usize): u64 {
   return load<u32>(at, 8);
 }
-export function rhoSquaredQuotient(at: usize): u32 {
-  return load<u32>(at, 12);
-}
-export function quarterStep(at: usize): u64 {
-  return load<u32>(at, 16);
+/** Address of the powers rho^0, ..., rho^(BLOCK - 1): doubles, the residues nearest to 0. */
+export function powers(at: usize): usize {
+  return at + POWERS;
 }

@@ -44,6 +44,11 @@ interface Built extends Entries {
   readonly left?: Transforms | Entries;
 }
 
+interface Shape {
+  readonly length: number;
+  readonly width: number;
+}
+
 interface Transforms {
   readonly plan: number;
   readonly length: number;
@@ -78,8 +83,8 @@ const WIDTHS = [14, 12, 10, 8];
 const ERROR_LIMIT = 0.4375;
 /** Bytes up to which transforms are kept rather than made again. */
 const COMFORT = 2 ** 28;
-/** Bits of a leaf's product: where the transform overtakes the window (bench/tree.ts measures it). */
-const LEAF_BITS = 900;
+/** Bits of a leaf's product, by the moves' row sums: where the transform overtakes the window (bench/tree.ts). */
+const LEAF_BITS = 3000;
 
 const scratch = new DataView(new ArrayBuffer(8));
 /** The least e with x < 2^e, for x > 0. */
@@ -101,6 +106,7 @@ export class TreeRun {
   private readonly out: number;
   private readonly leaves: number;
   private readonly plans = new Map<number, number>();
+  private readonly shapes = new Map<Span, Shape>();
   private readonly root: Span;
   private integers = 0;
   private firstLeaf = 0;
@@ -369,7 +375,15 @@ export class TreeRun {
   }
 
   /** Length and digit width of a span's transforms: the widest digits that the a-priori bound allows. */
-  private shape(span: Span): { readonly length: number; readonly width: number } {
+  private shape(span: Span): Shape {
+    const known = this.shapes.get(span);
+    if (known !== undefined) return known;
+    const shape = this.findShape(span);
+    this.shapes.set(span, shape);
+    return shape;
+  }
+
+  private findShape(span: Span): Shape {
     const { raw } = this.kernel;
     const bits = 64 * limbsFor(span);
     const [left] = span.halves as readonly [Span, Span];
