@@ -10,8 +10,9 @@ export { drawMoves, drawStart } from "./random/choices";
 export { philoxBlock } from "./random/philox";
 
 // Big integers
+export { limbsFromHex } from "./fixed/hex";
 export { multiply, productPlan } from "./fixed/multiply";
-export { lengthFor, makePlan, planBytes } from "./fixed/plan";
+export { lengthFor, makePlan, planBytes, planFamily } from "./fixed/plan";
 export { errorFactor } from "./fixed/transform";
 
 // Where is the walk? The window: short walks, ensembles, leaves of the tree
@@ -31,7 +32,16 @@ export { windowAdvance, windowCarry, windowEmit, windowStart } from "./trajector
 export { windowProduct } from "./trajectory/rough";
 export { scatterStart } from "./trajectory/start";
 // the tree: long walks
-export { treeAdd, treeBits, treeColumn, treeInterleave, treePack, treeRow, treeTransform } from "./trajectory/tree";
+export {
+  treeAdd,
+  treeBits,
+  treeCheck,
+  treeColumn,
+  treeInterleave,
+  treePack,
+  treeRow,
+  treeTransform,
+} from "./trajectory/tree";
 // residues: rational starts
 export { residueWalk, residueWalk2 } from "./trajectory/residue";
 

@@ -1,7 +1,7 @@
 /** Long walks: the tree against its native and BigInt peers, its growth in time and memory. */
 import { execFileSync } from "node:child_process";
 import { cumulativeWeights, drawMoves, drawStartWords } from "../src/kernel/draws.js";
-import { loadKernel } from "../src/kernel/kernel.js";
+import { type Kernel, loadKernel } from "../src/kernel/kernel.js";
 import { TreeRun } from "../src/kernel/tree.js";
 import { windowTable } from "../src/trajectory/table.js";
 import { type Comparison, comparison, medianTime } from "./compare.js";
@@ -35,21 +35,23 @@ async function task(steps: number) {
 type Task = Awaited<ReturnType<typeof task>>;
 
 /** The walk, every position to 64 bits. @returns the first `steps` positions where they are to be kept */
-async function treeWalk({ table, choices, starts }: Task, keep?: BigUint64Array): Promise<void> {
-  const kernel = await loadKernel({ memoryLimit: 2 ** 31 });
-  const run = new TreeRun(kernel, table, choices, 1);
-  for (const block of run.walk(starts)) {
-    if (block.first < choices.length) keep?.set(block.positions, 2 * block.first);
-  }
+function treeWalk(kernel: Kernel, { table, choices, starts }: Task, keep?: BigUint64Array): void {
+  kernel.scoped(() => {
+    const run = new TreeRun(kernel, table, choices, 1);
+    for (const block of run.walk(starts)) {
+      if (block.first < choices.length) keep?.set(block.positions, 2 * block.first);
+    }
+  });
 }
 
 async function againstNative(steps: number): Promise<Comparison[]> {
   const given = await task(steps);
   const out = new BigUint64Array(2 * steps);
-  await treeWalk(given, out);
+  const kernel = await loadKernel({ memoryLimit: 2 ** 31 });
+  treeWalk(kernel, given, out);
   const answer = hashWords(0n, out);
   const name = `${steps.toLocaleString("en")} moves, all positions to 64 bits`;
-  const ours = { label: "tree kernel, warm", milliseconds: await medianTime(5, () => treeWalk(given)), answer };
+  const ours = { label: "tree kernel, warm", milliseconds: await medianTime(5, () => treeWalk(kernel, given)), answer };
   const native = peer("tree.c", "gcc", ["-lgmp", "-lm"]);
   const rows = [ours];
   if (native !== undefined) {
@@ -74,8 +76,9 @@ async function againstNative(steps: number): Promise<Comparison[]> {
 async function againstPlain(steps: number): Promise<Comparison> {
   const given = await task(steps);
   const out = new BigUint64Array(2 * steps);
-  await treeWalk(given, out);
-  const milliseconds = await medianTime(5, () => treeWalk(given));
+  const kernel = await loadKernel({ memoryLimit: 2 ** 31 });
+  treeWalk(kernel, given, out);
+  const milliseconds = await medianTime(5, () => treeWalk(kernel, given));
   const start = performance.now();
   const slow = plainBigInt(given.choices, given.starts, 64 * given.limbs);
   return comparison(`${steps.toLocaleString("en")} moves, all positions to 64 bits`, [

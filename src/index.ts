@@ -5,7 +5,7 @@ export { type ConditionsOptions, conditions } from "./conditions/conditions.js";
 export type { ConditionsResult } from "./conditions/result.js";
 export { assess } from "./dossier/assess.js";
 export { AssessStopped } from "./dossier/attempt.js";
-export { renderDossier } from "./dossier/render.js";
+export { renderDossier } from "./dossier/page.js";
 export type { Answer, AssessOptions, Dossier, Skipped, Stopped } from "./dossier/result.js";
 export { isAnswered } from "./dossier/result.js";
 export type { Fault } from "./errors.js";

@@ -14,7 +14,7 @@ export const ERROR_LIMIT: f64 = 0.4375;
 
 /** A plan for products of `bits` bits in digits of `width` bits: 2 M digits hold the product and its carry. */
 export function productPlan(bits: u32, width: u32): usize {
-  return makePlan(lengthFor((bits / width + 3) >> 1));
+  return makePlan(lengthFor((bits / width + 3) >> 1), 0);
 }
 
 /** Bytes of arena that `multiply` takes beside its plan. */

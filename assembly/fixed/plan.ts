@@ -79,8 +79,18 @@ export function planBytes(m: u32): u32 {
   return <u32>SIZE + 20 * m + 64 * 34;
 }
 
-/** Makes the plan for length m (of the form of `lengthFor`); 0 where the arena is full. */
-export function makePlan(m: u32): usize {
+/** Lengths of one family split alike from the top: a shorter one's tables are the first of a longer one's. */
+export function planFamily(m: u32): u32 {
+  const half = m >> 1;
+  const twos = ctz(half);
+  return ((half >> twos) << 1) | (twos & 1);
+}
+
+/**
+ * Makes the plan for length m (of the form of `lengthFor`); 0 where the arena is full.
+ * @param like a plan of the same family, at least as long, whose tables are shared; or 0
+ */
+export function makePlan(m: u32, like: usize): usize {
   const plan = alloc(<u32>SIZE);
   if (plan == 0) return 0;
   store<u32>(plan, m);
@@ -105,6 +115,10 @@ export function makePlan(m: u32): usize {
     passes++;
   }
   store<i32>(plan, passes, 4);
+  if (like != 0) {
+    for (let p = 0; p < passes; p++) store<u32>(put + ((<usize>p) << 3), <u32>passTable(like, p), 4);
+    return plan;
+  }
   let blocks: u32 = 1;
   for (let p = 0; p < passes; p++) {
     const radix = passRadix(plan, p);

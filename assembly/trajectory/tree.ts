@@ -12,18 +12,22 @@
  */
 
 import { digitsOf, limbsOf } from "../fixed/digits";
+import { add61, multiply61, residue61, same61 } from "../fixed/mersenne";
 import { ERROR_LIMIT } from "../fixed/multiply";
 import { planLength } from "../fixed/plan";
 import { addResidueProduct, coefficientResidues, digitResidues } from "../fixed/residue";
 import { addProduct, errorFactor, forward, inverse, product, transformBytes, twoProducts } from "../fixed/transform";
 import { CHECK_FAILED, OK } from "../status";
 
+/** Residues of one column of a matrix, 8 at most. */
+const column: usize = memory.data(64);
+
 /** What is kept of a transform beside it: its residues, then the norm of its digits. */
 const NOTE: usize = 16;
 
 /**
  * Transforms of `count` integers of `limbs` limbs, `stride` bytes apart; notes get the
- * residues and norms of their digits.
+ * norms of their digits and, where `noted`, their residues.
  */
 export function treeTransform(
   plan: usize,
@@ -34,11 +38,12 @@ export function treeTransform(
   count: u32,
   limbs: u32,
   width: u32,
+  noted: bool,
 ): void {
   const bytes = transformBytes(plan);
   for (let i: u32 = 0; i < count; i++) {
     const norm = digitsOf(plan, into, from, limbs, width);
-    store<u64>(notes, digitResidues(plan, into));
+    if (noted) store<u64>(notes, digitResidues(plan, into));
     store<f64>(notes, Math.sqrt(norm), 8);
     forward(plan, into);
     into += bytes;
@@ -52,6 +57,7 @@ export function treeTransform(
  * back to limbs. row: d transforms; matrix: d x columns transforms, row-major.
  * @param work one transform
  * @param first limbs below it are not written (see limbsOf)
+ * @param checked whether residues are compared; where not, the caller checks the integers
  * @returns CHECK_FAILED where a residue disagrees or the error bound is not met
  */
 export function treeRow(
@@ -68,6 +74,7 @@ export function treeRow(
   limbs: u32,
   first: u32,
   width: u32,
+  checked: bool,
 ): i32 {
   const bytes = transformBytes(plan);
   const factor = errorFactor(planLength(plan), d);
@@ -77,7 +84,7 @@ export function treeRow(
     for (let k: u32 = 0; k < d; k++) {
       const a = rowNotes + <usize>k * NOTE;
       const b = matrixNotes + <usize>(k * columns + j) * NOTE;
-      expected = addResidueProduct(expected, load<u64>(a), load<u64>(b));
+      if (checked) expected = addResidueProduct(expected, load<u64>(a), load<u64>(b));
       size += load<f64>(a, 8) * load<f64>(b, 8);
     }
     if (!(size * factor < ERROR_LIMIT)) return CHECK_FAILED;
@@ -93,9 +100,43 @@ export function treeRow(
     }
     for (; k < d; k++) addProduct(plan, work, row + <usize>k * bytes, column + <usize>k * step);
     inverse(plan, work);
-    if (coefficientResidues(plan, work) != expected) return CHECK_FAILED;
+    if (checked && coefficientResidues(plan, work) != expected) return CHECK_FAILED;
     limbsOf(plan, out, work, limbs, first, width);
     out += outStride;
+  }
+  return OK;
+}
+
+/**
+ * Whether out = right left, as integers, modulo 2^61 - 1: matrices [A | E] of d x inputs
+ * entries (see above), the last columns of the product gaining right's own.
+ */
+export function treeCheck(
+  out: usize,
+  outLimbs: u32,
+  right: usize,
+  rightLimbs: u32,
+  left: usize,
+  leftLimbs: u32,
+  d: u32,
+  inputs: u32,
+): i32 {
+  const o = (<usize>outLimbs) << 3;
+  const r = (<usize>rightLimbs) << 3;
+  const l = (<usize>leftLimbs) << 3;
+  for (let j: u32 = 0; j < inputs; j++) {
+    for (let k: u32 = 0; k < d; k++) {
+      store<u64>(column + ((<usize>k) << 3), residue61(left + <usize>(k * inputs + j) * l, leftLimbs));
+    }
+    for (let i: u32 = 0; i < d; i++) {
+      const row = right + <usize>(i * inputs) * r;
+      let sum: u64 = j < d ? 0 : residue61(row + <usize>j * r, rightLimbs);
+      for (let k: u32 = 0; k < d; k++) {
+        const a = residue61(row + <usize>k * r, rightLimbs);
+        sum = add61(sum, multiply61(a, load<u64>(column + ((<usize>k) << 3))));
+      }
+      if (!same61(sum, residue61(out + <usize>(i * inputs + j) * o, outLimbs))) return CHECK_FAILED;
+    }
   }
   return OK;
 }

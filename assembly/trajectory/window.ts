@@ -3,7 +3,7 @@
  * proof that every position is right.
  */
 import { applyNarrow, applyNarrow2, applyWide } from "../fixed/limbs";
-import { Batch, limbsFor, smallMoves, Window, windowRecordBytes } from "./batches";
+import { Batch, limbsFor, smallMoves, Window, windowConsumes, windowRecordBytes } from "./batches";
 
 /** Hands over the vector: `limbs` interleaved limbs at `lo`, the top limb last. */
 export function windowStart(window: usize, lo: usize, limbs: u32): void {
@@ -141,15 +141,34 @@ export function windowAdvance(window: usize, most: u32, out: usize): u32 {
   return done;
 }
 
-/** Moves an integer vector (interleaved limbs, two's complement) through every batch of the plan. */
+/** Lengthens integers from `top` to `wanted` by their signs (interleaved limbs, `step` bytes a limb). */
+function lengthen(top: usize, wanted: usize, step: usize): void {
+  for (let p = top; p < wanted; p += 4) store<u32>(p, <u32>(load<i32>(p - step) >> 31));
+}
+
+/**
+ * Moves a unit vector (interleaved limbs, two's complement) through every batch of the plan.
+ * Only the limbs that it can have filled are moved: batch i adds at most L_i - L_(i+1) bits.
+ * @param lo limbs of which all but the first are 0
+ */
 export function windowCarry(window: usize, lo: usize, hi: usize): void {
   const w = changetype<Window>(window);
   const bytes = <usize>windowRecordBytes(w.dimension, w.inputs);
+  const step = (<usize>w.inputs) << 2;
+  let top = lo + step;
   let record = w.records;
   for (let i: u32 = 0; i < w.batches; i++, record += bytes) {
+    const below = i + 1 < w.batches ? changetype<Batch>(record + bytes).need : 0.0;
+    const bits = windowConsumes(window) - below;
+    const wanted = min(hi, lo + <usize>limbsFor(bits + 2.0) * step);
+    if (wanted > top) {
+      lengthen(top, wanted, step);
+      top = wanted;
+    }
     const m = record + offsetof<Batch>();
-    if (changetype<Batch>(record).wide) applyWide(m, w.dimension, w.inputs, lo, hi, w.work);
-    else if (w.inputs == 2) applyNarrow2(load<i64>(m), load<i64>(m, 8), load<i64>(m, 16), load<i64>(m, 24), lo, hi);
-    else applyNarrow(m, w.dimension, w.inputs, lo, hi, w.work);
+    if (changetype<Batch>(record).wide) applyWide(m, w.dimension, w.inputs, lo, top, w.work);
+    else if (w.inputs == 2) applyNarrow2(load<i64>(m), load<i64>(m, 8), load<i64>(m, 16), load<i64>(m, 24), lo, top);
+    else applyNarrow(m, w.dimension, w.inputs, lo, top, w.work);
   }
+  lengthen(top, hi, step);
 }

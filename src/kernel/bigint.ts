@@ -1,22 +1,18 @@
 /** BigInt to limbs and back: two's complement, 64-bit, least significant first. */
+import type { Kernel } from "./kernel.js";
 
-/** The value of a hexadecimal digit's character code. */
-function digit(code: number): number {
-  return code < 58 ? code - 48 : code - 87;
-}
-
-/** The limbs of x modulo 2^(64 limbs), written into `into`. Digits are read off the text: a BigInt a limb is dear. */
-export function writeLimbs(into: BigUint64Array, x: bigint): void {
-  const n = into.length;
-  const hex = BigInt.asUintN(64 * n, x).toString(16);
-  const halves = new Uint32Array(into.buffer, into.byteOffset, 2 * n);
-  let end = hex.length;
-  for (let i = 0; i < 2 * n; i++) {
-    let value = 0;
-    for (let at = Math.max(0, end - 8); at < end; at++) value = (value << 4) | digit(hex.charCodeAt(at));
-    halves[i] = value;
-    end -= 8;
-  }
+/**
+ * Writes the `limbs` limbs of x modulo 2^(64 limbs) at an address. The engine's text of x is
+ * read by the kernel: a BigInt a limb would be dear.
+ * @throws LimitError
+ */
+export function writeLimbs(kernel: Kernel, at: number, limbs: number, x: bigint): void {
+  const text = BigInt.asUintN(64 * limbs, x).toString(16);
+  kernel.scoped(() => {
+    const bytes = kernel.alloc(text.length, "a number's text");
+    new TextEncoder().encodeInto(text, kernel.u8(bytes, text.length));
+    kernel.raw.limbsFromHex(at, limbs, bytes, text.length);
+  });
 }
 
 /** The signed integer that the limbs are the two's complement of. */

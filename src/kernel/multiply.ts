@@ -18,8 +18,8 @@ export function multiply(kernel: Kernel, x: bigint, y: bigint, limbs: number, wi
     const r = kernel.alloc(16 * limbs, "a product");
     const plan = kernel.raw.productPlan(128 * limbs, width) >>> 0;
     if (plan === 0) throw new LimitError(`a transform for ${128 * limbs} bits does not fit the memory limit`);
-    writeLimbs(kernel.u64(a, limbs), x);
-    writeLimbs(kernel.u64(b, limbs), y);
+    writeLimbs(kernel, a, limbs, x);
+    writeLimbs(kernel, b, limbs, y);
     const status = kernel.raw.multiply(r, a, limbs, b, limbs, plan, width);
     if (status === kernel.raw.statusFull()) throw new LimitError("a product does not fit the memory limit");
     if (status !== 0) throw new Error(`multiply: a product of ${limbs} limbs failed its check at width ${width}`);

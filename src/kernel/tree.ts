@@ -84,7 +84,7 @@ const ERROR_LIMIT = 0.4375;
 /** Bytes up to which transforms are kept rather than made again. */
 const COMFORT = 2 ** 28;
 /** Bits of a leaf's product, by the moves' row sums: where the transform overtakes the window (bench/tree.ts). */
-const LEAF_BITS = 3000;
+const LEAF_BITS = 6000;
 
 const scratch = new DataView(new ArrayBuffer(8));
 /** The least e with x < 2^e, for x > 0. */
@@ -104,6 +104,9 @@ export class TreeRun {
   private readonly state: number;
   private readonly stateLimbs: number;
   private readonly out: number;
+  /** The position where leaf jointLeaf - 1 ended. */
+  private readonly joint: number;
+  private jointLeaf = 0;
   private readonly leaves: number;
   private readonly plans = new Map<number, number>();
   private readonly shapes = new Map<Span, Shape>();
@@ -128,6 +131,8 @@ export class TreeRun {
     private readonly words: number,
     private readonly leafMoves: number = defaultLeaf(table),
     private readonly comfort: number = COMFORT,
+    /** Bits held beside what is proved to be needed; negative in the test of the walk's own check. */
+    spareBits: number = 0,
   ) {
     const { raw } = kernel;
     const { dimension, inputs, matrices, norms } = table;
@@ -143,6 +148,7 @@ export class TreeRun {
     const record = raw.windowRecordBytes(dimension, inputs);
     this.spare = kernel.alloc(leafMoves * record, "the plan of batches");
     this.out = kernel.alloc(8 * (leafMoves + 1) * dimension * words, "a block of positions");
+    this.joint = kernel.alloc(8 * dimension * words, "a block of positions");
     kernel.i64(moves, matrices.length).set(matrices);
     kernel.f64(normsAt, norms.length).set(norms);
     kernel.u16(this.choicesAt, this.steps).set(choices);
@@ -163,7 +169,7 @@ export class TreeRun {
       widest = Math.max(widest, limbs);
       const rough = this.roughLeaf();
       const size = exponentAbove(rough.norm + rough.radius) + rough.exponent;
-      leaves.push({ span: { from: leaf, to: leaf + 1, need: 32 * limbs, size }, rough });
+      leaves.push({ span: { from: leaf, to: leaf + 1, need: 32 * limbs + spareBits, size }, rough });
       widest = Math.max(widest, Math.ceil((size + 3) / 32));
     }
     this.root = this.join(leaves, 0, this.leaves).span;
@@ -238,12 +244,13 @@ export class TreeRun {
     const { kernel, inputs, limbs } = this;
     const stride = 8 * limbs;
     const at = kernel.alloc(stride * inputs, "the start's digits");
-    this.makePlans(this.root);
+    this.makePlans();
     this.integers = kernel.alloc(this.integerBytes(), "the products of moves");
     this.planMemory();
-    for (const [j, x] of digits.entries()) writeLimbs(kernel.u64(at + j * stride, limbs), x);
+    for (const [j, x] of digits.entries()) writeLimbs(kernel, at + j * stride, limbs, x);
     const start = { top: at + stride, stride, limbs };
     this.constants = { top: start.top + this.d * stride, stride, limbs };
+    this.jointLeaf = -1;
     this.firstLeaf = Math.min(this.leaves - 1, Math.floor(from / this.leafMoves));
     yield* this.node(this.root, start, undefined);
     this.kernel.raw.windowEmit(this.window, this.out);
@@ -288,7 +295,29 @@ export class TreeRun {
     const made = raw.windowAdvance(this.window, rows, this.out);
     if (made !== rows) throw new Error(`a leaf of ${rows} moves ended after ${made}`);
     const first = leaf * this.leafMoves;
-    return { first, rows, positions: kernel.u64(this.out, rows * d * this.words) };
+    const positions = kernel.u64(this.out, rows * d * this.words);
+    if (rows > 0) this.checkJoint(leaf, positions);
+    raw.windowEmit(this.window, this.joint);
+    this.jointLeaf = leaf + 1;
+    return { first, rows, positions };
+  }
+
+  /**
+   * Where the leaf before ended and where this one begins are two computations of one
+   * position, the one by moves, the other by products from above: they must agree.
+   */
+  private checkJoint(leaf: number, positions: BigUint64Array): void {
+    if (this.jointLeaf !== leaf) return;
+    const { d, words } = this;
+    const end = this.kernel.u64(this.joint, d * words);
+    for (let j = 0; j < d; j++) {
+      let off = 0n;
+      for (let w = j * words; w < (j + 1) * words; w++) off = (off << 64n) + (positions[w]! - end[w]!);
+      off = BigInt.asIntN(64 * words, off);
+      if (off < -1n || off > 1n) {
+        throw new Error(`the walk's two ways to position ${leaf * this.leafMoves} disagree: no result is given`);
+      }
+    }
   }
 
   /** Forms a span's product; its entries go to `to`, on the integer stack. */
@@ -300,13 +329,13 @@ export class TreeRun {
     if (keepsTransforms(span, this.keep)) {
       const transforms = this.transform(span, l);
       const r = this.build(right, to + bytes);
-      return { ...this.multiply(transforms, r, to), halves: [l, r], left: transforms };
+      return { ...this.multiply(transforms, l, r, to), halves: [l, r], left: transforms };
     }
     const { kernel } = this;
     const copy = kernel.alloc(bytes, "a product of moves");
     kernel.u8(copy, bytes).set(kernel.u8(l.entries, bytes));
     const r = this.build(right, to + bytes);
-    const product = kernel.scoped(() => this.multiply(this.transform(span, l), r, to));
+    const product = kernel.scoped(() => this.multiply(this.transform(span, l, false), l, r, to));
     return { ...product, halves: [l, r], left: { entries: copy, limbs: l.limbs, bits: l.bits } };
   }
 
@@ -397,31 +426,40 @@ export class TreeRun {
     throw new LimitError(`a product of ${bits} bits is beyond the transform's proved range`);
   }
 
-  /** Makes every plan of the walk, below all that is released. */
-  private makePlans(span: Span): void {
-    if (span.halves === undefined) return;
-    const { length } = this.shape(span);
-    if (!this.plans.has(length)) {
-      this.kernel.require(this.kernel.raw.planBytes(length) >>> 0, "the transforms' tables");
-      this.plans.set(length, this.kernel.raw.makePlan(length) >>> 0);
+  /** Makes every plan of the walk, below all that is released; the longest of a family first, for its tables. */
+  private makePlans(): void {
+    const { raw } = this.kernel;
+    const lengths = new Set<number>();
+    const collect = (span: Span): void => {
+      if (span.halves === undefined) return;
+      lengths.add(this.shape(span).length);
+      for (const half of span.halves) collect(half);
+    };
+    collect(this.root);
+    const families = new Map<number, number>();
+    for (const length of [...lengths].sort((a, b) => b - a)) {
+      this.kernel.require(raw.planBytes(length) >>> 0, "the transforms' tables");
+      const family = raw.planFamily(length);
+      const plan = raw.makePlan(length, families.get(family) ?? 0) >>> 0;
+      if (!families.has(family)) families.set(family, plan);
+      this.plans.set(length, plan);
     }
-    for (const half of span.halves) this.makePlans(half);
   }
 
-  /** The transforms of a left half's entries, kept on the arena. */
-  private transform(span: Span, left: Entries): Transforms {
+  /** The transforms of a left half's entries, kept on the arena; noted where they are to move a point. */
+  private transform(span: Span, left: Entries, noted = true): Transforms {
     const { kernel, d, inputs } = this;
     const { length, width } = this.shape(span);
     const plan = this.plans.get(length) as number;
     const count = d * inputs;
     const at = kernel.alloc(16 * length * count, "the transforms of a product");
     const notes = kernel.alloc(NOTE_BYTES * count, "the transforms of a product");
-    kernel.raw.treeTransform(plan, at, notes, left.entries, 8 * left.limbs, count, left.limbs, width);
+    kernel.raw.treeTransform(plan, at, notes, left.entries, 8 * left.limbs, count, left.limbs, width, noted);
     return { plan, length, width, at, notes, bits: left.bits };
   }
 
   /** The product (right half) (left half), packed to `to`. */
-  private multiply(transforms: Transforms, right: Built, to: number): Entries {
+  private multiply(transforms: Transforms, left: Built, right: Built, to: number): Entries {
     const { kernel, d, inputs } = this;
     const { raw } = kernel;
     const { plan, length, width, at, notes } = transforms;
@@ -434,13 +472,14 @@ export class TreeRun {
       const out = kernel.alloc(entry * d * inputs, "a product of moves");
       for (let i = 0; i < d; i++) {
         const from = right.entries + 8 * right.limbs * inputs * i;
-        raw.treeTransform(plan, row, rowNotes, from, 8 * right.limbs, d, right.limbs, width);
+        raw.treeTransform(plan, row, rowNotes, from, 8 * right.limbs, d, right.limbs, width, false);
         const into = out + entry * inputs * i;
-        this.check(raw.treeRow(plan, row, rowNotes, at, notes, d, inputs, work, into, entry, limbs, 0, width));
+        this.check(raw.treeRow(plan, row, rowNotes, at, notes, d, inputs, work, into, entry, limbs, 0, width, false));
         for (let c = d; c < inputs; c++) {
           raw.treeAdd(into + entry * c, limbs, from + 8 * right.limbs * c, right.limbs);
         }
       }
+      this.check(raw.treeCheck(out, limbs, right.entries, right.limbs, left.entries, left.limbs, d, inputs));
       const bits = raw.treeBits(out, d * inputs, limbs);
       const fewer = Math.ceil(bits / 64);
       raw.treePack(to, fewer, out, limbs, d * inputs);
@@ -464,16 +503,31 @@ export class TreeRun {
       const columnNotes = kernel.alloc(NOTE_BYTES * inputs, "a point's transforms");
       const work = kernel.alloc(16 * length, "a point's transforms");
       const bottom = (p: Point) => p.top - 8 * limbs;
-      raw.treeTransform(plan, column, columnNotes, bottom(point), point.stride, d, limbs, width);
+      raw.treeTransform(plan, column, columnNotes, bottom(point), point.stride, d, limbs, width, true);
       const more = column + 16 * length * d;
       const moreNotes = columnNotes + NOTE_BYTES * d;
-      raw.treeTransform(plan, more, moreNotes, bottom(constants), constants.stride, inputs - d, limbs, width);
+      raw.treeTransform(plan, more, moreNotes, bottom(constants), constants.stride, inputs - d, limbs, width, true);
       for (let i = 0; i < d; i++) {
         const row = at + 16 * length * inputs * i;
         const rowNotes = notes + NOTE_BYTES * inputs * i;
         const into = to + stride * i;
         this.check(
-          raw.treeRow(plan, row, rowNotes, column, columnNotes, inputs, 1, work, into, stride, limbs, lost, width),
+          raw.treeRow(
+            plan,
+            row,
+            rowNotes,
+            column,
+            columnNotes,
+            inputs,
+            1,
+            work,
+            into,
+            stride,
+            limbs,
+            lost,
+            width,
+            true,
+          ),
         );
       }
     });
@@ -482,7 +536,7 @@ export class TreeRun {
 
   private check(status: number): void {
     if (status !== 0) {
-      throw new Error("a big product failed its check modulo two primes: its result was not used");
+      throw new Error("a big product failed its check modulo a prime: its result was not used");
     }
   }
 }
@@ -532,5 +586,5 @@ function multiplyRough(right: Rough, left: Rough, d: number, inputs: number): Ro
 /** Moves of a leaf, from the largest move: products of some LEAF_BITS bits. */
 function defaultLeaf(table: WindowTable): number {
   const largest = table.norms.reduce((a, b) => Math.max(a, b), 2);
-  return Math.max(16, Math.min(1024, Math.round(LEAF_BITS / exponentAbove(largest))));
+  return Math.max(16, Math.min(2048, Math.round(LEAF_BITS / exponentAbove(largest))));
 }

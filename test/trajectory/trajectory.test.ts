@@ -125,8 +125,8 @@ describe("trajectory", () => {
     const small = trajectory(tray, { steps: 5_000_000, memoryLimit: 2 ** 22 });
     await expect(small).rejects.toThrow(LimitError);
     const controller = new AbortController();
-    setTimeout(() => controller.abort(), 120);
-    const stopped = trajectory(tray, { steps: 400_000, signal: controller.signal });
+    setTimeout(() => controller.abort(), 20);
+    const stopped = trajectory(tray, { steps: 3_000_000, signal: controller.signal });
     await expect(stopped).rejects.toThrow(StoppedError);
   });
 });

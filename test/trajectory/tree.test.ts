@@ -116,6 +116,16 @@ describe.each(["simd", "plain"] as KernelTarget[])("TreeRun (%s)", (target) => {
     await agree(randomCase(2, 0, 2, source(77)), 700, target, 20, 7, 1, 0);
     await agree(randomCase(3, 2, 2, source(78)), 700, target, 20, 8, 1, 100_000);
   });
+  it("notices that it holds too few bits", async () => {
+    for (const spare of [-128, -192, -512]) {
+      const next = source(10);
+      const kernel = await loadKernel({ target });
+      const choices = Uint16Array.from({ length: 2000 }, () => next() % 3);
+      const run = new TreeRun(kernel, tableOf(randomCase(2, 0, 2, next)), choices, 1, 100, undefined, spare);
+      const start = [0, 1].map(() => BigInt.asUintN(64 * run.limbs, 0x9e3779b97f4a7c15n ** 99n));
+      expect(() => Array.from(run.walk(start))).toThrow(/two ways to position \d+ disagree|failed its check/);
+    }
+  });
   it("takes its memory at once, as planned", async () => {
     for (const comfort of [0, 2 ** 18, 2 ** 30]) {
       const next = source(9);

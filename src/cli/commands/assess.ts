@@ -1,7 +1,7 @@
 import { join } from "node:path";
 import { assess } from "../../dossier/assess.js";
 import { AssessStopped } from "../../dossier/attempt.js";
-import { renderDossier } from "../../dossier/render.js";
+import { renderDossier } from "../../dossier/page.js";
 import type { Dossier } from "../../dossier/result.js";
 import type { Question } from "../command.js";
 import { prepareDirectory, writeFiles } from "../files.js";
@@ -51,7 +51,7 @@ export const assessQuestion: Question<{ out?: string }> = {
   ask: async ({ walk, values, common }) => {
     const { out = DIRECTORY } = values;
     const { dossier, stopped } = await finished(() => assess(walk, common));
-    await writeFiles(out, { "dossier.html": renderDossier(dossier), "dossier.json": jsonText(dossier) });
+    await writeFiles(out, { "dossier.html": await renderDossier(dossier), "dossier.json": jsonText(dossier) });
     const where = `Written: ${join(out, "dossier.html")} (to read), ${join(out, "dossier.json")} (all numbers).`;
     return {
       result: dossier,
