@@ -5,6 +5,7 @@ import { isSelfAdjoint } from "../../src/dual/adjoint.js";
 import { forwardMoves } from "../../src/dual/moves.js";
 import { polynomialOf, shapeOf, tableTerms } from "../../src/dual/polynomial.js";
 import { Rational } from "../../src/exact/rational.js";
+import { quantityNumber } from "../../src/quantity/quantity.js";
 import { withSession } from "../../src/session.js";
 import { move, number, r, walkOf } from "../dual/naive.js";
 
@@ -113,13 +114,17 @@ describe("correlations of a free group's walk", () => {
     const { findings } = await withSession({ effort: "quick", workers: 0 }, (session) =>
       exactAverages({ ...walk, observables: [cosine] }, session),
     );
-    const { variance, reached, degenerate } = findings[0]!;
+    const { variance, correlations, reached, degenerate } = findings[0]!;
     const known = returnProbabilities(reached!.step).reduce((s, p) => s + p.toNumber(), 0);
     expect(reached!.step).toBeGreaterThan(22);
-    expect(variance!.standing).toBe("estimated");
-    expect(variance!.value).toBeCloseTo((2 * known - 1) / 2, 12);
-    expect(2.5 - Number(variance!.value)).toBeCloseTo(3 - known, 12);
+    const partial = correlations.reduce((s, c, n) => s + (n === 0 ? 1 : 2) * quantityNumber(c), 0);
+    expect(partial).toBeCloseTo((2 * known - 1) / 2, 12);
+    expect(2.5 - partial).toBeCloseTo(3 - known, 12);
     expect(3 - known).toBeLessThan(0.05);
+    expect(variance!.standing).toBe("enclosed");
+    expect(Number(variance!.low)).toBeLessThanOrEqual(2.5);
+    expect(Number(variance!.high)).toBeGreaterThanOrEqual(2.5);
+    expect(Number(variance!.high) - Number(variance!.low)).toBeLessThan(1e-10);
     expect(degenerate.verdict).toBe("fails");
   });
 });
