@@ -113,7 +113,7 @@ export async function suite(): Promise<Comparison[]> {
             label: `certificate, ${Math.floor(bits * 0.301)} digits`,
             run: certificate(walk, bits),
           })),
-          { label: "enumeration, 12 digits", run: (): Bounds => wordMeans(kernel, table, 100, 2 ** -58) },
+          { label: "enumeration, 12 digits", run: (): Bounds => wordMeans(kernel, table, 100, 2 ** -56) },
         ],
         meet,
       ),

@@ -5,9 +5,13 @@
  *
  * `wordMeans`, matrices without negative entries: the stationary law of directions sits, with
  * its mass under w, on the cone spanned by the columns of the word w (the last letter acts
- * first). On that cone the growth log(|A x| / |x|), |x| the sum of coordinates, lies between
- * its values at the columns, as the quotient of two linear forms. A word is cut open (all
- * moves in turn act before it) as long as its share of the width is above a threshold.
+ * first). With |x| a positive linear form, take those columns to |x| = 1 and call q_i(x) = |A_i x|,
+ * linear there. The mean growth f = sum p_i log q_i is concave, so on the cone it is
+ *   at least its least value at the columns,
+ *   at most the greatest value there of its tangent at the columns' middle,
+ *       sum p_i (log c_i + q_i / c_i - 1),   c_i the mean of q_i over the columns.
+ * A word is cut open (all moves in turn act before it) as long as its share of the width, up to
+ * second order in q_i / c_i - 1, is above a threshold.
  *
  * `wordNorms`, any matrices: the mean of log of the smaller of the Frobenius norm and
  * sqrt(largest column sum x largest row sum) over the words of one length: both bound the
@@ -22,6 +26,7 @@ let m: usize = 0;
 let entries: usize = 0;
 let weights: usize = 0;
 let stack: usize = 0;
+let scratch: usize = 0;
 let threshold: f64 = 0;
 let deepest: u32 = 0;
 let reached: u32 = 0;
@@ -47,60 +52,94 @@ function level(depth: u32): usize {
   return stack + ((<usize>depth * d * d) << 3);
 }
 
-function unit(at: usize): void {
-  for (let i: usize = 0; i < d; i++) {
-    for (let j: usize = 0; j < d; j++) store<f64>(at + ((i * d + j) << 3), i == j ? 1.0 : 0.0);
+/** q_i at the columns of w, move after move, in `scratch`; then the c_i. */
+function quotients(w: usize): void {
+  const length = entries + ((m * d * (d + 1)) << 3);
+  for (let i: usize = 0; i < m; i++) {
+    const forms = entries + ((m * d * d + i * d) << 3);
+    let sum: f64 = 0;
+    for (let k: usize = 0; k < d; k++) {
+      let above: f64 = 0;
+      let below: f64 = 0;
+      for (let j: usize = 0; j < d; j++) {
+        const x = load<f64>(w + ((j * d + k) << 3));
+        above += load<f64>(forms + (j << 3)) * x;
+        below += load<f64>(length + (j << 3)) * x;
+      }
+      const q = above / below;
+      store<f64>(scratch + ((i * d + k) << 3), q);
+      sum += q;
+    }
+    store<f64>(scratch + ((m * d + i) << 3), sum / <f64>d);
   }
 }
 
-/** The extremes over columns of |A_i x| / |x|: the smaller in `low`, the larger in `high`. */
-function quotients(move: usize, w: usize): void {
-  const forms = entries + ((m * d * d + move * d) << 3);
-  low = Infinity;
-  high = 0;
+/** The width between the bounds, up to second order. */
+function width(): f64 {
+  let top: f64 = -Infinity;
+  let bottom: f64 = Infinity;
   for (let k: usize = 0; k < d; k++) {
-    let above: f64 = 0;
-    let below: f64 = 0;
-    for (let j: usize = 0; j < d; j++) {
-      const x = load<f64>(w + ((j * d + k) << 3));
-      above += load<f64>(forms + (j << 3)) * x;
-      below += x;
+    let tangent: f64 = 0;
+    let square: f64 = 0;
+    for (let i: usize = 0; i < m; i++) {
+      const e = load<f64>(scratch + ((i * d + k) << 3)) / load<f64>(scratch + ((m * d + i) << 3)) - 1;
+      const p = load<f64>(weights + (i << 3));
+      tangent += p * e;
+      square += p * e * e;
     }
-    const q = above / below;
-    low = min(low, q);
-    high = max(high, q);
+    top = max(top, tangent);
+    bottom = min(bottom, tangent - square / 2);
   }
+  return top - bottom;
+}
+
+/** The bounds themselves, in `low` and `high`. */
+function bounds(): void {
+  let top: f64 = -Infinity;
+  low = Infinity;
+  for (let k: usize = 0; k < d; k++) {
+    let tangent: f64 = 0;
+    let value: f64 = 0;
+    for (let i: usize = 0; i < m; i++) {
+      const q = load<f64>(scratch + ((i * d + k) << 3));
+      const p = load<f64>(weights + (i << 3));
+      const log = NativeMath.log(q);
+      most = max(most, abs(log));
+      value += p * log;
+      tangent += p * (q / load<f64>(scratch + ((m * d + i) << 3)) - 1);
+    }
+    low = min(low, value);
+    top = max(top, tangent);
+  }
+  let middle: f64 = 0;
+  for (let i: usize = 0; i < m; i++) {
+    middle += load<f64>(weights + (i << 3)) * NativeMath.log(load<f64>(scratch + ((m * d + i) << 3)));
+  }
+  high = middle + top;
 }
 
 /** Means of the bounds over the words that end in the one at this depth; left in `low` and `high`. */
 function descend(depth: u32, share: f64): void {
   const w = level(depth);
   reached = max(reached, depth);
-  let open = depth < deepest;
+  quotients(w);
+  let open = depth < deepest && !(share * width() <= threshold);
   if (open) {
     let largest: f64 = 0;
     for (let k: usize = 0; k < d * d; k++) largest = max(largest, load<f64>(w + (k << 3)));
-    let spread: f64 = 0;
-    for (let i: usize = 0; i < m; i++) {
-      quotients(i, w);
-      spread += load<f64>(weights + (i << 3)) * (high / low - 1);
-    }
-    open = largest < LARGEST && !(share * spread <= threshold);
+    open = largest < LARGEST;
+  }
+  if (!open) {
+    leaves++;
+    bounds();
+    return;
   }
   let a: f64 = 0;
   let b: f64 = 0;
   for (let i: usize = 0; i < m; i++) {
     const p = load<f64>(weights + (i << 3));
-    if (open) {
-      product(level(depth + 1), w, entries + ((i * d * d) << 3));
-      descend(depth + 1, share * p);
-    } else {
-      quotients(i, w);
-      low = NativeMath.log(low);
-      high = NativeMath.log(high);
-      most = max(most, max(abs(low), abs(high)));
-      leaves++;
-    }
+    product(level(depth + 1), w, entries + ((i * d * d) << 3));
+    descend(depth + 1, share * p);
     a += p * low;
     b += p * high;
   }
@@ -150,7 +189,6 @@ function open(at: usize, shares: usize, dimension: u32, moves: u32, work: usize,
   reached = 0;
   leaves = 0;
   most = 0;
-  unit(stack);
 }
 
 /** low, high, leaves, deepest word, largest |logarithm|. */
@@ -163,8 +201,10 @@ function report(out: usize): void {
 }
 
 /**
- * @param at matrices row after row, then for each the row of its column sums
- * @param work room for depth + 1 matrices
+ * @param at matrices A_i row after row, then for each the linear form |A_i x|, then |x|
+ * @param work room for depth + 1 matrices, the first being the word below which the mean is taken; then
+ * for moves x (dimension + 1) doubles
+ * @param share the first word's probability
  * @param out five doubles: low, high, leaves, deepest word, largest |logarithm|
  */
 export function wordMeans(
@@ -174,12 +214,14 @@ export function wordMeans(
   moves: u32,
   work: usize,
   depth: u32,
+  share: f64,
   cut: f64,
   out: usize,
 ): void {
   open(at, shares, dimension, moves, work, depth);
+  scratch = level(depth + 1);
   threshold = cut;
-  descend(0, 1);
+  descend(0, share);
   report(out);
 }
 

@@ -102,7 +102,7 @@ async function sampled(
   }
   const exponents = exponentQuantities(walk.dimension, widened, samples, session.level);
   const top = widened[0] as RateEstimate;
-  const bounds = walk.dimension === 2 || proof !== undefined ? {} : await enumeratedBounds(walk, session);
+  const bounds = proof !== undefined ? {} : await enumeratedBounds(walk, session, real);
   const enclosed = proof?.exponents[0] ?? bounds.enclosure;
   const biased = excludes(top, enclosed, bounds.upperBound?.value);
   if (biased) {
@@ -112,7 +112,7 @@ async function sampled(
   }
   const narrow = enclosed !== undefined && (biased || widthOf(enclosed) <= 2 * top.halfWidth);
   return {
-    exponents: exponents.map((q, j) => proof?.exponents[j] ?? (j === 0 && narrow ? enclosed : q)),
+    exponents: narrow ? withProved(exponents, proof?.exponents ?? [enclosed]) : exponents,
     logNormVariance:
       proof?.variance ?? estimatedQuantity(variance.value, variance.method, variance.interval, session.level),
     ...(narrow ? { sampled: exponents[0] as Quantity } : bounds),
@@ -128,6 +128,25 @@ async function sampled(
 }
 
 const widthOf = (q: Quantity) => Number(q.high) - Number(q.low);
+
+/** The exponents, proved ones in their places; in dimension 2 the second is minus the first. */
+function withProved(exponents: readonly Quantity[], proved: GrowthProof["exponents"]): Quantity[] {
+  const [first] = proved;
+  if (exponents.length === 2 && first !== undefined) return [first, proved[1] ?? opposite(first)];
+  return exponents.map((q, j) => proved[j] ?? q);
+}
+
+/** Minus an enclosed quantity. */
+function opposite(top: Quantity): Quantity {
+  const negative = (text: string) => (text === "0" ? "0" : text.startsWith("-") ? text.slice(1) : `-${text}`);
+  return {
+    value: 0 - (top.value as number),
+    standing: "enclosed",
+    low: negative(top.high as string),
+    high: negative(top.low as string),
+    method: "minus the first: determinants are +-1",
+  };
+}
 
 /** Whether proofs exclude a sampled exponent: six half-widths off are no chance. */
 function excludes(estimate: RateEstimate, enclosed: Quantity | undefined, upper: Quantity | undefined): boolean {

@@ -1,11 +1,13 @@
 import { describe, expect, it } from "vitest";
+import { enumeratedBounds } from "../../src/growth/enumerated.js";
 import { growth } from "../../src/growth/growth.js";
 import { nonNegativeMoves } from "../../src/growth/orthant.js";
 import { PositiveSet } from "../../src/growth/positive/positive.js";
-import { meansJob, normsJob, runWords } from "../../src/growth/words.js";
+import { meansJob, narrowest, normsJob, runWords } from "../../src/growth/words.js";
 import { loadKernel } from "../../src/kernel/kernel.js";
 import { loadReal } from "../../src/kernel/real.js";
 import { wordMeans, wordNorms } from "../../src/kernel/words.js";
+import { withSession } from "../../src/session.js";
 import { type Numbers, POSITIVE_PAIR, RANDOM_FIBONACCI, SIGNED, shear, walkOf } from "./walks.js";
 
 /** Positive, dimension 3. */
@@ -49,13 +51,17 @@ describe("wordMeans", () => {
     expect(high - low).toBeLessThan(1e-12);
   });
 
-  it("encloses the exponent of parabolic moves", async () => {
+  it("does not depend on the number of workers or on how it is cut into parts", async () => {
+    const walk = walkOf([shear(2, 0, 1), shear(2, 1, 0)], [2, 1]);
     const real = await loadReal();
-    // The dimension of Minkowski's question-mark measure (Alkauskas, from memory), log 2 over twice it.
-    const value = real.log(2) / (2 * 0.874716305108211);
-    const { low, high } = await runWords(meansJob(walkOf([shear(2, 0, 1), shear(2, 1, 0)]), "standard")!);
-    expect(low < value && value < high).toBe(true);
-    expect(high - low).toBeLessThan(1e-6);
+    const bounds = (workers: number) =>
+      withSession({ effort: "quick", workers }, (session) => enumeratedBounds(walk, session, real));
+    const one = await bounds(0);
+    expect(await bounds(2)).toEqual(one);
+    const look = narrowest(await runWords(meansJob(walk, "quick")!));
+    const [low, high] = [Number(one.enclosure!.low), Number(one.enclosure!.high)];
+    expect(look.low <= high && low <= look.high).toBe(true);
+    expect(high - low).toBeLessThan((look.high - look.low) / 2);
   });
 
   it("narrows in dimension 3 around the golden mean's cousin: one move, log of its spectral radius", async () => {
@@ -66,7 +72,7 @@ describe("wordMeans", () => {
       [1, 0, 1],
       [0, 1, 0],
     ];
-    const { low, high } = await runWords(meansJob(walkOf([move]), "quick")!);
+    const { low, high } = narrowest(await runWords(meansJob(walkOf([move]), "quick")!));
     const value = real.log(1.324717957244746);
     expect(low - 1e-15 < value && value < high + 1e-15).toBe(true);
     expect(high - low).toBeLessThan(1e-11);

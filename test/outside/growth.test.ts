@@ -1,5 +1,6 @@
 import { EigenvalueDecomposition, Matrix } from "ml-matrix";
 import { describe, expect, it } from "vitest";
+import { enumeratedBounds } from "../../src/growth/enumerated.js";
 import { growth } from "../../src/growth/growth.js";
 import { exponentEstimates, logNormVariance } from "../../src/growth/intervals.js";
 import { samplingPlan } from "../../src/growth/plan.js";
@@ -8,6 +9,7 @@ import { provedPressure } from "../../src/growth/symmetric.js";
 import { sampleGrowth } from "../../src/kernel/growth.js";
 import { loadKernel } from "../../src/kernel/kernel.js";
 import { loadReal } from "../../src/kernel/real.js";
+import { withSession } from "../../src/session.js";
 import type { Walk } from "../../src/walk/walk.js";
 import { type Numbers, POSITIVE_PAIR, RANDOM_FIBONACCI, shear, tableOf, walkOf } from "../growth/walks.js";
 
@@ -87,6 +89,19 @@ describe("a positive set", () => {
     }
     expect(pressure.map((p) => p.value.standing)).toEqual(["enclosed", "enclosed", "enclosed"]);
   });
+});
+
+describe("parabolic moves", () => {
+  it("have their exponent within 1e-8 at the standard effort (Alkauskas)", async () => {
+    const real = await loadReal();
+    // The dimension of Minkowski's question-mark measure (Alkauskas, from memory): log 2 over twice it.
+    const value = real.log(2) / (2 * 0.874716305108211);
+    const walk = walkOf([shear(2, 0, 1), shear(2, 1, 0)]);
+    const { enclosure } = await withSession({ workers: 0 }, (session) => enumeratedBounds(walk, session, real));
+    const [low, high] = [Number(enclosure!.low), Number(enclosure!.high)];
+    expect(low < value && value < high).toBe(true);
+    expect(high - low).toBeLessThan(1e-8);
+  }, 60_000);
 });
 
 describe("the log norm's variance", () => {

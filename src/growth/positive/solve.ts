@@ -2,7 +2,6 @@
  * Linear equations in fixed point: factorised once in doubles, refined with exact residuals.
  * What comes out is a candidate; whoever uses it proves what it is good for.
  */
-import { LuDecomposition, Matrix } from "ml-matrix";
 import { bitLength } from "../../exact/rational.js";
 
 /** m 2^-p as a double. */
@@ -40,7 +39,7 @@ export function refine(
   residuals: (unknowns: readonly bigint[], precision: number) => bigint[],
   p: number,
 ): bigint[] {
-  const lu = new LuDecomposition(new Matrix(matrix.map((row) => [...row])));
+  const solve = factorise(matrix);
   let best = unknowns;
   let least = -1;
   let stalled = 0;
@@ -60,11 +59,40 @@ export function refine(
     // The residuals over the largest one: doubles, whatever the precision.
     const drop = Math.max(0, bits - 60);
     const scaled = r.map((x) => Number(x >> BigInt(drop)) / 2 ** 60);
-    const step = lu.solve(Matrix.columnVector(scaled)).to1DArray();
+    const step = solve(scaled);
     if (!step.every(Number.isFinite)) return best;
     unknowns = unknowns.map((x, k) => x + shifted(step[k], drop + 60));
     precision = Math.min(p, Math.max(precision + 8, p - bits + BEYOND));
   }
+}
+
+/** Gaussian elimination with row pivoting, kept for many right-hand sides. */
+function factorise(matrix: readonly (readonly number[])[]): (right: readonly number[]) => Float64Array {
+  const n = matrix.length;
+  const rows = matrix.map((row) => Float64Array.from(row));
+  const order = rows.map((_, i) => i);
+  for (let k = 0; k < n; k++) {
+    let pivot = k;
+    for (let i = k + 1; i < n; i++) if (Math.abs(rows[i][k]) > Math.abs(rows[pivot][k])) pivot = i;
+    [rows[k], rows[pivot]] = [rows[pivot], rows[k]];
+    [order[k], order[pivot]] = [order[pivot], order[k]];
+    const top = rows[k];
+    for (let i = k + 1; i < n; i++) {
+      const row = rows[i];
+      const factor = row[k] / top[k];
+      row[k] = factor;
+      if (factor !== 0) for (let j = k + 1; j < n; j++) row[j] -= factor * top[j];
+    }
+  }
+  return (right) => {
+    const x = Float64Array.from(order, (i) => right[i]);
+    for (let i = 0; i < n; i++) for (let j = 0; j < i; j++) x[i] -= rows[i][j] * x[j];
+    for (let i = n - 1; i >= 0; i--) {
+      for (let j = i + 1; j < n; j++) x[i] -= rows[i][j] * x[j];
+      x[i] /= rows[i][i];
+    }
+    return x;
+  };
 }
 
 /** x 2^bits, rounded towards 0. */

