@@ -32,7 +32,7 @@ export async function averages(
   const walk = asWalk(input);
   return withSession(options, async (session) => {
     const sampling = samplingOf(options, session, walk);
-    const { findings, orbit, warnings } = await exactAverages(walk, session, undefined, options.generating);
+    const { findings, orbit, gap, warnings } = await exactAverages(walk, session, undefined, options.generating);
     const sampled = await sampleAverages(walk, session, {
       ...sampling,
       means: findings.map((f) => quantityNumber(f.mean)),
@@ -42,6 +42,7 @@ export async function averages(
       torwend: VERSION,
       walk: walk.title,
       ...(orbit === undefined ? {} : { orbit }),
+      ...(gap === undefined ? {} : { gap }),
       observables: findings.map(({ spread, variance: known, ...finding }, i) => {
         const seen = sampled[i]!;
         const variance = known ?? sampledVariance(seen);

@@ -7,13 +7,16 @@ import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 import { EXACT_BUDGET, type ExactBudget } from "./budget.js";
 import type { ExactFinding } from "./finding.js";
+import { type Gap, gapOf, gapPayload } from "./gap.js";
 import { haarFindings } from "./haar.js";
+import { gapJob } from "./modular-jobs.js";
 import { finiteOrbit } from "./orbit.js";
 import { orbitFindings } from "./orbital.js";
 
 export interface ExactAverages {
   readonly findings: readonly ExactFinding[];
   readonly orbit?: { readonly denominator: number; readonly size: number };
+  readonly gap?: Gap;
   readonly warnings: readonly string[];
 }
 
@@ -80,5 +83,17 @@ export async function exactAverages(
       "A coordinate of the start is not proved irrational: if all are rational, the limit is a finite orbit's mean.",
     );
   }
-  return { findings: await haarFindings(walk, session, budget, generating), warnings };
+  const gap = walk.dimension === 2 ? await haarGap(walk, session, budget) : undefined;
+  const findings = await haarFindings(walk, session, budget, generating);
+  return { findings, ...(gap === undefined ? {} : { gap }), warnings };
+}
+
+async function haarGap(walk: Walk, session: Session, budget: ExactBudget): Promise<Gap | undefined> {
+  const stage = "norms by certificates";
+  session.progress(stage, 0, 1);
+  const payload = gapPayload(walk, budget.normStates);
+  const [found = {}] = await session.pool.map(gapJob, [payload], { signal: session.signal });
+  session.progress(stage, 1, 1);
+  session.checkStop();
+  return gapOf(walk, found);
 }

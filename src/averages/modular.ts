@@ -6,12 +6,20 @@ import { PlanarSums, type PlanarTerm } from "../modular/variance.js";
 import { above, below, type Interval, plus, point, root, times } from "../quantity/interval.js";
 import type { Walk } from "../walk/walk.js";
 
+/** A move without what cannot go to a worker. */
+export interface ModularMove {
+  readonly matrix: readonly (readonly bigint[])[];
+  /** Its probability. */
+  readonly num: bigint;
+  readonly den: bigint;
+}
+
+export function movesOf(walk: Walk): ModularMove[] {
+  return walk.moves.map(({ matrix, probability }) => ({ matrix, num: probability.num, den: probability.den }));
+}
+
 export interface ModularPayload {
-  readonly moves: readonly {
-    readonly matrix: readonly (readonly bigint[])[];
-    readonly num: bigint;
-    readonly den: bigint;
-  }[];
+  readonly moves: readonly ModularMove[];
   /** Then `observables` are the F of `dominating`. */
   readonly translated: boolean;
   readonly states: number;
@@ -78,7 +86,7 @@ export function modularPayload(
 ): ModularPayload {
   const translated = walk.moves.some((m) => m.translation !== undefined);
   return {
-    moves: walk.moves.map(({ matrix, probability }) => ({ matrix, num: probability.num, den: probability.den })),
+    moves: movesOf(walk),
     translated,
     states,
     at,

@@ -1,4 +1,5 @@
 import type { Quantity, Verdict } from "../quantity/quantity.js";
+import type { Gap } from "./gap.js";
 
 /** What exact walks showed of one observable. */
 export interface SampledAverage {
@@ -68,6 +69,8 @@ export interface AveragesResult {
   readonly walk: string;
   /** Present for a rational start whose finite orbit was listed: all findings are about the walk on it. */
   readonly orbit?: { readonly denominator: number; readonly size: number };
+  /** In dimension 2, under Haar measure, where something below 1 was proved. */
+  readonly gap?: Gap;
   readonly observables: readonly ObservableResult[];
   readonly warnings: readonly string[];
 }

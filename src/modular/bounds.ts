@@ -20,29 +20,47 @@ export function roundingFactor(length: number, side: Side): number {
 
 /** Below, what underflow may have added is taken off; numbers stay at least 0. */
 function rounded(sum: number, factor: number, tiny: number): number {
-  const x = sum * factor + tiny;
-  return x > 0 ? x : 0;
+  return Math.max(0, sum * factor + tiny);
 }
 
-/** a b, rounded to a side; rows of `a` are often sparse, so zeros are passed over. */
+/** Where the rows of a matrix are not 0: columns, row after row, and each row's end. */
+function places(b: Dense, n: number): { readonly columns: Int32Array; readonly ends: Int32Array } {
+  const columns = new Int32Array(n * n);
+  const ends = new Int32Array(n + 1);
+  let count = 0;
+  for (let i = 0; i < n; i++) {
+    for (let j = 0; j < n; j++) if (b[i * n + j] !== 0) columns[count++] = j;
+    ends[i + 1] = count;
+  }
+  return { columns, ends };
+}
+
+/** a b, rounded to a side; both are often sparse, so zeros are passed over, and stay 0. */
 export function multiplyBound(a: Dense, b: Dense, n: number, side: Side): Dense {
   const out = new Float64Array(n * n);
   const tiny = side === "low" ? -TINY : TINY;
+  const { columns, ends } = places(b, n);
+  const touched = new Uint8Array(n);
   for (let i = 0; i < n; i++) {
     const to = i * n;
     let terms = 0;
     let only = 0;
+    touched.fill(0);
     for (let k = 0; k < n; k++) {
-      const x = a[i * n + k]!;
+      const x = a[to + k]!;
       if (x === 0) continue;
       terms++;
       only = x;
       const from = k * n;
-      for (let j = 0; j < n; j++) out[to + j]! += x * b[from + j]!;
+      for (let p = ends[k]!; p < ends[k + 1]!; p++) {
+        const j = columns[p]!;
+        touched[j] = 1;
+        out[to + j]! += x * b[from + j]!;
+      }
     }
     if (terms === 0 || (terms === 1 && only === 1)) continue;
     const f = roundingFactor(terms, side);
-    for (let j = to; j < to + n; j++) out[j] = rounded(out[j]!, f, tiny);
+    for (let j = 0; j < n; j++) if (touched[j] === 1) out[to + j] = rounded(out[to + j]!, f, tiny);
   }
   return out;
 }

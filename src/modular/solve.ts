@@ -24,7 +24,7 @@ export class LeastSolver {
   /** (I - R)^-1 1, nearly: the direction in which candidates are moved to prove them. */
   private readonly ones: Float64Array;
   /** Whether z >= 1 + R z has been proved for some z: R^n tends to 0. */
-  private readonly contracts: boolean;
+  readonly contracts: boolean;
 
   constructor(private readonly r: MatrixBounds) {
     this.lower = factorise(r.low);

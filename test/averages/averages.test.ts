@@ -33,6 +33,41 @@ describe("averages", () => {
     expect(west!.correlations).toMatchObject([{ value: "1/4", standing: "exact" }]);
   });
 
+  it("tells the norm by certificates, beside Kesten's value where the moves are free", async () => {
+    const quarter = r(1, 4);
+    const free = [
+      [
+        [1, 2],
+        [0, 1],
+      ],
+      [
+        [1, -2],
+        [0, 1],
+      ],
+      [
+        [1, 0],
+        [2, 1],
+      ],
+      [
+        [1, 0],
+        [-2, 1],
+      ],
+    ];
+    const { gap } = await averages(walkOf(free.map((m) => move(m, quarter))), { ...small, steps: 50 });
+    expect(gap!.kesten).toMatchObject({ value: "sqrt(3)/2", standing: "exact" });
+    for (const q of [gap!.norm, gap!.spectralRadius]) {
+      expect(q.standing).toBe("enclosed");
+      expect(Number(q.low)).toBeLessThan(Math.sqrt(3) / 2);
+      expect(Number(q.high)).toBeGreaterThan(Math.sqrt(3) / 2);
+      expect(Number(q.high) - Number(q.low)).toBeLessThan(1e-6);
+    }
+    const shifted = free.map((m, i) => move(m, quarter, 1, [r(i, 5), r(1, 3)]));
+    const upper = (await averages(walkOf(shifted), { ...small, steps: 50 })).gap!;
+    expect(Number(upper.norm.high)).toBeCloseTo(Math.sqrt(3) / 2, 6);
+    expect(upper.norm.low).toBe("0");
+    expect(upper.kesten).toBeUndefined();
+  });
+
   it("recognises variance 0, and then counts moves by the bounded sums", async () => {
     const moves = [
       move(

@@ -160,6 +160,8 @@ describe("Green", () => {
         half,
       ),
     ).toBeUndefined();
-    expect(passage([[0n, -1n, 1n, 0n]], [Rational.ONE])).toBeUndefined();
+    // First passages are bounded here, visits are not.
+    expect(passage([[0n, -1n, 1n, 0n]], [Rational.ONE])!.visits.contracts).toBe(false);
+    expect(new Green(passage([[0n, -1n, 1n, 0n]], [Rational.ONE])!).visits([1n, 0n], [1n, 0n])).toBeUndefined();
   });
 });

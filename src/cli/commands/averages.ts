@@ -1,4 +1,5 @@
 import { averages } from "../../averages/averages.js";
+import type { Gap } from "../../averages/gap.js";
 import type { ObservableResult } from "../../averages/result.js";
 import type { Question } from "../command.js";
 import { block, cells, number, page, paragraph, table, verdict } from "../render.js";
@@ -51,6 +52,16 @@ function observable(o: ObservableResult): string {
   ].join("\n\n");
 }
 
+function gapText({ norm, spectralRadius, gap, kesten }: Gap): string {
+  const rows = [
+    ["norm of P on functions of mean 0", ...cells(norm)],
+    ["its spectral radius", ...cells(spectralRadius)],
+    ["gap, 1 less the spectral radius", ...cells(gap)],
+    ...(kesten === undefined ? [] : [["Kesten's value of the norm", ...cells(kesten)]]),
+  ];
+  return block("How fast functions of mean 0 shrink", table(["", "value", "interval", "standing"], rows));
+}
+
 export const averagesQuestion: Question<Values> = {
   name: "averages",
   summary: "what time averages converge to, with which error bar, after how many moves",
@@ -70,6 +81,7 @@ export const averagesQuestion: Question<Values> = {
       result.orbit &&
         `The start lies on a finite orbit of ${result.orbit.size} points (denominator ${result.orbit.denominator}): all findings are about the walk on it.`,
       ...result.observables.map(observable),
+      result.gap && gapText(result.gap),
     ]);
     return { result, text, warnings: result.warnings };
   },

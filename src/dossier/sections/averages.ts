@@ -1,6 +1,7 @@
 /** Time averages: limit, variance, error bars and how many moves they take, one block an observable. */
+import type { Gap } from "../../averages/gap.js";
 import type { ObservableResult } from "../../averages/result.js";
-import { quantityNumber } from "../../quantity/quantity.js";
+import { type Quantity, quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html, joined, type Piece } from "../html.js";
 import { brief, percent, shown, significant } from "../numbers.js";
 import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.js";
@@ -127,6 +128,25 @@ ${sampledTable(o)}
 `;
 }
 
+function gapBlock({ norm, spectralRadius, gap, kesten, evidence: found }: Gap): Html {
+  const column = quantityColumn("value", [norm, spectralRadius, gap, ...(kesten === undefined ? [] : [kesten])]);
+  const row = (name: Piece, q: Quantity) => html`<th scope="row">${name}</th>${column.show(q)}`;
+  return html`<h3>How fast do functions of mean zero shrink?</h3>
+<p>A move multiplies the <i>L</i>² norm of what is left of an observable, E <i>f</i>(<i>x<sub>n</sub></i>) as a function of the start, by at most the norm; over many moves, by about the spectral radius at most.</p>
+${table(
+  html`The averaging operator <i>P</i> on functions of mean zero; ${prose(norm.method)}.`,
+  [{ name: "" }, column.column],
+  [
+    row(html`norm of <i>P</i>`, norm),
+    row("spectral radius", spectralRadius),
+    row("gap", gap),
+    kesten !== undefined && row("Kesten’s value of the norm (the moves are free)", kesten),
+  ],
+)}
+${evidence(found)}
+`;
+}
+
 export function averagesSection(dossier: Dossier): Html {
   const averages = dossier.averages;
   if (!isAnswered(averages))
@@ -138,6 +158,7 @@ ${missing(averages)}</section>
 ${averages.orbit !== undefined && html`<p>The start is rational: all findings below are about the walk on its finite orbit of ${plural(averages.orbit.size, "point")} with denominator ${averages.orbit.denominator}.</p>`}
 ${averages.warnings.map((w) => warning(w))}
 ${averages.observables.slice(0, PLOTTED).map((o, i) => block(o, i + 1, dossier.level))}
+${averages.gap !== undefined && gapBlock(averages.gap)}
 ${rest > 0 && html`<p>The other ${plural(rest, "observable")} are in the summary's table, and in full in dossier.json.</p>`}
 </section>
 `;
