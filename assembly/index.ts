@@ -43,7 +43,7 @@ export {
   treeTransform,
 } from "./trajectory/tree";
 // residues: rational starts
-export { residueWalk, residueWalk2 } from "./trajectory/residue";
+export { modulusBytes, modulusOpen, residueWalk } from "./trajectory/residue";
 
 // How fast do products grow?
 export { advanceFrames, advanceVectors, frameLogs, vectorLogs } from "./growth/norms";

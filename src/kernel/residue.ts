@@ -4,9 +4,15 @@ import type { Kernel } from "./kernel.js";
 /** Moves on points of one denominator: see src/trajectory/table.ts. */
 export interface ResidueTable {
   readonly dimension: number;
-  /** The common denominator q, with (N + 1) q < 2^62 where N is the largest row sum below. */
+  /** The common denominator q, below 2^63. */
   readonly denominator: bigint;
-  /** For each move d x (d + 1): centred residues of A modulo q, then the translation in [0, q). */
+  /** One more than the largest row sum of |A| below, at most 2^40; see assembly/trajectory/residue.ts for `narrow`. */
+  readonly rows: bigint;
+  readonly narrow: boolean;
+  /**
+   * For each move d x (d + 1): centred residues of A modulo q, then the translation in [0, q),
+   * in a narrow table plus q times the sum of the row's negative entries' sizes.
+   */
   readonly moves: BigInt64Array;
   /** The start's numerators, in [0, q). */
   readonly start: BigInt64Array;
@@ -19,7 +25,7 @@ export class ResidueRun {
   private readonly state: number;
   private readonly out: number;
   private readonly numeratorsAt: number;
-  private readonly shift: number;
+  private readonly modulus: number;
 
   /** @param rows moves of one run at most, and one. @throws LimitError */
   constructor(
@@ -27,13 +33,14 @@ export class ResidueRun {
     private readonly table: ResidueTable,
     readonly steps: number,
   ) {
-    const { dimension, moves, denominator } = table;
+    const { dimension, moves, denominator, rows, narrow } = table;
     this.movesAt = kernel.alloc(moves.byteLength, "the table of moves");
     this.choicesAt = kernel.alloc(2 * steps, "the choices of moves");
     this.state = kernel.alloc(16 * dimension, "a run's state");
     this.out = kernel.alloc(8 * (steps + 1) * dimension, "the positions");
     this.numeratorsAt = kernel.alloc(8 * (steps + 1) * dimension, "the numerators");
-    this.shift = Math.min(32, 62 - denominator.toString(2).length);
+    this.modulus = kernel.alloc(kernel.raw.modulusBytes(), "a modulus");
+    kernel.raw.modulusOpen(this.modulus, denominator, narrow ? 2n * rows : 0n);
     kernel.i64(this.movesAt, moves.length).set(moves);
     this.reset();
   }
@@ -64,20 +71,16 @@ export class ResidueRun {
    * @param positions false: numerators alone are written
    */
   run(steps = this.steps, positions = true): void {
-    const { dimension, denominator } = this.table;
-    const { raw } = this.kernel;
-    const rest = [
+    this.kernel.raw.residueWalk(
+      this.table.dimension,
       this.movesAt,
       this.choicesAt,
       steps,
-      denominator,
-      this.shift,
+      this.modulus,
       this.state,
       positions ? this.out : 0,
       this.numeratorsAt,
-    ] as const;
-    if (dimension === 2) raw.residueWalk2(...rest);
-    else raw.residueWalk(dimension, ...rest);
+    );
   }
 
   /** floor(2^64 x) of `rows` positions. */

@@ -7,6 +7,7 @@ import type { ResidueTable } from "../kernel/residue.js";
 import type { WindowTable } from "../kernel/trajectory.js";
 import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
+import { rowSumNorm } from "./consumed.js";
 
 function absolute(x: bigint): bigint {
   return x < 0n ? -x : x;
@@ -92,24 +93,36 @@ export function rationalWalk(walk: Walk): RationalWalk | undefined {
   };
 }
 
-/** The kernel's table of a rational walk; undefined where its sums would not fit a machine word. */
+function larger(a: bigint, b: bigint): bigint {
+  return a > b ? a : b;
+}
+
+/** Largest row sum, and one, of a table; of a narrow one. */
+const ROWS = 1n << 40n;
+const NARROW_ROWS = 1n << 17n;
+
+/** The kernel's table of a rational walk; undefined where numerators or entries are beyond its machine words. */
 export function residueTable(walk: Walk, rational: RationalWalk): ResidueTable | undefined {
   const d = walk.dimension;
   const q = rational.denominator;
-  const moves = new BigInt64Array(walk.moves.length * d * (d + 1));
-  let norm = 0n;
-  if (q >= 1n << 58n) return undefined;
-  for (const [m, move] of walk.moves.entries()) {
-    for (const [i, row] of move.matrix.entries()) {
-      const centred = row.map((a) => {
+  if (q >= 1n << 63n) return undefined;
+  const matrices = walk.moves.map(({ matrix }) =>
+    matrix.map((row) =>
+      row.map((a) => {
         const r = a - floorDiv(a, q) * q;
         return 2n * r > q ? r - q : r;
-      });
-      const sum = centred.reduce((a, b) => a + absolute(b), 0n);
-      if (sum > norm) norm = sum;
-      moves.set([...centred, rational.translations[m]?.[i] ?? 0n], (m * d + i) * (d + 1));
+      }),
+    ),
+  );
+  const rows = 1n + matrices.reduce((most, matrix) => larger(most, rowSumNorm(matrix)), 0n);
+  if (rows > ROWS) return undefined;
+  const narrow = rows <= NARROW_ROWS && 2n * rows * q < 1n << 62n;
+  const moves = new BigInt64Array(walk.moves.length * d * (d + 1));
+  for (const [m, matrix] of matrices.entries()) {
+    for (const [i, row] of matrix.entries()) {
+      const negative = narrow ? row.reduce((sum, a) => (a < 0n ? sum - a : sum), 0n) : 0n;
+      moves.set([...row, (rational.translations[m]?.[i] ?? 0n) + negative * q], (m * d + i) * (d + 1));
     }
   }
-  if ((norm + 1n) * q >= 1n << 62n) return undefined;
-  return { dimension: d, denominator: q, moves, start: BigInt64Array.from(rational.start) };
+  return { dimension: d, denominator: q, rows, narrow, moves, start: BigInt64Array.from(rational.start) };
 }
