@@ -47,7 +47,7 @@ export class PressureGrid {
   private readonly logs: readonly (readonly number[])[];
   private readonly weights: readonly number[];
   private finer: readonly Sample[] = [];
-  /** Roots in each coordinate of `finer`. */
+  /** Roots in each coordinate of `finer`, the last certificate's grid. */
   private count = 0;
   /** 2 for each coordinate in which T_k is not constant: discrete orthogonality at the roots. */
   private readonly norms: readonly number[];
@@ -145,8 +145,9 @@ export class PressureGrid {
 
   /** The points of a certificate for functions bounded by 2^bound: tails below 2^-p. */
   private certificate(bound: number): readonly Sample[] {
-    const wanted = Math.max(this.size + 1, Math.ceil((bound + this.p + 8) / this.ellipse.r));
-    if (this.count < wanted) {
+    // Even, so that grids are often shared; never a grid that happens to be there: results have no history.
+    const wanted = 2 * Math.ceil(Math.max(this.size + 1, (bound + this.p + 8) / this.ellipse.r) / 2);
+    if (this.count !== wanted) {
       this.finer = sampleGrid(this.cone, wanted, this.p);
       this.count = wanted;
     }

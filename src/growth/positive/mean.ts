@@ -40,7 +40,7 @@ export class StationaryMeans {
   private readonly points: readonly Sample[];
   private readonly matrix: number[][];
   private finer: readonly Sample[] = [];
-  /** Roots in each coordinate of `finer`. */
+  /** Roots in each coordinate of `finer`, the last certificate's grid. */
   private count = 0;
 
   constructor(
@@ -73,8 +73,9 @@ export class StationaryMeans {
 
   /** The points of a certificate for functions bounded by 2^bound: tails below 2^-p. */
   private certificate(bound: number): readonly Sample[] {
-    const wanted = Math.max(this.size + 1, Math.ceil((bound + this.p + 8) / this.ellipse.r));
-    if (this.count < wanted) {
+    // Even, so that grids are often shared; never a grid that happens to be there: results have no history.
+    const wanted = 2 * Math.ceil(Math.max(this.size + 1, (bound + this.p + 8) / this.ellipse.r) / 2);
+    if (this.count !== wanted) {
       this.finer = sampleGrid(this.cone, wanted, this.p);
       this.count = wanted;
     }

@@ -130,6 +130,15 @@ describe("a positive set of dimension 3", () => {
     expect(Math.abs(bend - middle(variance).toNumber())).toBeLessThan(1e-7);
   });
 
+  it("does not depend on what was asked before", async () => {
+    const real = await loadReal();
+    const [fresh, used] = [PositiveSet.of(walkOf(SQUARES), real)!, PositiveSet.of(walkOf(SQUARES), real)!];
+    for (const s of [9, -4, 0.5]) used.pressure(s, 32);
+    used.variance(30);
+    expect(used.pressure(1.5, 32)).toEqual(fresh.pressure(1.5, 32));
+    expect(used.exponent(30)).toEqual(fresh.exponent(30));
+  });
+
   it("has all exponents, variance, pressure and rates enclosed, where the inverses are positive, too", async () => {
     const { exponents, logNormVariance, pressure, rate, sampled, warnings } = await growth(walkOf(SQUARES), {
       workers: 0,
