@@ -10,6 +10,7 @@ import { exactAverages } from "./exact.js";
 import { type AveragesOptions, samplingOf } from "./options.js";
 import type { AveragesResult, SampledAverage } from "./result.js";
 import { sampleAverages } from "./sampled.js";
+import { startCosts } from "./start-cost.js";
 import { stepsFor } from "./steps.js";
 
 export type { AveragesOptions } from "./options.js";
@@ -33,9 +34,11 @@ export async function averages(
   return withSession(options, async (session) => {
     const sampling = samplingOf(options, session, walk);
     const { findings, orbit, gap, warnings } = await exactAverages(walk, session, undefined, options.generating);
+    const means = findings.map((f) => quantityNumber(f.mean));
+    const costs = orbit === undefined ? await startCosts(walk, means, session) : undefined;
     const sampled = await sampleAverages(walk, session, {
       ...sampling,
-      means: findings.map((f) => quantityNumber(f.mean)),
+      means,
       variances: findings.map((f) => (f.variance === undefined ? undefined : quantityNumber(f.variance))),
     });
     return {
@@ -46,7 +49,15 @@ export async function averages(
       observables: findings.map(({ spread, variance: known, ...finding }, i) => {
         const seen = sampled[i]!;
         const variance = known ?? sampledVariance(seen);
-        return { ...finding, variance, stepsFor: stepsFor(variance, session.level, spread), sampled: seen };
+        const cost = costs?.[i];
+        const startSum = cost === undefined ? undefined : quantityNumber(cost.sum);
+        return {
+          ...finding,
+          variance,
+          ...(cost === undefined ? {} : { startCost: cost }),
+          stepsFor: stepsFor({ variance, level: session.level, spread, startSum }),
+          sampled: seen,
+        };
       }),
       warnings,
     };

@@ -13,10 +13,14 @@
  * - D has none: the variance is positive for every f that is not constant.
  * - D is infinite and keeps a rational line L of covectors up to sign: f - m = g - g o T_1 with
  *   g on L and g o T_1 on A_1^T L, another line; so g is the part of f on L, and one looks.
- * - D is finite: g is sought along the orbits of single moves; not found proves nothing here.
+ * - D is finite: for a hyperbolic product T_w of moves, f + f o T_(w_1) + f o T_(w_2) T_(w_1) + ...
+ *   is g - g o T_w. All orbits of T_w on frequencies are infinite, and |coefficients| of g are
+ *   constant on an orbit where that sum has none: g in L2 is unique, found by adding up along
+ *   orbits, and is there only if each orbit's sum is 0.
  */
 
 import { decidePlane, type PlaneFinding } from "../conditions/plane.js";
+import type { Word } from "../conditions/words.js";
 import {
   compose,
   composeEntry,
@@ -30,7 +34,7 @@ import {
 import { apply } from "../dual/matrix.js";
 import { canonical, type TrigPolynomial } from "../dual/polynomial.js";
 import type { Verdict } from "../quantity/quantity.js";
-import { inverseMatrix, multiplyMatrices, transpose } from "../walk/integers.js";
+import { type IntegerMatrix, inverseMatrix, multiplyMatrices, transpose } from "../walk/integers.js";
 import type { Move, Walk } from "../walk/walk.js";
 
 /** What the moves alone decide, for all observables; in dimension 2 only. */
@@ -76,8 +80,8 @@ function size(k: readonly bigint[]): bigint {
  * where an orbit is finite, so that g would not be determined. Orbits are followed far
  * beyond f's own size, but a link that is missed only means that no g is found.
  */
-function orderAlongOrbits(f: ExactFunction, move: Move): string[] | undefined {
-  const step = transpose(move.matrix);
+function orderAlongOrbits(f: ExactFunction, { matrix }: Step): string[] | undefined {
+  const step = transpose(matrix);
   const far = [...f.values()].reduce((m, e) => (size(e.frequency) > m ? size(e.frequency) : m), 1n) << 64n;
   const earlier = new Map([...f.keys()].map((key) => [key, 0]));
   for (const [key, { frequency }] of f) {
@@ -93,9 +97,30 @@ function orderAlongOrbits(f: ExactFunction, move: Move): string[] | undefined {
   return [...earlier].sort(([, a], [, b]) => a - b).map(([key]) => key);
 }
 
-/** g with f = g - g o T for one move, by summing along its orbits; undefined where none was found. */
-function telescoped(f: ExactFunction, move: Move): ExactFunction | undefined {
-  const order = orderAlongOrbits(f, move);
+/** A map of the torus: its matrix, and e_k -> e_k o T. */
+interface Step {
+  readonly matrix: IntegerMatrix;
+  readonly compose: (entry: ExactEntry) => ExactEntry | undefined;
+}
+
+const stepOf = (move: Move): Step => ({ matrix: move.matrix, compose: (entry) => composeEntry(entry, move) });
+
+/** The product of moves of a word; its first index acts first. */
+function stepAlong(walk: Walk, word: Word): Step {
+  const moves = word.indices.map((i) => walk.moves[i] as Move).reverse();
+  return {
+    matrix: word.matrix,
+    compose: (entry) =>
+      moves.reduce<ExactEntry | undefined>((e, move) => (e === undefined ? e : composeEntry(e, move)), entry),
+  };
+}
+
+/**
+ * g with f = g - g o T, by summing along orbits; `none` where an orbit's sum is proved not to
+ * be 0, undefined where none was found.
+ */
+function telescoped(f: ExactFunction, step: Step): ExactFunction | "none" | undefined {
+  const order = orderAlongOrbits(f, step);
   if (order === undefined) return undefined;
   const g = new Map<string, ExactEntry>();
   const done = new Set<string>();
@@ -104,9 +129,9 @@ function telescoped(f: ExactFunction, move: Move): ExactFunction | undefined {
     done.add(first);
     let entry = f.get(first) as ExactEntry;
     for (let n = 0; !(entry.re.isZero && entry.im.isZero); n++) {
-      if (n > 2 * LONGEST_CHAIN) return undefined;
+      if (n > 2 * LONGEST_CHAIN) return provedNonZero(entry) ? "none" : undefined;
       g.set(entry.frequency.join(), entry);
-      const image = composeEntry(entry, move);
+      const image = step.compose(entry);
       if (image === undefined) return undefined;
       const own = f.get(image.frequency.join());
       done.add(image.frequency.join());
@@ -160,8 +185,8 @@ export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differe
   const exact = functionOf(f);
   const tried: string[] = [];
   for (const move of walk.moves) {
-    const g = telescoped(exact, move);
-    if (g !== undefined && solves(exact, g, walk) === "yes") return found(g);
+    const g = telescoped(exact, stepOf(move));
+    if (g !== undefined && g !== "none" && solves(exact, g, walk) === "yes") return found(g);
     tried.push(`sums along the orbits of "${move.label}"`);
   }
   if (differences?.moves.type !== "strongly irreducible") {
@@ -174,11 +199,7 @@ export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differe
   const { group } = differences;
   if (group.type === "irrational lines" || group.type === "strongly irreducible") return withoutFiniteOrbit(group);
   if (group.type === "finite") {
-    const order = group.elements.length;
-    return undecided(
-      `The A_i A_j^-1 generate a finite group (order ${order}), so that the variance may be 0; no g was found.`,
-      { tried, order },
-    );
+    return alongWord(walk, exact, differences.moves.word, group.elements.length);
   }
   const line = group.line as [bigint, bigint];
   const onLine = new Map(
@@ -208,6 +229,52 @@ export function degeneracyOf(walk: Walk, f: TrigPolynomial, differences: Differe
     );
   }
   return undecided("Equality of irrational coefficients or phases could not be decided.", evidence);
+}
+
+/** The sum of f along a word's moves: g - g o T_w wherever f = g - g o T_i for all i. */
+function summedAlong(walk: Walk, f: ExactFunction, word: Word): ExactFunction | undefined {
+  let sum: ExactFunction | undefined = f;
+  for (const i of word.indices.slice(0, -1).reverse()) {
+    const moved: ExactFunction | undefined = sum === undefined ? undefined : compose(sum, walk.moves[i] as Move);
+    sum = moved === undefined ? undefined : subtract(f, negated(moved));
+  }
+  return sum;
+}
+
+function negated(f: ExactFunction): ExactFunction {
+  return new Map([...f].map(([key, e]) => [key, { ...e, re: e.re.neg(), im: e.im.neg() }]));
+}
+
+/** Entries of a word for which orbits are surely followed to their end (see orderAlongOrbits). */
+const LARGEST_ENTRY = 1n << 24n;
+
+/** Decided by a hyperbolic product of moves; `order`: of the finite group of the differences. */
+function alongWord(walk: Walk, f: ExactFunction, word: Word, order: number): Degeneracy {
+  const evidence = {
+    hyperbolicProduct: { indices: word.indices, matrix: word.matrix.map((row) => row.map(String)) },
+    orderOfDifferences: order,
+  };
+  const small = word.matrix.flat().every((x) => (x < 0n ? -x : x) < LARGEST_ENTRY);
+  const sum = small ? summedAlong(walk, f, word) : undefined;
+  const g = sum === undefined ? undefined : telescoped(sum, stepAlong(walk, word));
+  const answer = g === undefined || g === "none" ? g : solves(f, g, walk);
+  if (answer === "yes") return found(g as ExactFunction);
+  if (answer === "none") {
+    return fails(
+      "Variance 0 would need a g whose difference along a hyperbolic product of moves is the sum of f - mean along it; that sum does not add up to 0 along an orbit of frequencies, so there is none.",
+      evidence,
+    );
+  }
+  if (answer === "no") {
+    return fails(
+      "Variance 0 would need f - mean = g - g(A_i x + b_i) for every move; along a hyperbolic product of moves one g alone can do that, and it does not for every move.",
+      { ...evidence, g: show(polynomialFrom(g as ExactFunction)) },
+    );
+  }
+  return undecided(
+    `The A_i A_j^-1 generate a finite group (order ${order}), so that the variance may be 0; equality of irrational coefficients or phases could not be decided.`,
+    evidence,
+  );
 }
 
 function withoutFiniteOrbit(group: PlaneFinding & { type: "irrational lines" | "strongly irreducible" }): Degeneracy {

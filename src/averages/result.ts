@@ -1,5 +1,6 @@
 import type { Quantity, Verdict } from "../quantity/quantity.js";
 import type { Gap } from "./gap.js";
+import type { StartCost } from "./start-cost.js";
 
 /** What exact walks showed of one observable. */
 export interface SampledAverage {
@@ -58,6 +59,8 @@ export interface ObservableResult {
   readonly reached?: { readonly step: number; readonly reason: string };
   /** What a reader must know about this observable's numbers. */
   readonly notes: readonly string[];
+  /** For a start at one point: what the rational point near it that holds longest adds to sums of f - mean. */
+  readonly startCost?: StartCost;
   /** Moves after which the interval at `level` has this half-width. */
   readonly stepsFor: readonly { readonly halfWidth: number; readonly steps: Quantity }[];
   readonly sampled: SampledAverage;

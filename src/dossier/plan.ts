@@ -1,6 +1,7 @@
 /** What `assess` asks of each question: which frequencies, which moduli, how many moves. */
 import { gcdBig } from "../exact/rational.js";
 import type { Effort } from "../session.js";
+import { translationDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 
 /**
@@ -27,16 +28,6 @@ const LARGEST_MODULUS: Readonly<Record<Effort, number>> = { quick: 12, standard:
 
 function lcm(a: bigint, b: bigint): bigint {
   return (a / gcdBig(a, b)) * b;
-}
-
-/** The common denominator of all translations; undefined where one of them is irrational or not known to be rational. */
-export function translationDenominator(walk: Walk): bigint | undefined {
-  let q = 1n;
-  for (const x of walk.moves.flatMap((m) => m.translation ?? [])) {
-    if (x.rational === undefined) return undefined;
-    q = lcm(q, x.rational.den);
-  }
-  return q;
 }
 
 /** The denominator that start and translations share; undefined where one coordinate is not rational. */

@@ -4,12 +4,12 @@ import { finiteOrbit } from "../averages/orbit.js";
 import { conditionsOf, groupFinding } from "../conditions/conditions.js";
 import { LimitError } from "../errors.js";
 import type { ExactNumber } from "../exact/number.js";
-import { gcdBig, Rational } from "../exact/rational.js";
+import { Rational } from "../exact/rational.js";
 import { loadReal } from "../kernel/real.js";
 import { enclosedBetween, exactQuantity, type Quantity } from "../quantity/quantity.js";
 import { type Effort, type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
-import { commonDenominator } from "../walk/denominator.js";
+import { commonDenominator, translationDenominator } from "../walk/denominator.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { bestApproximations } from "./approximations.js";
@@ -22,16 +22,6 @@ export type { StartOptions } from "./options.js";
 
 /** Points of an orbit that are listed at most. */
 const MOST_POINTS: Record<Effort, number> = { quick: 100_000, standard: 300_000, thorough: 1_000_000 };
-
-/** A common denominator of all translations; undefined where one is not proved rational. */
-function translationDenominator(walk: Walk): bigint | undefined {
-  let q = 1n;
-  for (const b of walk.moves.flatMap((move) => move.translation ?? [])) {
-    if (b.rational === undefined) return undefined;
-    q *= b.rational.den / gcdBig(q, b.rational.den);
-  }
-  return q;
-}
 
 /** The finite orbit of a rational start: its size by enumeration, or between what was seen and all points. */
 function orbitOf(walk: Walk, effort: Effort): { denominator: string; size: Quantity } | undefined {

@@ -3,6 +3,7 @@ import { describe, expect, it } from "vitest";
 import { averages } from "../../src/averages/averages.js";
 import { OptionsError, StoppedError, WalkError } from "../../src/errors.js";
 import { quantityNumber } from "../../src/quantity/quantity.js";
+import { parseWalk } from "../../src/walk/parse.js";
 import { move, number, point, r, walkOf } from "../dual/naive.js";
 
 const example = (name: string) => readFileSync(new URL(`../../examples/${name}.json`, import.meta.url), "utf8");
@@ -19,8 +20,12 @@ describe("averages", () => {
       expect(quantityNumber(f.variance) / sampled).toBeLessThan(2.5);
       expect(f.degenerate.verdict).toBe("fails");
       const [wide, middle, narrow] = f.stepsFor.map((s) => quantityNumber(s.steps)) as [number, number, number];
-      // n = z^2 variance / h^2 at level 0.95.
-      expect(Math.abs(wide - (1.959963984540054 ** 2 * quantityNumber(f.variance)) / 0.01)).toBeLessThan(1);
+      // z sqrt(variance / n) + |start's sum| / n = h at level 0.95, rounded up.
+      const off = (n: number) =>
+        1.959963984540054 * Math.sqrt(quantityNumber(f.variance) / n) +
+        Math.abs(f.startCost === undefined ? 0 : quantityNumber(f.startCost.sum)) / n;
+      expect(off(wide)).toBeLessThanOrEqual(0.1 * (1 + 1e-9));
+      expect(off(wide - 1)).toBeGreaterThan(0.1);
       expect(narrow / middle).toBeCloseTo(100, 1);
     }
     const [probe, , west] = result.observables;
@@ -66,6 +71,66 @@ describe("averages", () => {
     expect(Number(upper.norm.high)).toBeCloseTo(Math.sqrt(3) / 2, 6);
     expect(upper.norm.low).toBe("0");
     expect(upper.kesten).toBeUndefined();
+  });
+
+  it("plans moves that sampling bears out", async () => {
+    const free = [
+      [
+        [1, 2],
+        [0, 1],
+      ],
+      [
+        [1, -2],
+        [0, 1],
+      ],
+      [
+        [1, 0],
+        [2, 1],
+      ],
+      [
+        [1, 0],
+        [-2, 1],
+      ],
+    ];
+    const walk = walkOf(free.map((m) => move(m, r(1, 4))));
+    // Variance 5/2 (see test/outside): z^2 5/2 / 0.01 = 961 moves for 0.1.
+    const { observables } = await averages(walk, { ...small, steps: 961, replicates: 800 });
+    const probe = observables[0]!;
+    expect(probe.stepsFor[0]).toMatchObject({ halfWidth: 0.1, steps: { value: 961 } });
+    const within = probe.sampled.standardised.filter((s) => Math.abs(s) <= 1.959963984540054).length / 800;
+    // Four standard errors of a share of 0.95 among 800.
+    expect(Math.abs(within - 0.95)).toBeLessThan(4 * Math.sqrt((0.95 * 0.05) / 800));
+  });
+
+  it("allows for what a start beside a fixed point costs", async () => {
+    const walk = parseWalk({
+      torwend: 1,
+      title: "beside the origin",
+      dimension: 2,
+      moves: [
+        [
+          [2, 1],
+          [1, 1],
+        ],
+        [
+          [1, 1],
+          [1, 2],
+        ],
+      ].map((matrix) => ({ matrix })),
+      start: ["sqrt(2)/10^40", "sqrt(3)/10^40"],
+      observables: [{ label: "f", terms: [{ frequency: [1, 0], cos: "1" }] }],
+    });
+    const { observables } = await averages(walk, { ...small, steps: 1000, replicates: 400 });
+    const { startCost, stepsFor, sampled, variance } = observables[0]!;
+    expect(startCost!.trap).toEqual({ denominator: 1, numerators: [0, 0] });
+    const sum = quantityNumber(startCost!.sum);
+    // Some log(10^40 / 4) / 0.96 moves at f = 1.
+    expect(sum).toBeGreaterThan(80);
+    const seen = 1000 * quantityNumber(sampled.mean);
+    const error = Math.sqrt((1000 * quantityNumber(variance)) / 400);
+    expect(Math.abs(seen - sum)).toBeLessThan(5 * error + 3);
+    const plain = (1.959963984540054 ** 2 * quantityNumber(variance)) / 0.01;
+    expect(quantityNumber(stepsFor[0]!.steps)).toBeGreaterThan(plain + 10 * sum * 0.9);
   });
 
   it("recognises variance 0, and then counts moves by the bounded sums", async () => {

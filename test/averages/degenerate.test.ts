@@ -122,6 +122,46 @@ describe("variance 0", () => {
   });
 });
 
+describe("differences of finite order", () => {
+  // u = [[0, -1], [1, 0]] and v^-1 u with v = [[0, 1], [-1, -1]]: u (v^-1 u)^-1 = v has order 3, and both
+  // moves have finite orbits on frequencies, so that neither alone determines g.
+  const turns = [
+    move(
+      [
+        [0, -1],
+        [1, 0],
+      ],
+      half,
+    ),
+    move(
+      [
+        [-1, 1],
+        [0, -1],
+      ],
+      half,
+    ),
+  ];
+  it("are decided along a hyperbolic product of moves", () => {
+    expect(differencesOf(walkOf(turns))).toMatchObject({
+      moves: { type: "strongly irreducible" },
+      group: { type: "finite" },
+    });
+    // g = cos(2 pi x_1) + cos(2 pi x_2) + cos(2 pi (x_1 + x_2)) is kept by v; after u it has (0, -1), (1, 0), (1, -1).
+    const { verdict: answer, g } = verdict(turns, [t([1, 1], 1), t([1, -1], -1)]);
+    expect(answer.verdict).toBe("holds");
+    expect(g!.harmonics.map((h) => h.frequency.map(Number)).sort()).toEqual([
+      [0, 1],
+      [1, 0],
+      [1, 1],
+    ]);
+  });
+  it("leave other observables a variance above 0", () => {
+    expect(verdict(turns, [t([1, 1], 1)]).verdict.verdict).toBe("fails");
+    expect(verdict(turns, [t([1, 1], 1), t([1, -1], -2)]).verdict.verdict).toBe("fails");
+    expect(verdict(turns, [t([1, 1], root2), t([1, -1], 0, 1)]).verdict.verdict).toBe("fails");
+  });
+});
+
 describe("variance above 0", () => {
   it("for every observable but constants where the differences have no finite orbit", () => {
     const free = [

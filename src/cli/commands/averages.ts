@@ -19,6 +19,12 @@ function observable(o: ObservableResult): string {
   const findings = [
     ["limit of the time average", ...cells(o.mean)],
     ["variance (limit of n Var)", ...cells(o.variance)],
+    ...(o.startCost === undefined
+      ? []
+      : [
+          ["moves beside the worst trap", ...cells(o.startCost.moves)],
+          ["what they add to the sum", ...cells(o.startCost.sum)],
+        ]),
     ["sampled: mean", ...cells(sampled.mean)],
     ["sampled: variance, over replicates", ...cells(sampled.variance)],
     ["sampled: variance, batch means", ...cells(sampled.batchMeansVariance)],
