@@ -5,6 +5,7 @@ import "./orbits/jobs.js";
 import { listen } from "#worker-port";
 import "./averages/correlation-jobs.js";
 import "./averages/modular-jobs.js";
+import "./averages/poisson-jobs.js";
 import "./growth/jobs.js";
 import "./growth/positive/jobs.js";
 import "./start/jobs.js";

@@ -12,12 +12,30 @@ export interface ExactBudget {
   readonly states: number;
   /** The same for the norms, which take some hundred times as long. */
   readonly normStates: number;
+  /** Frequencies on which the Poisson equation is solved, in dimension 3 and more. */
+  readonly poisson: number;
   /** Points of a finite orbit. */
   readonly points: number;
 }
 
 export const EXACT_BUDGET: Readonly<Record<Effort, ExactBudget>> = {
-  quick: { entries: 2 ** 21, products: 6e6, last: 100, states: 120, normStates: 60, points: 20_000 },
-  standard: { entries: 2 ** 23, products: 5e7, last: 200, states: 200, normStates: 120, points: 100_000 },
-  thorough: { entries: 2 ** 24, products: 4e8, last: 400, states: 400, normStates: 240, points: 500_000 },
+  quick: { entries: 2 ** 21, products: 6e6, last: 100, states: 120, normStates: 60, poisson: 5000, points: 20_000 },
+  standard: {
+    entries: 2 ** 23,
+    products: 5e7,
+    last: 200,
+    states: 200,
+    normStates: 120,
+    poisson: 50_000,
+    points: 100_000,
+  },
+  thorough: {
+    entries: 2 ** 24,
+    products: 4e8,
+    last: 400,
+    states: 400,
+    normStates: 240,
+    poisson: 300_000,
+    points: 500_000,
+  },
 };

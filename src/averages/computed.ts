@@ -9,6 +9,8 @@ import { correlationsJob } from "./correlation-jobs.js";
 import type { CorrelationSums, CorrelationsPayload } from "./correlations.js";
 import { type ModularSums, modularPayload, moduliOf } from "./modular.js";
 import { modularJob } from "./modular-jobs.js";
+import type { PoissonFit } from "./poisson.js";
+import { poissonJob } from "./poisson-jobs.js";
 
 export interface Computed {
   readonly sums: CorrelationSums;
@@ -16,6 +18,8 @@ export interface Computed {
   readonly modular?: ModularSums;
   /** Beside `modular.dominating`: the same terms one by one, <F, Q^n F> (see ModularSums). */
   readonly head?: CorrelationSums;
+  /** In dimension 3 and more. */
+  readonly poisson?: PoissonFit;
 }
 
 const isTranslated = (walk: Walk) => walk.moves.some((m) => m.translation !== undefined);
@@ -47,6 +51,31 @@ function correlationsOf(
       memoryLimit: session.memoryLimit,
     };
   });
+}
+
+async function poissonFits(
+  walk: Walk,
+  list: readonly TrigPolynomial[],
+  session: Session,
+  budget: ExactBudget,
+): Promise<PoissonFit[]> {
+  const shape = { dimension: walk.dimension, width: 2, fold: "conjugate" } as const;
+  const forward = forwardMoves(walk);
+  const backward = isSelfAdjoint(walk) ? {} : { backward: adjointMoves(walk) };
+  const stage = "Poisson equation on a set of frequencies";
+  session.progress(stage, 0, list.length);
+  const payloads = list.map((f) => ({
+    forward,
+    ...backward,
+    terms: tableTerms(f, shape).terms,
+    entries: budget.poisson,
+  }));
+  const fits = await session.pool.map(poissonJob, payloads, {
+    signal: session.signal,
+    onDone: (done) => session.progress(stage, done, list.length),
+  });
+  session.checkStop();
+  return fits;
 }
 
 /**
@@ -83,11 +112,13 @@ export async function computeSums(
     onDone: (done) => session.progress(stage, done, payloads.length),
   });
   session.checkStop();
+  const fits = walk.dimension === 2 ? [] : await poissonFits(walk, list, session, budget);
   return list.map((f, i): Computed => {
     const place = dominated.indexOf(f);
     return {
       sums: sums[i] as CorrelationSums,
       ...(modular[i] === undefined ? {} : { modular: modular[i] }),
+      ...(fits[i] === undefined ? {} : { poisson: fits[i] }),
       ...(place < 0 ? {} : { head: sums[list.length + place] as CorrelationSums }),
     };
   });

@@ -90,12 +90,13 @@ function ofTerms(
     const spread = spreadOf(degeneracy.g);
     return { ...common, variance, degenerate: degeneracy.verdict, spread, notes: [] };
   }
-  const { variance, terms, notes } = limitVariance(computed);
+  const { variance, terms, poisson, notes } = limitVariance(computed);
   const lastTerms = correlations.map((value, step) => ({ step, value })).slice(-LAST_SHOWN);
   return {
     ...common,
     variance,
     degenerate: decidedBy(variance, degeneracy.verdict),
+    ...(poisson === undefined ? {} : { poisson }),
     ...(terms ? { lastTerms } : {}),
     notes,
   };

@@ -1,5 +1,6 @@
 import type { Quantity, Verdict } from "../quantity/quantity.js";
 import type { Gap } from "./gap.js";
+import type { PoissonFinding } from "./limit-variance.js";
 import type { StartCost } from "./start-cost.js";
 
 /** What exact walks showed of one observable. */
@@ -51,6 +52,8 @@ export interface ObservableResult {
   readonly degenerate: Verdict;
   /** <f, P^n f> of the centred observable, n = 0, 1, ... */
   readonly correlations: readonly Quantity[];
+  /** In dimension 3 and more: how well the Poisson equation behind the variance was solved. */
+  readonly poisson?: PoissonFinding;
   /** Sums of z^n <f, P^n f> over n >= 0 (f centred), for each z asked for; under Haar measure only. */
   readonly generating?: readonly { readonly z: number; readonly value: Quantity }[];
   /** The last correlations that went into the variance; absent where it is no partial sum. */

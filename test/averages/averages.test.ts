@@ -73,6 +73,27 @@ describe("averages", () => {
     expect(upper.kesten).toBeUndefined();
   });
 
+  it("solves the Poisson equation in dimension 3, and says how well", async () => {
+    const { observables } = await averages(example("tray-3d"), {
+      ...small,
+      steps: 1500,
+      replicates: 300,
+      level: 0.999,
+    });
+    for (const f of observables) {
+      if (f.poisson === undefined) continue;
+      expect(f.variance.standing).toBe("estimated");
+      expect(quantityNumber(f.poisson.residual)).toBeLessThan(0.5);
+      const product = quantityNumber(f.poisson.residual) * quantityNumber(f.poisson.adjointResidual);
+      const { low, high } = f.sampled.variance;
+      // |G| is not known; 4 is of the size that gaps of small sets of moves give.
+      const slack = 4 * product * quantityNumber(f.correlations[0]!);
+      expect(quantityNumber(f.variance)).toBeGreaterThan(Number(low) - slack);
+      expect(quantityNumber(f.variance)).toBeLessThan(Number(high) + slack);
+    }
+    expect(observables.some((f) => f.poisson !== undefined)).toBe(true);
+  });
+
   it("plans moves that sampling bears out", async () => {
     const free = [
       [

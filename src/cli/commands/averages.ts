@@ -19,6 +19,14 @@ function observable(o: ObservableResult): string {
   const findings = [
     ["limit of the time average", ...cells(o.mean)],
     ["variance (limit of n Var)", ...cells(o.variance)],
+    ...(o.poisson === undefined
+      ? []
+      : [
+          ["residual of f = g - P g, of |f|", ...cells(o.poisson.residual)],
+          ["residual for the adjoint, of |f|", ...cells(o.poisson.adjointResidual)],
+          ["|g|^2 - |P g|^2", ...cells(o.poisson.byNorms)],
+          ...(o.poisson.decay === undefined ? [] : [["correlations shrink a move by", ...cells(o.poisson.decay)]]),
+        ]),
     ...(o.startCost === undefined
       ? []
       : [

@@ -1,5 +1,6 @@
 /** Time averages: limit, variance, error bars and how many moves they take, one block an observable. */
 import type { Gap } from "../../averages/gap.js";
+import type { PoissonFinding } from "../../averages/limit-variance.js";
 import type { ObservableResult } from "../../averages/result.js";
 import { type Quantity, quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html, joined, type Piece } from "../html.js";
@@ -111,6 +112,7 @@ function block(o: ObservableResult, index: number, level: number): Html {
     )}.`
   }${o.reached !== undefined && html` They end at <i>n</i> = ${o.reached.step}: ${prose(o.reached.reason)}.`}</p>
 <p>Is the variance zero? ${ZERO[o.degenerate.verdict]} ${prose(o.degenerate.reason)}</p>
+${o.poisson !== undefined && poissonText(o.poisson)}
 ${o.startCost !== undefined && html`<p>The start costs about ${quantity(o.startCost.moves)} moves beside the orbit of the trap with denominator ${o.startCost.trap.denominator}; they add ${quantity(o.startCost.sum)} to the sum of <i>f</i> less its mean, and the moves needed allow for that.</p>`}
 ${o.notes.map((n) => warning(n))}
 ${o.degenerate.verdict === "holds" && evidence(o.degenerate.evidence)}
@@ -127,6 +129,10 @@ ${correlationsPlot(o, index) ?? flat(o)}
 ${pair(runningPlot(o, index, level), histogramPlot(o, index))}
 ${sampledTable(o)}
 `;
+}
+
+function poissonText({ frequencies, residual, adjointResidual, byNorms, decay }: PoissonFinding): Html {
+  return html`<p>Behind it: <i>f</i> = <i>g</i> − <i>P g</i> solved on ${plural(frequencies, "frequency", "frequencies")} up to ${quantity(residual)} of |<i>f</i>|, and for the adjoint up to ${quantity(adjointResidual)}; the variance is off by a multiple of their product that is not bounded here. The variance of <i>g</i> − <i>P g</i> alone, |<i>g</i>|² − |<i>P g</i>|², is ${quantity(byNorms)}.${decay !== undefined && html` The last correlations computed shrink by ${quantity(decay)} a move.`}</p>`;
 }
 
 function gapBlock({ norm, spectralRadius, gap, kesten, evidence: found }: Gap): Html {
