@@ -14,12 +14,23 @@ export interface ExactBudget {
   readonly normStates: number;
   /** Frequencies on which the Poisson equation is solved, in dimension 3 and more. */
   readonly poisson: number;
+  /** Terms of a box's Fourier series; time grows with their square and more. */
+  readonly boxTerms: number;
   /** Points of a finite orbit. */
   readonly points: number;
 }
 
 export const EXACT_BUDGET: Readonly<Record<Effort, ExactBudget>> = {
-  quick: { entries: 2 ** 21, products: 6e6, last: 100, states: 120, normStates: 60, poisson: 5000, points: 20_000 },
+  quick: {
+    entries: 2 ** 21,
+    products: 6e6,
+    last: 100,
+    states: 120,
+    normStates: 60,
+    poisson: 5000,
+    boxTerms: 40,
+    points: 20_000,
+  },
   standard: {
     entries: 2 ** 23,
     products: 5e7,
@@ -27,6 +38,7 @@ export const EXACT_BUDGET: Readonly<Record<Effort, ExactBudget>> = {
     states: 200,
     normStates: 120,
     poisson: 50_000,
+    boxTerms: 100,
     points: 100_000,
   },
   thorough: {
@@ -36,6 +48,7 @@ export const EXACT_BUDGET: Readonly<Record<Effort, ExactBudget>> = {
     states: 400,
     normStates: 240,
     poisson: 300_000,
+    boxTerms: 200,
     points: 500_000,
   },
 };

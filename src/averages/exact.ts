@@ -84,7 +84,8 @@ export async function exactAverages(
     );
   }
   const gap = walk.dimension === 2 ? await haarGap(walk, session, budget) : undefined;
-  const findings = await haarFindings(walk, session, budget, generating);
+  const contraction = gap === undefined ? 1 : Number(gap.norm.high);
+  const findings = await haarFindings(walk, session, budget, generating, contraction);
   return { findings, ...(gap === undefined ? {} : { gap }), warnings };
 }
 

@@ -11,6 +11,7 @@ export interface ExactFinding {
   readonly degenerate: Verdict;
   readonly correlations: readonly Quantity[];
   readonly lastTerms?: readonly { readonly step: number; readonly value: Quantity }[];
+  readonly bracket?: Quantity;
   readonly poisson?: PoissonFinding;
   readonly generating?: readonly GeneratingValue[];
   readonly reached?: { readonly step: number; readonly reason: string };

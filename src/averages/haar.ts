@@ -6,17 +6,21 @@
 import { encloseAround, formQuantity } from "../dual/enclose.js";
 import { polynomialOf, type TrigPolynomial } from "../dual/polynomial.js";
 import { Rational } from "../exact/rational.js";
-import { exactQuantity, type Quantity, type Verdict } from "../quantity/quantity.js";
+import type { Interval } from "../quantity/interval.js";
+import { enclosedQuantity, exactQuantity, type Quantity, type Verdict } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
 import type { Observable, Walk } from "../walk/walk.js";
+import { boxTerms } from "./box-series.js";
 import type { ExactBudget } from "./budget.js";
 import { type Computed, computeSums } from "./computed.js";
 import type { CorrelationSums } from "./correlations.js";
 import { boxDegeneracy, type Degeneracy, type Differences, degeneracyOf, differencesOf } from "./degenerate.js";
 import type { ExactFinding } from "./finding.js";
 import { generatingFunction } from "./generating.js";
-import { type Box, boxMean, boxSquareNorm, isWholeTorus } from "./integral.js";
+import { type Box, boxMean, boxSquareNorm, endsOf, isWholeTorus } from "./integral.js";
 import { LAST_SHOWN, limitVariance } from "./limit-variance.js";
+import { movesOf } from "./modular.js";
+import { bracketJob } from "./modular-jobs.js";
 
 const END: Readonly<Record<CorrelationSums["end"], string>> = {
   done: "as many terms as are ever computed",
@@ -113,7 +117,12 @@ function decidedBy(variance: Quantity, verdict: Verdict): Verdict {
   };
 }
 
-function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
+function ofBox(
+  box: Box,
+  differences: Differences | undefined,
+  bracket: Interval | undefined,
+  contraction: number,
+): ExactFinding {
   const whole = isWholeTorus(box);
   const { verdict } = boxDegeneracy(whole, differences);
   const norm = boxSquareNorm(box);
@@ -121,22 +130,77 @@ function ofBox(box: Box, differences: Differences | undefined): ExactFinding {
     label: box.label,
     mean: boxMean(box),
     ...(whole ? { variance: norm, spread: 0 } : {}),
-    degenerate: verdict,
+    ...(bracket === undefined ? {} : { bracket: bracketQuantity(bracket) }),
+    degenerate: bracket === undefined ? verdict : decidedBy(bracketQuantity(bracket), verdict),
     correlations: [norm],
     notes: whole
       ? []
       : [
           "A box's indicator has infinitely many frequencies: <f, P^n f> is given for n = 0 only, and the variance comes from the exact walks.",
           "A box's indicator is not continuous. Equidistribution still gives its volume as the limit, since its boundary has measure 0; the central limit theorem for continuous functions does not cover it.",
+          ...(contraction < 1
+            ? [
+                "What is still true: since |P| < 1 on functions of mean 0 is proved, f - mean = g - P g with g in L2, and the central limit theorem with this variance holds from almost every start (Gordin 1969); for one given start it is not proved.",
+              ]
+            : []),
         ],
   };
 }
 
+function bracketQuantity({ low, high }: Interval): Quantity {
+  return enclosedQuantity(
+    low,
+    high,
+    "enclosed variance of the largest terms of the Fourier series, and |rest|^2 (1 + |P|) / (1 - |P|) at most for the rest",
+  );
+}
+
+/** Wider brackets than this, high over low, help nobody. */
+const WIDEST = 4;
+
+/** Of each box; undefined where none was proved that is narrow enough to help. */
+async function boxBrackets(
+  walk: Walk,
+  session: Session,
+  budget: ExactBudget,
+  contraction: number,
+): Promise<ReadonlyMap<Observable, Interval>> {
+  const translated = walk.moves.some((m) => m.translation !== undefined);
+  if (walk.dimension !== 2 || translated || !(contraction < 1)) return new Map();
+  const boxes = walk.observables.flatMap((box) => {
+    if (box.type !== "box" || isWholeTorus(box)) return [];
+    const terms = boxTerms(box, budget.boxTerms);
+    return terms === undefined ? [] : [{ box, terms, norm: endsOf(boxSquareNorm(box)) }];
+  });
+  const payloads = boxes.map(({ terms, norm }) => ({
+    moves: movesOf(walk),
+    states: budget.states,
+    terms,
+    norm,
+    contraction,
+  }));
+  const stage = "variances of boxes";
+  session.progress(stage, 0, payloads.length);
+  const found = await session.pool.map(bracketJob, payloads, {
+    signal: session.signal,
+    onDone: (done) => session.progress(stage, done, payloads.length),
+  });
+  session.checkStop();
+  return new Map(
+    boxes.flatMap(({ box }, i) => {
+      const bracket = found[i];
+      return bracket !== undefined && bracket.high <= WIDEST * bracket.low ? [[box, bracket] as const] : [];
+    }),
+  );
+}
+
+/** @param contraction a proved bound of |P| on functions of mean 0; 1 where none is known */
 export async function haarFindings(
   walk: Walk,
   session: Session,
   budget: ExactBudget,
   at: readonly number[] = [],
+  contraction = 1,
 ): Promise<ExactFinding[]> {
   const differences = differencesOf(walk);
   const parts = walk.observables.map((observable) => {
@@ -152,9 +216,12 @@ export async function haarFindings(
     budget,
     at,
   );
+  const brackets = await boxBrackets(walk, session, budget, contraction);
   return parts.map((part) => {
     const { label } = part.observable as Observable;
-    if (part.f === undefined) return ofBox(part.observable as Box, differences);
+    if (part.f === undefined) {
+      return ofBox(part.observable as Box, differences, brackets.get(part.observable), contraction);
+    }
     const place = followed.indexOf(part as (typeof followed)[number]);
     return ofTerms(label, part.f, part.degeneracy, computed[place], at);
   });

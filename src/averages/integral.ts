@@ -3,7 +3,8 @@ import { encloseRationals } from "../dual/enclose.js";
 import type { RationalInterval } from "../dual/form.js";
 import { ExactForm } from "../dual/form.js";
 import { Rational } from "../exact/rational.js";
-import { exactQuantity, type Quantity } from "../quantity/quantity.js";
+import { above, below, type Interval } from "../quantity/interval.js";
+import { exactQuantity, type Quantity, quantityNumber } from "../quantity/quantity.js";
 import type { Observable } from "../walk/walk.js";
 
 export type Box = Observable & { readonly type: "box" };
@@ -41,4 +42,12 @@ export function boxSquareNorm(box: Box): Quantity {
 
 export function isWholeTorus(box: Box): boolean {
   return box.low.every((x) => x.rational?.sign() === 0) && box.high.every((x) => x.rational?.equals(Rational.ONE));
+}
+
+/** Doubles around an exact or enclosed quantity. */
+export function endsOf(q: Quantity): Interval {
+  const value = quantityNumber(q);
+  const [low, high] = [Number(q.low ?? value), Number(q.high ?? value)];
+  // Reading a decimal, or a fraction, rounds to nearest: one unit more.
+  return { low: below(below(low)), high: above(above(high)) };
 }

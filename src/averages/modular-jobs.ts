@@ -1,5 +1,6 @@
 /** The modular route's pieces for the pool. */
 import { defineJob } from "../kernel/jobs.js";
+import { boxBracket } from "./box-bracket.js";
 import { findGap } from "./gap.js";
 import { modularSums } from "./modular.js";
 
@@ -8,3 +9,6 @@ export const modularJob = defineJob("averages.modular", modularSums);
 
 /** Norm, spectral radius and free generators. */
 export const gapJob = defineJob("averages.gap", findGap);
+
+/** Bounds of a box's variance. */
+export const bracketJob = defineJob("averages.bracket", boxBracket);

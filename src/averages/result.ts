@@ -52,6 +52,8 @@ export interface ObservableResult {
   readonly degenerate: Verdict;
   /** <f, P^n f> of the centred observable, n = 0, 1, ... */
   readonly correlations: readonly Quantity[];
+  /** For a box, in dimension 2: proved bounds of its limit variance, where they are narrow enough to help. */
+  readonly bracket?: Quantity;
   /** In dimension 3 and more: how well the Poisson equation behind the variance was solved. */
   readonly poisson?: PoissonFinding;
   /** Sums of z^n <f, P^n f> over n >= 0 (f centred), for each z asked for; under Haar measure only. */

@@ -14,7 +14,16 @@ const term = (frequency: number[], cos: number, sin = 0): Term => ({
   sin: number(sin),
 });
 const terms = (label: string, ...list: Term[]): Observable => ({ type: "terms", label, terms: list });
-const small = { entries: 2 ** 16, products: 2e5, last: 60, states: 100, normStates: 1, poisson: 1000, points: 2000 };
+const small = {
+  entries: 2 ** 16,
+  products: 2e5,
+  last: 60,
+  states: 100,
+  normStates: 1,
+  poisson: 1000,
+  boxTerms: 60,
+  points: 2000,
+};
 const run = (walk: Walk, options: CommonOptions = {}) =>
   withSession({ effort: "quick", workers: 0, ...options }, (session) => exactAverages(walk, session, small));
 const first = async (walk: Walk) => (await run(walk)).findings[0] as ExactFinding;

@@ -13,7 +13,16 @@ const term = (frequency: number[], cos: number, sin = 0): Term => ({
   sin: number(sin),
 });
 const terms = (...list: Term[]): Observable => ({ type: "terms", label: "f", terms: list });
-const budget = { entries: 2 ** 18, products: 6e5, last: 100, states: 200, normStates: 1, poisson: 1000, points: 100 };
+const budget = {
+  entries: 2 ** 18,
+  products: 6e5,
+  last: 100,
+  states: 200,
+  normStates: 1,
+  poisson: 1000,
+  boxTerms: 60,
+  points: 100,
+};
 const find = async (walk: Walk, generating: readonly number[] = []) => {
   const { findings } = await withSession({ effort: "quick", workers: 0 }, (session) =>
     exactAverages(walk, session, budget, generating),

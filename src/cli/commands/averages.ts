@@ -19,6 +19,7 @@ function observable(o: ObservableResult): string {
   const findings = [
     ["limit of the time average", ...cells(o.mean)],
     ["variance (limit of n Var)", ...cells(o.variance)],
+    ...(o.bracket === undefined ? [] : [["variance, proved bounds", ...cells(o.bracket)]]),
     ...(o.poisson === undefined
       ? []
       : [

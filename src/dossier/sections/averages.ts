@@ -112,6 +112,7 @@ function block(o: ObservableResult, index: number, level: number): Html {
     )}.`
   }${o.reached !== undefined && html` They end at <i>n</i> = ${o.reached.step}: ${prose(o.reached.reason)}.`}</p>
 <p>Is the variance zero? ${ZERO[o.degenerate.verdict]} ${prose(o.degenerate.reason)}</p>
+${o.bracket !== undefined && html`<p>The variance is proved to be ${quantity(o.bracket)}: ${prose(o.bracket.method)}.</p>`}
 ${o.poisson !== undefined && poissonText(o.poisson)}
 ${o.startCost !== undefined && html`<p>The start costs about ${quantity(o.startCost.moves)} moves beside the orbit of the trap with denominator ${o.startCost.trap.denominator}; they add ${quantity(o.startCost.sum)} to the sum of <i>f</i> less its mean, and the moves needed allow for that.</p>`}
 ${o.notes.map((n) => warning(n))}
