@@ -62,13 +62,23 @@ export function gapOf(walk: Walk, { bounds, free }: GapFinding): Gap | undefined
   const norm = translated ? below : bounds.norm;
   const radius = translated ? { low: 0, high: bounds.spectralRadius.high } : bounds.spectralRadius;
   const method = `radii of convergence on the modular group by certificates${translated ? "; an upper bound, since translations only add phases" : ""}`;
-  const quantity = ({ low, high }: Interval, how = method) => enclosedQuantity(low, high, how);
+  // Of a mere upper bound, the bound is what a reader wants to see.
+  const quantity = ({ low, high }: Interval, how = method) => {
+    const q = enclosedQuantity(low, high, how);
+    return low === 0 ? { ...q, value: high } : q;
+  };
   const { low, high } = minus(point(1), radius);
+  const radiusMethod = bounds.freeSemigroup
+    ? "the root of the sum of squared probabilities: the moves generate a free semigroup (rapid decay, Haagerup 1978)"
+    : `${method}; |P^m|^(1/m), the least found`;
   const k = (free?.generators.length ?? 0) as number;
   return {
     norm: quantity(norm),
-    spectralRadius: quantity(radius, bounds.symmetric ? method : `${method}; |P^m|^(1/m), the least found`),
-    gap: quantity({ low: Math.max(0, low), high: Math.min(1, high) }, "1 less the spectral radius"),
+    spectralRadius: quantity(radius, bounds.symmetric ? method : radiusMethod),
+    gap: {
+      ...enclosedQuantity(Math.max(0, low), Math.min(1, high), "1 less the spectral radius"),
+      ...(radius.low === 0 ? { value: Math.max(0, low) } : {}),
+    },
     ...(free === undefined || translated
       ? {}
       : {

@@ -43,13 +43,14 @@ export function stepsFor({
       variance.standing !== "exact" && variance.low !== undefined && variance.high !== undefined
         ? { low: steps(Math.max(0, Number(variance.low))), high: steps(Number(variance.high)) }
         : undefined;
+    const known = interval !== undefined && interval.low < interval.high ? interval : undefined;
     const start = startSum === 0 ? "" : ", and what the start adds to the sums";
     return {
       halfWidth,
       steps: estimatedQuantity(
         steps(quantityNumber(variance)),
         `normal approximation at level ${level} from the variance above${start}`,
-        interval,
+        known,
         level,
       ),
     };

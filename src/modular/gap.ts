@@ -9,10 +9,15 @@
  * odd part is dominated by it. So |P^m|^2 is the inverse of the radius of convergence of
  * sum z^n nu^n(e) (Kesten 1959 for symmetric laws), and P has spectral radius at most
  * |P^m|^(1/m), at least the inverse of that of sum z^n mu^n(e).
+ * Also |P^n| >= |mu^n|_2 >= |mu|_2^n, so the spectral radius is at least |mu|_2, the root of
+ * the sum of squared probabilities; it is equal to it where the moves generate a free
+ * semigroup: the group has rapid decay (Haagerup 1978; Jolissaint 1990 for this one), so the
+ * spectral radius is lim |mu^n|_2^(1/n), and then |mu^n|_2 = |mu|_2^n.
  * With translations coefficients get phases of modulus 1: the upper bounds stay.
  */
-import type { Rational } from "../exact/rational.js";
-import { type Interval, over, point, root } from "../quantity/interval.js";
+import { Rational } from "../exact/rational.js";
+import { above, below, type Interval, over, point, root } from "../quantity/interval.js";
+import { certifyFree } from "./ping-pong.js";
 import { type Radius, radius } from "./radius.js";
 import { type PlanarMove, transposed } from "./variance.js";
 import { inverse2, type Matrix2, multiply2 } from "./words.js";
@@ -27,6 +32,8 @@ export interface GapBounds {
   readonly norm: Interval;
   readonly spectralRadius: Interval;
   readonly symmetric: boolean;
+  /** Proved: the moves generate a free semigroup. */
+  readonly freeSemigroup: boolean;
   readonly certificates: readonly Certificate[];
 }
 
@@ -57,6 +64,35 @@ function reflected(a: Law): Law {
 function same(a: Law, b: Law): boolean {
   return a.size === b.size && [...a].every(([key, x]) => b.get(key)?.probability.equals(x.probability));
 }
+
+/** |mu|_2 between bounds. */
+function twoNorm(law: Law): Interval {
+  let sum = Rational.ZERO;
+  for (const { probability } of law.values()) sum = sum.add(probability.mul(probability));
+  const square = sum.toNumber(); // within two units in the last place
+  return root({ low: below(below(below(square))), high: above(above(above(square))) });
+}
+
+/**
+ * Whether all matrices are non-negative up to sign and take the positive cone to cones whose
+ * interiors are disjoint: words with different first letters then differ, and no product
+ * is the identity, so that the semigroup is free.
+ */
+function isFreeSemigroup(law: Law): boolean {
+  const list = [...law.values()].map((x) => x.matrix);
+  if (list.length < 2 || !list.every((m) => m.every((x) => x >= 0n))) return false;
+  const cones = list.map(([a, b, c, d]) => {
+    const columns = [
+      [a, c],
+      [b, d],
+    ] as const;
+    return a * d - b * c > 0n ? columns : ([columns[1], columns[0]] as const);
+  });
+  const cross = (u: readonly [bigint, bigint], v: readonly [bigint, bigint]) => u[0] * v[1] - u[1] * v[0];
+  return cones.every((x, i) => cones.every((y, j) => i === j || cross(x[1], y[0]) >= 0n || cross(y[1], x[0]) >= 0n));
+}
+
+const withInverses = (law: Law): Matrix2[] => [...law.values()].flatMap(({ matrix }) => [matrix, inverse2(matrix)]);
 
 /** Pairs of words beyond which a power is not looked at; and states, where a lower power has given an answer. */
 const MOST_PAIRS = 1024;
@@ -94,7 +130,7 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
   if (symmetric) {
     if (own === undefined || !own.certified) return undefined;
     const norm = inverseOf(own);
-    return { norm, spectralRadius: norm, symmetric, certificates };
+    return { norm, spectralRadius: norm, symmetric, freeSemigroup: false, certificates };
   }
   let norm: Interval = { low: 0, high: 1 };
   let upper = 1;
@@ -119,7 +155,11 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
     for (let k = m; k > 1; k /= 2) bound = root(point(bound)).high;
     upper = Math.min(upper, bound);
   }
+  const freeSemigroup = isFreeSemigroup(law) || certifyFree(withInverses(law)) !== undefined;
+  const size = twoNorm(law);
+  if (freeSemigroup) upper = Math.min(upper, size.high);
   if (upper >= 1) return undefined;
-  const low = own === undefined ? 0 : inverseOf(own).low;
-  return { norm, spectralRadius: { low: Math.min(low, upper), high: upper }, symmetric, certificates };
+  const low = Math.max(size.low, own === undefined ? 0 : inverseOf(own).low);
+  norm = { low: Math.max(norm.low, size.low), high: norm.high };
+  return { norm, spectralRadius: { low: Math.min(low, upper), high: upper }, symmetric, freeSemigroup, certificates };
 }

@@ -2,6 +2,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { exactAverages } from "../../src/averages/exact.js";
+import { sampleAverages } from "../../src/averages/sampled.js";
 import { type Quantity, quantityNumber } from "../../src/quantity/quantity.js";
 import { withSession } from "../../src/session.js";
 import type { Observable, Term, Walk } from "../../src/walk/walk.js";
@@ -57,7 +58,7 @@ const matrix = fc
       determinant: (swap ? -1 : 1) as 1 | -1,
     };
   });
-const sets = fc.sample(fc.array(matrix, { minLength: 3, maxLength: 3 }), { numRuns: 30, seed: 20 });
+const sets = fc.sample(fc.array(matrix, { minLength: 3, maxLength: 3 }), { numRuns: 40, seed: 20 });
 
 describe("the limit variance by Green's function", () => {
   it("contains what correlations add up to, for ten random sets of moves", async () => {
@@ -81,6 +82,28 @@ describe("the limit variance by Green's function", () => {
       expect(Math.max(off(last), off(last - 1))).toBeLessThan(Math.max(1e-9, 0.5 * settled));
     }
     expect(proved).toBe(10);
+  });
+
+  it("is what exact walks show, within their own interval, for ten random walks", async () => {
+    let compared = 0;
+    for (const [i, set] of sets.slice(15).entries()) {
+      if (compared === 10) break;
+      const moves = set.map((m) => move(m.rows, r(1, 3), m.determinant));
+      const f = terms(term([1, i % 3], 2, 1), term([i % 2, 1], -1, 1));
+      const walk = walkOf(moves, { type: "uniform" }, [f]);
+      const { variance, notes } = await find(walk);
+      if (variance!.standing !== "enclosed" || notes.length > 0) continue;
+      compared++;
+      const plan = { steps: 500, replicates: 400, means: [0], variances: [undefined] };
+      const sampled = await withSession({ effort: "quick", workers: 0, level: 0.9999, seed: i }, (session) =>
+        sampleAverages(walk, session, plan),
+      );
+      // n Var differs from its limit by a term of order 1 / n: two per cent of room.
+      const { low, high } = sampled[0]!.variance;
+      expect(quantityNumber(variance!)).toBeGreaterThan(Number(low) * 0.98);
+      expect(quantityNumber(variance!)).toBeLessThan(Number(high) * 1.02);
+    }
+    expect(compared).toBe(10);
   });
 
   it("with translations, is what enumeration gives up to the tail that is left", async () => {

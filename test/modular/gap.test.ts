@@ -54,9 +54,17 @@ describe("gapBounds", () => {
     const two = gapBounds(uniform(sanov), 64)!;
     expect(two.norm.high).toBe(1);
     expect(two.norm.low).toBeGreaterThan(1 - 1e-6);
-    // |P^2| is that of 4 words of weight 1/4; Haagerup's bound is 3 / 2.
-    expect(two.spectralRadius.high).toBeLessThan(0.99);
-    expect(two.spectralRadius.high).toBeGreaterThan(1 / Math.sqrt(2));
+    expect(two.spectralRadius.high).toBeCloseTo(Math.SQRT1_2, 14);
+    // Signs hide the cones, but ping-pong shows that the group is free.
+    const turned = gapBounds(
+      uniform([
+        [1n, -2n, 0n, 1n],
+        [1n, 0n, 2n, 1n],
+      ]),
+      64,
+    )!;
+    expect(turned.freeSemigroup).toBe(true);
+    expect(turned.spectralRadius.high).toBeCloseTo(Math.SQRT1_2, 14);
     const three = gapBounds(
       uniform([
         [1n, 4n, 0n, 1n],
@@ -70,8 +78,9 @@ describe("gapBounds", () => {
     expect(three.norm.low).toBeLessThanOrEqual(norm);
     expect(three.norm.high).toBeGreaterThanOrEqual(norm);
     expect(three.norm.high - three.norm.low).toBeLessThan(1e-6);
-    expect(three.spectralRadius.high).toBe(three.norm.high);
-    expect(three.spectralRadius.high).toBeGreaterThan(1 / Math.sqrt(3));
+    // Non-negative, and their cones are apart: a free semigroup.
+    expect(three.spectralRadius.high).toBeCloseTo(1 / Math.sqrt(3), 14);
+    expect(three.spectralRadius.low).toBeLessThanOrEqual(1 / Math.sqrt(3));
   });
 
   it("bounds |P f| / |f| from above, determinant -1 included", () => {
@@ -99,6 +108,23 @@ describe("gapBounds", () => {
     expect(norm.high).toBeGreaterThan(size(image) / size(f));
     expect(norm.high).toBeLessThan(1);
     expect(norm.high - norm.low).toBeLessThan(1e-6);
+  });
+
+  it("knows the spectral radius of a free semigroup, which the norm of P does not tell", () => {
+    // [[2, 1], [1, 1]] and [[3, 1], [2, 1]]: their transposes' cones share an edge only. Words of n moves are
+    // distinct, so that |mu^n|_2 = 2^(-n/2).
+    const set: Matrix2[] = [
+      [2n, 1n, 1n, 1n],
+      [3n, 1n, 2n, 1n],
+    ];
+    const found = gapBounds(uniform(set), 64)!;
+    expect(found.freeSemigroup).toBe(true);
+    expect(found.spectralRadius.low).toBeLessThanOrEqual(Math.SQRT1_2);
+    expect(found.spectralRadius.high).toBeGreaterThanOrEqual(Math.SQRT1_2);
+    expect(found.spectralRadius.high - found.spectralRadius.low).toBeLessThan(1e-14);
+    expect(found.norm.low).toBeGreaterThan(1 - 1e-6);
+    // With the square of the first its cone overlaps, and the semigroup is not free.
+    expect(gapBounds(uniform([...set, [5n, 3n, 3n, 2n]]), 64)?.freeSemigroup).toBe(false);
   });
 
   it("proves nothing where the group is amenable", () => {

@@ -81,6 +81,46 @@ describe("symmetric walk on the free group of [[1,2],[0,1]], [[1,0],[2,1]]", () 
   });
 });
 
+describe("symmetric walk on a = [[1,2],[0,1]], c = [[5,2],[2,1]] and inverses", () => {
+  // c = a b with b = [[1,0],[2,1]]: free generators of the same group. a b^-1 = a c^-1 a takes (1, -1) to
+  // (-1, 1) transposed, so that up to sign this frequency's coset graph is a cycle of length 3, each vertex
+  // with two trees. F = 1/3 across a tree edge as above; with G_0 the visits at the start, G_1 at the others,
+  // (1 - 1/6) G_0 - 1/2 G_1 = 1 and (1 - 1/6) G_1 - 1/4 (G_0 + G_1) = 0.
+  const moves = [
+    [
+      [1, 2],
+      [0, 1],
+    ],
+    [
+      [1, -2],
+      [0, 1],
+    ],
+    [
+      [5, 2],
+      [2, 1],
+    ],
+    [
+      [1, -2],
+      [-2, 5],
+    ],
+  ];
+  it("cos(2 pi (x_1 - x_2)): a cycle of length 3; cos(2 pi x_2): a loop, as above", () => {
+    const g1 = (g0: number) => g0 / 4 / (1 - 1 / 6 - 1 / 4);
+    const g0 = 1 / (1 - 1 / 6 - g1(1) / 2);
+    const list = enclosed(
+      walkOf(moves, [
+        { label: "cycle", terms: [{ frequency: [1, -1], cos: "1" }] },
+        { label: "loop", terms: [{ frequency: [0, 1], cos: "1" }] },
+      ]),
+    );
+    for (const [i, value] of [(2 * g0 - 1) / 2, 2.5].entries()) {
+      expect(list[i]!.low).toBeLessThanOrEqual(value + 1e-13);
+      expect(list[i]!.high).toBeGreaterThanOrEqual(value - 1e-13);
+      expect(list[i]!.high - list[i]!.low).toBeLessThan(1e-10);
+    }
+  });
+});
+
 describe("f = g - P g for a positive pair", () => {
   it("has variance |g|^2 - |P g|^2 exactly (Gordin 1969)", () => {
     // g = cos(2 pi x_1): P g = (cos(2 pi (2,1).x) + cos(2 pi (3,1).x)) / 2, so 1/2 - 1/4.
