@@ -42,6 +42,30 @@ async function worstTrap(walk: Walk, session: Session): Promise<Trap | undefined
   }
 }
 
+/**
+ * What a trap adds to the sums of the observables less their limits `means`, one for each;
+ * undefined where its orbit has too many points to be listed.
+ */
+export async function trapCosts(
+  walk: Walk,
+  { denominator, numerators, hold }: Trap,
+  means: readonly number[],
+  session: Session,
+): Promise<{ readonly orbitSize: number; readonly sums: readonly Quantity[] } | undefined> {
+  const point = numerators.map((p) => exactRational(Rational.of(p, denominator)));
+  const orbit = finiteOrbit({ ...walk, start: { type: "point", point } }, POINTS);
+  if (orbit === undefined) return undefined;
+  const sums: Quantity[] = [];
+  for (const [i, observable] of walk.observables.entries()) {
+    const { mean } = await orbitValues(orbit, observable);
+    const off = quantityNumber(mean) - means[i]!;
+    const method = `moves beside the orbit of ${orbit.size} points with denominator ${denominator}, times that orbit's mean less the limit`;
+    sums.push(estimatedQuantity(quantityNumber(hold) * off, method));
+    session.checkStop();
+  }
+  return { orbitSize: orbit.size, sums };
+}
+
 /** One for each observable; undefined for all where the start is no point, or near none whose orbit can be listed. */
 export async function startCosts(
   walk: Walk,
@@ -51,22 +75,10 @@ export async function startCosts(
   session.progress("what the start costs", 0, 1);
   const trap = await worstTrap(walk, session);
   if (trap === undefined) return undefined;
+  const found = await trapCosts(walk, trap, means, session);
+  if (found === undefined) return undefined;
   const { denominator, numerators, hold } = trap;
-  const point = numerators.map((p) => exactRational(Rational.of(p, denominator)));
-  const orbit = finiteOrbit({ ...walk, start: { type: "point", point } }, POINTS);
-  if (orbit === undefined) return undefined;
-  const costs: StartCost[] = [];
-  for (const [i, observable] of walk.observables.entries()) {
-    const { mean } = await orbitValues(orbit, observable);
-    const off = quantityNumber(mean) - means[i]!;
-    const method = `predicted hold beside the orbit of ${orbit.size} points with denominator ${denominator}, times that orbit's mean less the limit`;
-    costs.push({
-      trap: { denominator, numerators },
-      moves: hold,
-      sum: estimatedQuantity(quantityNumber(hold) * off, method),
-    });
-    session.checkStop();
-  }
+  const costs = found.sums.map((sum) => ({ trap: { denominator, numerators }, moves: hold, sum }));
   session.progress("what the start costs", 1, 1);
   return costs;
 }

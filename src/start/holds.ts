@@ -6,13 +6,14 @@ import { sampleReplicates } from "../growth/sample.js";
 import { cumulativeWeights } from "../kernel/draws.js";
 import { growthTable } from "../kernel/growth.js";
 import type { Real } from "../kernel/real.js";
-import { enclosedBetween, estimatedQuantity } from "../quantity/quantity.js";
+import { enclosedBetween, estimatedQuantity, quantityNumber } from "../quantity/quantity.js";
 import type { Effort, Session } from "../session.js";
+import { meanEstimate } from "../statistics/intervals.js";
 import { quantile, sorted } from "../statistics/moments.js";
 import type { Walk } from "../walk/walk.js";
 import type { Approximation } from "./approximations.js";
 import { exitsJob } from "./jobs.js";
-import type { Trap } from "./result.js";
+import type { SampledHold, Trap } from "./result.js";
 
 /** Moves of the products from which the growth rate is taken: holds are known to a few moves anyway. */
 const RATE_STEPS = 2048;
@@ -40,6 +41,9 @@ export function predictedTraps(found: readonly Approximation[], rate: number, re
     const room = roomOf(approximation);
     const hold = real.log(room.div(distance.high).toNumber()) / rate;
     if (!(hold > 0)) return [];
+    const d = numerators.length;
+    const usual = Math.sqrt(d) / (denominator * real.pow(denominator, 1 / d));
+    const excess = real.log(usual / distance.high.toNumber()) / rate;
     return [
       {
         denominator,
@@ -50,6 +54,10 @@ export function predictedTraps(found: readonly Approximation[], rate: number, re
           hold,
           `log(room / distance) / ${rate.toPrecision(4)}, the top exponent estimated from short products`,
         ),
+        excess: estimatedQuantity(
+          excess,
+          `log(sqrt(d) q^(-1 - 1/d) / distance) / ${rate.toPrecision(4)}: Dirichlet's distance in place of the room`,
+        ),
       },
     ];
   });
@@ -57,25 +65,51 @@ export function predictedTraps(found: readonly Approximation[], rate: number, re
 }
 
 const REPLICATES: Record<Effort, number> = { quick: 100, standard: 200, thorough: 1000 };
-const TRAPS: Record<Effort, number> = { quick: 2, standard: 4, thorough: 8 };
+/** Traps beyond these, the weakest, keep their prediction alone. */
+const TRAPS: Record<Effort, number> = { quick: 8, standard: 32, thorough: 64 };
 const PER_JOB = 50;
 const MOST_STEPS = 4000;
 
+function sampledHold(exits: readonly number[], steps: number, level: number): SampledHold {
+  const ordered = sorted(exits);
+  const n = ordered.length;
+  const tail = (1 - level) / 2;
+  const { value, interval } = meanEstimate(ordered, level);
+  const first = ordered[0] as number;
+  const counts = new Array<number>((ordered[n - 1] as number) - first + 1).fill(0);
+  for (const k of ordered) counts[k - first]++;
+  return {
+    replicates: n,
+    low: quantile(ordered, tail),
+    median: quantile(ordered, 0.5),
+    high: quantile(ordered, 1 - tail),
+    mean: estimatedQuantity(
+      value,
+      `exact walks of the start and of the point under the same moves, ${n} replicates`,
+      interval,
+      level,
+    ),
+    unfinished: ordered.filter((k) => k > steps).length,
+    exits: { first, counts },
+  };
+}
+
 /** The first traps with their sampled holds; the others as they are. */
 export async function sampledTraps(walk: Walk, traps: readonly Trap[], session: Session): Promise<Trap[]> {
-  const replicates = REPLICATES[session.effort];
+  const jobs = REPLICATES[session.effort] / PER_JOB;
   const chosen = traps.slice(0, TRAPS[session.effort]);
-  const payloads = chosen.flatMap(({ denominator, numerators, room, hold }) => {
-    const [p, q] = (room as string).split("/");
-    return Array.from({ length: replicates / PER_JOB }, (_, i) => ({
+  // Room for the spread of the products' growth about its mean.
+  const stepsOf = ({ hold }: Trap) => Math.min(MOST_STEPS, 64 + 4 * Math.ceil(quantityNumber(hold)));
+  const payloads = chosen.flatMap((trap) => {
+    const [p, q] = (trap.room as string).split("/");
+    return Array.from({ length: jobs }, (_, i) => ({
       document: walk.document,
       seed: session.seed,
       memoryLimit: session.memoryLimit,
-      denominator,
-      numerators,
+      denominator: trap.denominator,
+      numerators: trap.numerators,
       room: Rational.of(BigInt(p), BigInt(q ?? "1")).toNumber(),
-      // Room for the spread of the products' growth about its mean.
-      steps: Math.min(MOST_STEPS, 64 + 4 * Math.ceil(Number(hold.value))),
+      steps: stepsOf(trap),
       first: i * PER_JOB,
       count: PER_JOB,
     }));
@@ -84,12 +118,9 @@ export async function sampledTraps(walk: Walk, traps: readonly Trap[], session: 
     ...(session.signal === undefined ? {} : { signal: session.signal }),
     onDone: (done) => session.progress("holds", done, payloads.length),
   });
-  const jobs = replicates / PER_JOB;
   return traps.map((trap, t) => {
     if (t >= chosen.length) return trap;
-    const exits = sorted(results.slice(t * jobs, (t + 1) * jobs).flatMap((part) => [...part]));
-    const tail = (1 - session.level) / 2;
-    const at = (p: number) => quantile(exits, p);
-    return { ...trap, sampledHold: { replicates, low: at(tail), median: at(0.5), high: at(1 - tail) } };
+    const exits = results.slice(t * jobs, (t + 1) * jobs).flatMap((part) => [...part]);
+    return { ...trap, sampledHold: sampledHold(exits, stepsOf(trap), session.level) };
   });
 }

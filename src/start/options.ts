@@ -3,11 +3,11 @@ import { OptionsError } from "../errors.js";
 import type { CommonOptions } from "../session.js";
 
 export interface StartOptions extends CommonOptions {
-  /** Largest denominator of the rational points that are looked for; default 1000, at most 10^7. */
+  /** Largest denominator of the rational points that are looked for; default 1000, at most 10^9. */
   readonly denominators?: number;
 }
 
-const MOST = 10_000_000;
+const MOST = 1_000_000_000;
 
 /** @throws OptionsError */
 export function readDenominators({ denominators = 1000 }: StartOptions): number {

@@ -13,9 +13,10 @@ import { commonDenominator, translationDenominator } from "../walk/denominator.j
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
 import { bestApproximations } from "./approximations.js";
+import { costOf } from "./cost.js";
 import { predictedTraps, quickRate, sampledTraps } from "./holds.js";
 import { readDenominators, type StartOptions } from "./options.js";
-import type { StartResult, Trap } from "./result.js";
+import type { StartResult, Trap, TrapCost } from "./result.js";
 import { kindOf, startVerdict } from "./verdict.js";
 
 export type { StartOptions } from "./options.js";
@@ -38,8 +39,12 @@ function orbitOf(walk: Walk, effort: Effort): { denominator: string; size: Quant
   return { denominator: q.toString(), size: enclosedBetween(Rational.of(seen), all, method) };
 }
 
+/** Denominators with which a start of unproved kind is compared at least. */
+const COMPARED = 1_000_000_000;
+
 interface Search {
   readonly traps: readonly Trap[];
+  readonly cost?: TrapCost;
   readonly search: string;
   /** What the scan proves about a start of unproved kind. */
   readonly checked: string;
@@ -62,14 +67,19 @@ async function searchTraps(
   if (translations >= 2n ** 53n)
     return none(`not searched: the translations' common denominator ${translations} is beyond 2^53`);
   session.progress("approximations", 0, 1);
-  const { records, unresolved } = bestApproximations(point, denominators, translations);
+  // A start that may be rational is compared with all small fractions, whatever traps are asked for.
+  const unproved = kindOf(walk) === "unproved";
+  const most = unproved ? Math.max(denominators, COMPARED) : denominators;
+  const found = bestApproximations(point, most, translations);
+  const { unresolved, searchedTo } = found;
+  const records = found.records.filter((r) => r.denominator <= denominators);
   session.progress("approximations", 1, 1);
   session.checkStop();
   const checked =
     unresolved.length === 0
-      ? `It differs from every rational point with denominator up to ${denominators}.`
+      ? `It differs from every rational point with denominator up to ${searchedTo}.`
       : `It agrees through 4096 bits with a rational point of denominator ${unresolved[0]}.`;
-  const scan = `every denominator up to ${denominators}: records of room / distance`;
+  const scan = `every denominator up to ${Math.min(searchedTo, denominators)}: records of room / distance, by lattice reduction in exact integers`;
   if (slow) {
     return none(
       `${scan}; products grow at most like a power of the number of moves, so that holds follow no exponential rate`,
@@ -81,8 +91,9 @@ async function searchTraps(
   if (!(rate > 1e-9)) return none(`${scan}; no positive growth rate was found, so holds are not predicted`, checked);
   const predicted = predictedTraps(records, rate, await loadReal());
   const sampled = await unlessLimited(sampledTraps(walk, predicted, session), limits);
+  const cost = await costOf(walk, (sampled ?? predicted)[0], session);
   const search = sampled === undefined ? `${scan}; holds were not sampled: ${limits[0]}` : scan;
-  return { traps: sampled ?? predicted, search, checked };
+  return { traps: sampled ?? predicted, ...(cost === undefined ? {} : { cost }), search, checked };
 }
 
 /** The result, or undefined where a stated limit was met: its message is added to `limits`. */
@@ -110,7 +121,7 @@ export async function start(input: WalkInput, options: StartOptions & SharedSess
     const conditions = conditionsOf(walk, finding);
     session.progress("conditions", 1, 1);
     session.checkStop();
-    const { traps, search, checked } =
+    const { traps, cost, search, checked }: Search =
       walk.start.type === "point"
         ? await searchTraps(walk, walk.start.point, denominators, finding.slow, session)
         : { traps: [], search: "not searched: the start is not one point", checked: "" };
@@ -122,6 +133,7 @@ export async function start(input: WalkInput, options: StartOptions & SharedSess
       kind,
       verdict: startVerdict(walk, conditions, checked),
       traps,
+      ...(cost === undefined ? {} : { cost }),
       search,
       ...(orbit === undefined ? {} : { orbit }),
     };

@@ -25,7 +25,7 @@ function liouvilleEvidence(point: readonly ExactNumber[]): Record<string, unknow
     const { degree, polynomial, bound } = liouville(x);
     return [
       {
-        coordinate,
+        coordinate: `x${coordinate + 1}`,
         number: x.text,
         polynomial,
         degree,
@@ -115,7 +115,7 @@ export function startVerdict(walk: Walk, conditions: ConditionsResult, checked: 
     const first = point.findIndex((x) => x.kind === "algebraic");
     return verdict(
       "holds",
-      `Coordinate ${first} is an algebraic irrational, which rational points approximate badly (Liouville's inequality), and the walk equidistributes from every such start: ${equidistribution.reason}`,
+      `The coordinate x${first + 1} is an algebraic irrational, which rational points approximate badly (Liouville's inequality), and the walk equidistributes from every such start: ${equidistribution.reason}`,
       evidence,
     );
   }

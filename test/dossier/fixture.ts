@@ -233,6 +233,13 @@ export function fixture(labels: Labels = TAME): Dossier {
       ...common,
       kind: "algebraic",
       verdict: holds(labels.text),
+      cost: {
+        denominator: 590,
+        numerators: [14, 15],
+        orbitSize: 1234,
+        moves: estimated(10.2, 0.3),
+        observables: [{ label: labels.observable, sum: estimated(0.02, 0.001) }],
+      },
       traps: Array.from({ length: 15 }, (_, i) => {
         const q = 2 + 3 * i * i;
         return {
@@ -240,7 +247,20 @@ export function fixture(labels: Labels = TAME): Dossier {
           numerators: [i, i + 1],
           distance: estimated((0.4 + (i % 4) / 3) * q ** -1.5, q ** -1.5 * 1e-6),
           hold: estimated(1.6 * Math.log(q + 1), 0.3),
-          ...(i % 2 === 0 ? { sampledHold: { replicates: 100, low: i, median: i + 2, high: i + 5 } } : {}),
+          excess: estimated(0.4 - i / 10, 0.1),
+          ...(i % 2 === 0
+            ? {
+                sampledHold: {
+                  replicates: 100,
+                  low: i,
+                  median: i + 2,
+                  high: i + 5,
+                  mean: estimated(i + 2.3, 0.4),
+                  unfinished: 0,
+                  exits: { first: i, counts: [10, 20, 40, 20, 10] },
+                },
+              }
+            : {}),
         };
       }),
     },

@@ -1,10 +1,10 @@
 import { Decimal } from "decimal.js";
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { exactRational } from "../../src/exact/number.js";
+import { type ExactNumber, exactRational } from "../../src/exact/number.js";
 import { Rational } from "../../src/exact/rational.js";
 import { exactFromText, readExact } from "../../src/exact/read.js";
-import { bestApproximations, candidates } from "../../src/start/approximations.js";
+import { bestApproximations } from "../../src/start/approximations.js";
 import { isPoint, nearestNumerators, torusDistance } from "../../src/start/distance.js";
 import { liouville } from "../../src/start/liouville.js";
 
@@ -34,6 +34,29 @@ function brute(point: readonly Rational[], most: number, translations: bigint): 
     if (best !== undefined && value.compare(best) >= 0) continue;
     best = value;
     records.push(Number(q));
+  }
+  return records;
+}
+
+/** Records among all q, by adding x to itself in units of 2^-52: right while no two values agree in five digits. */
+function scan(start: readonly ExactNumber[], most: number, b: number): number[] {
+  const unit = 2 ** 52;
+  const steps = start.map((x) => Number(BigInt.asUintN(52, x.toFixed(52))));
+  const at = steps.map(() => 0);
+  const records: number[] = [];
+  let best = Number.POSITIVE_INFINITY;
+  for (let q = 1; q <= most; q++) {
+    let sum = 0;
+    for (const [j, step] of steps.entries()) {
+      at[j] = (at[j]! + step) % unit;
+      sum += Math.min(at[j]!, unit - at[j]!) ** 2;
+    }
+    let [g, rest] = [b, q % b];
+    while (rest !== 0) [g, rest] = [rest, g % rest];
+    const value = (b / g) * Math.sqrt(sum);
+    if (value >= best * (1 - 1e-5)) continue;
+    best = value;
+    records.push(q);
   }
   return records;
 }
@@ -75,19 +98,36 @@ describe("best approximations", () => {
     expect(found.map((r) => r.denominator)).toEqual(brute(self, 20, 1n));
   });
 
-  it("scan a million denominators in eight dimensions without losing the last records", () => {
-    const start = [2, 3, 5, 7, 11, 13, 17, 19].map((n) => exactFromText(`sqrt(${n})`));
-    const { records } = bestApproximations(start, 1_000_000, 1n);
-    const last = records.at(-1);
-    expect(last).toBeDefined();
-    // No q near the end does better: compared in exact integers.
-    const scaled = (q: number) => {
-      const distance = torusDistance(start, nearestNumerators(start, q), q);
-      return distance!.low.mul(Rational.of(q));
-    };
-    const best = scaled(last!.denominator);
-    for (let q = 999_900; q <= 1_000_000; q++) if (q > last!.denominator) expect(scaled(q).compare(best)).toBe(1);
-    expect(candidates(start, 1000, 1n).length).toBeLessThan(60);
+  it("are those of a scan of every denominator, with translations too", () => {
+    const point = ["sqrt(2)-1", "cbrt(3)-1"];
+    for (const [numbers, b] of [
+      [point, 1],
+      [point, 12],
+      [[2, 3, 5, 7, 11, 13, 17, 19].map((n) => `sqrt(${n})`), 1],
+      [["sqrt(5)", "sqrt(6)", "sqrt(7)"], 30],
+    ] as const) {
+      const start = numbers.map((text) => exactFromText(text));
+      const most = 300_000;
+      const { records, searchedTo } = bestApproximations(start, most, BigInt(b));
+      expect(searchedTo).toBe(most);
+      expect(records.map((r) => r.denominator)).toEqual(scan(start, most, b));
+    }
+  });
+
+  it("reach 10^9 in two to eight dimensions, each better than the one before", () => {
+    for (const d of [2, 3, 8]) {
+      const start = [2, 3, 5, 7, 11, 13, 17, 19].slice(0, d).map((n) => exactFromText(`sqrt(${n})`));
+      const { records, searchedTo } = bestApproximations(start, 1e9, 1n);
+      expect(searchedTo).toBe(1e9);
+      // Dirichlet: some q <= Q has every |q x_j - p_j| at most Q^(-1/d).
+      const last = records.at(-1)!;
+      const off = last.distance.low.mul(Rational.of(last.denominator)).toNumber();
+      expect(off).toBeLessThan(Math.sqrt(d) * 1e9 ** (-1 / d));
+      for (const [i, r] of records.slice(1).entries()) {
+        const value = (a: typeof r, end: "low" | "high") => a.distance[end].mul(Rational.of(a.denominator));
+        expect(value(r, "high").compare(value(records[i]!, "low"))).toBe(-1);
+      }
+    }
   });
 
   it("report a number that cannot be told from a fraction", () => {

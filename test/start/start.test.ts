@@ -130,10 +130,41 @@ describe("start", () => {
     expect(trap.hold.value as number).toBeGreaterThan(38);
     expect(trap.hold.value as number).toBeLessThan(40.5);
     expect(Math.abs(median - (trap.hold.value as number))).toBeLessThan(4);
+    const { mean, exits, replicates, unfinished } = trap.sampledHold!;
+    expect(exits.counts.reduce((a, b) => a + b)).toBe(replicates);
+    expect(unfinished).toBe(0);
+    expect(exits.counts.reduce((s, n, i) => s + n * (exits.first + i), 0) / replicates).toBeCloseTo(
+      Number(mean.value),
+      9,
+    );
     expect(low).toBeLessThanOrEqual(median);
     expect(median).toBeLessThanOrEqual(high);
     const holds = traps.map((t) => Number(t.hold.value));
     expect(holds).toEqual([...holds].sort((a, b) => b - a));
+  });
+
+  it("says what the first trap costs an average, as sampled walks see it", async () => {
+    const walk = {
+      ...document(["0.3333333333333333333333333", "0.5"]),
+      observables: [{ label: "wave", terms: [{ frequency: [0, 2], cos: "1" }] }],
+    };
+    const { cost, traps } = await start(walk, { ...here, denominators: 20 });
+    expect(cost).toMatchObject({ denominator: 6, numerators: [2, 3], orbitSize: 24 });
+    // The 24 points whose denominator is exactly 6 are one orbit: the cosine is summed over them.
+    let sum = 0;
+    const gcd = (a: number, b: number): number => (b === 0 ? a : gcd(b, a % b));
+    for (let a = 0; a < 6; a++) {
+      for (let b = 0; b < 6; b++) if (gcd(gcd(a, b), 6) === 1) sum += Math.cos((4 * Math.PI * b) / 6);
+    }
+    const hold = Number(traps[0]!.sampledHold!.mean.value);
+    expect(Number(cost!.observables[0]!.sum.value)).toBeCloseTo((hold * sum) / 24, 8);
+  });
+
+  it("checks a start of unproved kind against every denominator up to 10^9", async () => {
+    const result = await ask(["pi", "e"]);
+    expect(result.verdict.verdict).toBe("undecided");
+    expect(result.verdict.reason).toContain("denominator up to 1000000000");
+    expect(Math.max(...result.traps.map((t) => t.denominator))).toBeLessThanOrEqual(200);
   });
 
   it("takes eight dimensions, translations, determinant -1 and one move", async () => {
@@ -193,10 +224,10 @@ describe("start", () => {
   it("gives the same for any number of workers, and refuses wrong options", async () => {
     const at = ["sqrt(2)-1", "sqrt(3)-1"];
     expect(await ask(at, tray, undefined, { workers: 2 })).toEqual(await ask(at));
-    for (const denominators of [0, 1.5, 1e8]) {
+    for (const denominators of [0, 1.5, 1e10]) {
       await expect(ask(at, tray, undefined, { denominators })).rejects.toThrow(OptionsError);
       await expect(ask(at, tray, undefined, { denominators })).rejects.toThrow(
-        `--denominators: found ${denominators}; accepted: a whole number from 1 to 10000000`,
+        `--denominators: found ${denominators}; accepted: a whole number from 1 to 1000000000`,
       );
     }
   });

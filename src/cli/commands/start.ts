@@ -17,7 +17,7 @@ export const startQuestion: Question<{ denominators?: number }> = {
   summary: "whether this start is safe, or near a rational trap",
   examples: ["torwend start examples/tray.json --denominators 500"],
   options: [
-    { flags: "--denominators <q>", text: "largest denominator of traps looked for (default: 1000)", read: whole },
+    { flags: "--denominators <q>", text: "largest denominator of traps looked for (default: 1000, at most 10^9)", read: whole },
   ],
   ask: async ({ walk, values, common }) => {
     const result = await start(walk, { ...common, ...values });
@@ -31,15 +31,28 @@ export const startQuestion: Question<{ denominators?: number }> = {
         sampled === undefined
           ? ""
           : `${number(sampled.median, 3)} (${number(sampled.low, 3)} to ${number(sampled.high, 3)})`;
-      return [String(t.denominator), `(${t.numerators.join(", ")})`, distance, standing, hold, cells(t.hold)[2], seen];
+      const excess = t.excess === undefined ? "" : number(quantityNumber(t.excess), 3);
+      const point = [String(t.denominator), `(${t.numerators.join(", ")})`, distance, standing];
+      return [...point, hold, excess, cells(t.hold)[2], seen];
     });
-    const head = ["denominator", "numerators", "distance", "standing", "hold in moves", "standing", "sampled hold"];
+    const head = ["denominator", "numerators", "distance", "standing"];
+    head.push("hold in moves", "beyond the usual", "standing", "sampled hold");
+    const cost =
+      result.cost &&
+      block(
+        `What the first trap costs: averages over n moves are off by this over n (${number(quantityNumber(result.cost.moves), 3)} moves beside an orbit of ${result.cost.orbitSize} points, estimated)`,
+        table(
+          ["observable", "sum of f - mean"],
+          result.cost.observables.map(({ label, sum }) => [label, number(quantityNumber(sum), 4)]),
+        ),
+      );
     const text = page(result.walk, [
       `The start is ${KINDS[result.kind] ?? result.kind}.`,
       verdict("equidistribution from this start", result.verdict),
       result.orbit &&
         `Denominator ${result.orbit.denominator}; points of its orbit: ${quantity(result.orbit.size, true)}.`,
       rows.length === 0 ? undefined : block("Rational traps, longest hold first", table(head, rows)),
+      cost,
       result.search === undefined ? undefined : paragraph(`Looked for: ${result.search}.`, 0),
     ]);
     return { result, text };

@@ -11,7 +11,7 @@ import { prose } from "./prose.js";
 
 const KINDS = {
   rational: "every coordinate is rational",
-  algebraic: "some coordinate is proved to be an irrational algebraic number, and every coordinate is algebraic",
+  algebraic: "at least one coordinate is a proved algebraic irrational",
   unproved: "some coordinate could be proved neither rational nor algebraic",
   uniform: "drawn from the uniform (Haar) measure",
   density: "drawn from a given density",
@@ -44,24 +44,45 @@ function trapsTable(dossier: Dossier): Html | undefined {
     "hold",
     start.traps.map((t) => t.hold),
   );
+  const excess = quantityColumn(
+    "beyond the usual",
+    start.traps.flatMap((t) => t.excess ?? []),
+  );
+  const usual = start.traps.every((t) => t.excess !== undefined);
   const rows = start.traps.slice(0, most).map((t) => {
     const s = t.sampledHold;
-    return html`${number(t.denominator)}<td>(${t.numerators.map((n) => brief(n)).join(", ")})</td>${distance.show(t.distance)}${hold.show(t.hold)}${
+    return html`${number(t.denominator)}<td>(${t.numerators.map((n) => brief(n)).join(", ")})</td>${distance.show(t.distance)}${hold.show(t.hold)}${usual && t.excess !== undefined && excess.show(t.excess)}${
       sampled &&
       html`<td class="n">${s === undefined ? "–" : `${brief(s.median)} (${brief(s.low)} to ${brief(s.high)})`}</td>`
     }`;
   });
   const left = start.traps.length - rows.length;
   return table(
-    html`Rational points near the start, by predicted hold${left > 0 ? `; the ${most} strongest of ${start.traps.length}` : ""}. Hold in moves${sampled ? "; sampled hold: median (quantiles) over exact walks" : ""}.`,
+    html`Rational points near the start, by predicted hold${left > 0 ? `; the ${most} strongest of ${start.traps.length}` : ""}. Hold in moves${usual ? "; beyond the usual: less the hold of a point on the dashed line below, such as every irrational start has" : ""}${sampled ? "; sampled hold: median (quantiles) over exact walks" : ""}.`,
     [
       { name: "denominator", n: true },
       { name: "numerators" },
       distance.column,
       hold.column,
+      ...(usual ? [excess.column] : []),
       ...(sampled ? [{ name: "sampled hold", n: true }] : []),
     ],
     rows,
+  );
+}
+
+function costTable(dossier: Dossier): Html | undefined {
+  const start = dossier.start;
+  if (!isAnswered(start) || start.cost === undefined) return undefined;
+  const { cost } = start;
+  const sums = quantityColumn(
+    "sum of f − mean",
+    cost.observables.map((o) => o.sum),
+  );
+  return table(
+    html`What the trap with denominator ${brief(cost.denominator)} costs: for ${quantity(cost.moves)} moves averages are those of its orbit of ${brief(cost.orbitSize)} points, so that an average over <i>n</i> moves from this start is off by the sum below over <i>n</i>.`,
+    [{ name: "observable" }, sums.column],
+    cost.observables.map((o) => html`<th scope="row">${o.label}</th>${sums.show(o.sum)}`),
   );
 }
 
@@ -77,6 +98,7 @@ ${missing(start)}</section>
 ${shownEvidence !== undefined && html`<details open><summary>Evidence</summary>${shownEvidence}</details>\n`}
 ${start.orbit !== undefined && html`<p>Denominator ${start.orbit.denominator}, an orbit whose number of points is ${quantity(start.orbit.size)}: time averages converge to the orbit's mean, not to the integral over the torus.</p>\n`}
 ${trapsTable(dossier)}
+${costTable(dossier)}
 ${trapsPlot(start, dimension)}
 </section>
 `;
