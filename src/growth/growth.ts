@@ -17,6 +17,7 @@ import { exponentEstimates, logNormVariance, type RateEstimate } from "./interva
 import { type PlanarGroup, planarGroup } from "./lines.js";
 import { type GrowthOptions, type GrowthWishes, readOptions } from "./options.js";
 import { samplingPlan } from "./plan.js";
+import { enclosePlanar } from "./planar.js";
 import { provePositive } from "./positive/findings.js";
 import {
   type PressureEstimator,
@@ -87,7 +88,8 @@ async function sampled(
   const light = proof?.exponents.every((q) => q !== undefined) === true;
   const full = samplingPlan(table, light ? "quick" : session.effort, wishes.steps);
   const plan = light ? { ...full, replicates: Math.min(full.replicates, 64) } : full;
-  const tolerance = proof === undefined ? wishes.tolerance : undefined;
+  const planar = proof === undefined ? await enclosePlanar(walk, session) : undefined;
+  const tolerance = proof === undefined && planar === undefined ? wishes.tolerance : undefined;
   const samples = await sampleReplicates(session, table, plan, tolerance);
   const { estimates, residual } = exponentEstimates(samples, session.level);
   const variance = logNormVariance(samples, session.level, real);
@@ -102,12 +104,22 @@ async function sampled(
   }
   const exponents = exponentQuantities(walk.dimension, widened, samples, session.level);
   const top = widened[0] as RateEstimate;
-  const bounds = proof !== undefined ? {} : await enumeratedBounds(walk, session, real);
+  const bounds =
+    proof !== undefined
+      ? {}
+      : planar !== undefined
+        ? { enclosure: planar }
+        : await enumeratedBounds(walk, session, real);
   const enclosed = proof?.exponents[0] ?? bounds.enclosure;
   const biased = excludes(top, enclosed, bounds.upperBound?.value);
   if (biased) {
     warnings.push(
       `sampling in doubles is biased here: it gives ${top.value} for the top exponent, ${top.halfWidth.toPrecision(2)} either way, which is proved impossible`,
+    );
+  }
+  if (planar !== undefined && wishes.tolerance !== undefined && widthOf(planar) > 2 * wishes.tolerance) {
+    warnings.push(
+      `the top exponent is enclosed to ${(widthOf(planar) / 2).toPrecision(2)}, not to the wanted ${wishes.tolerance}: this proof works in doubles`,
     );
   }
   const narrow = enclosed !== undefined && (biased || widthOf(enclosed) <= 2 * top.halfWidth);

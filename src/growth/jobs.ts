@@ -1,7 +1,12 @@
-/** The jobs of `growth`: a few replicates' logarithms, the pressure at one s, or bounds by enumeration. */
+/** The jobs of `growth`: a few replicates' logarithms, the pressure at one s, bounds by enumeration or by words of the modular group. */
+
+import { Rational } from "../exact/rational.js";
 import { type GrowthRun, type GrowthTable, sampleGrowth } from "../kernel/growth.js";
 import { defineJob } from "../kernel/jobs.js";
 import { loadKernel } from "../kernel/kernel.js";
+import { loadReal } from "../kernel/real.js";
+import { encloseExponent } from "../modular/exponent.js";
+import type { Matrix2 } from "../modular/words.js";
 import { type PopulationRun, populationPressure } from "./population.js";
 import { runWords, type WordsJob } from "./words.js";
 
@@ -21,3 +26,19 @@ export const populationJob = defineJob("growth.population", (run: PopulationRun)
 
 /** Bounds of lambda_1, or of n times an upper bound of it, by enumeration of words. */
 export const wordsJob = defineJob("growth.words", (job: WordsJob) => runWords(job));
+
+export interface ExponentJob {
+  readonly matrices: readonly Matrix2[];
+  readonly probabilities: readonly { readonly num: bigint; readonly den: bigint }[];
+  readonly work: number;
+}
+
+/** Dimension 2: lambda_1 between bounds, or undefined. */
+export const exponentJob = defineJob("growth.exponent", async ({ matrices, probabilities, work }: ExponentJob) =>
+  encloseExponent(
+    matrices,
+    probabilities.map((p) => Rational.of(p.num, p.den)),
+    await loadReal(),
+    work,
+  ),
+);
