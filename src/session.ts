@@ -6,6 +6,7 @@
 import { LimitError, OptionsError, StoppedError } from "./errors.js";
 import { DEFAULT_MEMORY_LIMIT } from "./kernel/kernel.js";
 import { Pool } from "./kernel/pool.js";
+import { Remaining } from "./remaining.js";
 
 export type Effort = "quick" | "standard" | "thorough";
 
@@ -14,6 +15,8 @@ export interface Progress {
   readonly stage: string;
   readonly done: number;
   readonly total: number;
+  /** What the stage will still take at the pace it has shown, in seconds; absent while that cannot be told. */
+  readonly secondsLeft?: number;
 }
 
 /** Options of every question. */
@@ -38,7 +41,8 @@ export interface Session {
   readonly memoryLimit: number;
   readonly pool: Pool;
   readonly signal: AbortSignal | undefined;
-  progress(stage: string, done: number, total: number): void;
+  /** @param secondsLeft where the pieces of work are uneven, null for unknown; default: told from those that are done */
+  progress(stage: string, done: number, total: number, secondsLeft?: number | null): void;
   /** @throws StoppedError once the signal has fired. Call between pieces of long in-thread work. */
   checkStop(): void;
 }
@@ -75,6 +79,7 @@ export function openSession(options: CommonOptions): Session {
     ["AbortError", StoppedError],
   ]);
   const { signal, onProgress } = options;
+  const remaining = new Remaining();
   return {
     seed,
     effort,
@@ -82,7 +87,8 @@ export function openSession(options: CommonOptions): Session {
     memoryLimit,
     pool: new Pool(workers, known),
     signal,
-    progress: (stage, done, total) => onProgress?.({ stage, done, total }),
+    progress: (stage, done, total, secondsLeft = remaining.left(stage, done, total)) =>
+      onProgress?.({ stage, done, total, ...(typeof secondsLeft === "number" ? { secondsLeft } : {}) }),
     checkStop: () => {
       if (signal?.aborted) throw new StoppedError();
     },

@@ -47,7 +47,8 @@ export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise
     for (let r = 0; r < count; r++) {
       const out = sums.subarray(r * stride, (r + 1) * stride);
       const { blocks } = await openPath(sampledWalk(walk), { ...path, replicate: first + r });
-      for (const block of blocks(0)) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
+      for (const block of blocks(0))
+        if (block !== undefined) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
     }
     return sums;
   }

@@ -8,6 +8,14 @@ export interface ProgressView {
   readonly end: () => void;
 }
 
+/** In words, rounded up to what a reader can use; nothing for less than a second. */
+export function timeLeft(seconds: number | undefined): string {
+  if (seconds === undefined || seconds < 1) return "";
+  if (seconds < 100) return `, about ${Math.ceil(seconds)} s left`;
+  if (seconds < 6000) return `, about ${Math.ceil(seconds / 60)} min left`;
+  return `, about ${Math.ceil(seconds / 3600)} h left`;
+}
+
 function bar(stream: Sink): ProgressView {
   let drawn: SingleBar | undefined;
   let stage = "";
@@ -20,7 +28,7 @@ function bar(stream: Sink): ProgressView {
       end();
       stage = p.stage;
       drawn = new SingleBar({
-        format: "{stage} [{bar}] {percentage} %",
+        format: "{stage} [{bar}] {percentage} %{left}",
         barCompleteChar: "=",
         barIncompleteChar: " ",
         barsize: 30,
@@ -30,10 +38,10 @@ function bar(stream: Sink): ProgressView {
         gracefulExit: false,
         stream: stream as NodeJS.WritableStream,
       });
-      drawn.start(Math.max(1, p.total), p.done, { stage });
+      drawn.start(Math.max(1, p.total), p.done, { stage, left: timeLeft(p.secondsLeft) });
     }
     drawn.setTotal(Math.max(1, p.total));
-    drawn.update(p.done, { stage });
+    drawn.update(p.done, { stage, left: timeLeft(p.secondsLeft) });
   };
   return { show, end };
 }
@@ -41,9 +49,9 @@ function bar(stream: Sink): ProgressView {
 /** One line a stage and tenth. */
 function lines(stream: Sink): ProgressView {
   let last = "";
-  const show = ({ stage, done, total }: Progress) => {
+  const show = ({ stage, done, total, secondsLeft }: Progress) => {
     const line = `${stage}: ${total > 0 ? Math.min(100, 10 * Math.floor((10 * done) / total)) : 0} %`;
-    if (line !== last) stream.write(`${line}\n`);
+    if (line !== last) stream.write(`${line}${timeLeft(secondsLeft)}\n`);
     last = line;
   };
   return { show, end: () => undefined };

@@ -22,6 +22,7 @@ import { writeLimbs } from "./bigint.js";
 import type { Kernel } from "./kernel.js";
 import type { WindowTable } from "./trajectory.js";
 import { keepsTransforms, type Span, treeMemory } from "./tree-memory.js";
+import { type TreeCosts, treeWork, workCosts } from "./tree-work.js";
 
 /** A product in doubles, for bounds: entries 2^exponent, within radius 2^exponent. */
 interface Rough {
@@ -69,10 +70,13 @@ interface Point {
 export interface TreeBlock {
   /** The first position's number. */
   readonly first: number;
+  /** 0 between products: nothing to read, but a moment at which the walk may be left waiting. */
   readonly rows: number;
   /** rows x dimension x words 64-bit words. */
   readonly positions: BigUint64Array<ArrayBuffer>;
 }
+
+const PAUSE: TreeBlock = { first: 0, rows: 0, positions: new BigUint64Array(0) };
 
 const NOTE_BYTES = 16;
 /** Plans of batches are kept up to this, made anew beyond. */
@@ -111,18 +115,22 @@ export class TreeRun {
   private readonly plans = new Map<number, number>();
   private readonly shapes = new Map<Span, Shape>();
   private readonly root: Span;
-  private integers = 0;
+  private readonly integers: number;
+  private readonly digits: number;
   private firstLeaf = 0;
   /** Leaves of the largest span whose transforms are kept. */
   private keep = 1;
   private constants: Point = { top: 0, stride: 0, limbs: 0 };
+  private readonly work: TreeCosts;
+  private workDone = 0;
+  private workTotal: number;
 
   /**
    * @param choices the moves, u16, all of them
    * @param words 64-bit words of each coordinate of a position
    * @param leafMoves moves of a leaf; by default what makes products of some 900 bits
    * @param comfort bytes up to which transforms are kept rather than made again
-   * @throws LimitError
+   * @throws LimitError before any memory is taken that does not fit
    */
   constructor(
     private readonly kernel: Kernel,
@@ -175,6 +183,12 @@ export class TreeRun {
     this.root = this.join(leaves, 0, this.leaves).span;
     this.stateLimbs = widest + 2;
     this.state = kernel.alloc(4 * this.stateLimbs * inputs, "a leaf's digits");
+    this.digits = kernel.alloc(8 * this.limbs * inputs, "the start's digits");
+    this.makePlans();
+    this.integers = kernel.alloc(this.integerBytes(), "the products of moves");
+    this.planMemory();
+    this.work = workCosts(dimension, inputs, leafMoves, this.keep, (span) => this.shape(span).length);
+    this.workTotal = treeWork(this.root, 0, this.work);
   }
 
   readonly steps: number;
@@ -187,6 +201,11 @@ export class TreeRun {
   /** 64-bit limbs that each fraction of the start and each constant must have. */
   get limbs(): number {
     return limbsFor(this.root);
+  }
+
+  /** The walk's work and how much of it is done, in seconds of the machine that the costs were measured on. */
+  get progress(): { readonly done: number; readonly total: number } {
+    return { done: this.workDone, total: this.workTotal };
   }
 
   private count(leaf: number): number {
@@ -235,31 +254,30 @@ export class TreeRun {
   }
 
   /**
-   * Walks from the start: `digits` holds, for each component (coordinates, then constants),
+   * Walks from the start: `start` holds, for each component (coordinates, then constants),
    * floor(x 2^(64 limbs)) modulo 2^(64 limbs). With `from`, the walk goes to that move by
    * products alone, and blocks begin with the leaf that it is in.
-   * @throws LimitError before any memory is taken that does not fit
    */
-  *walk(digits: readonly bigint[], from = 0): Generator<TreeBlock, void, void> {
-    const { kernel, inputs, limbs } = this;
+  *walk(start: readonly bigint[], from = 0): Generator<TreeBlock, void, void> {
+    const { kernel, limbs, digits: at } = this;
     const stride = 8 * limbs;
-    const at = kernel.alloc(stride * inputs, "the start's digits");
-    this.makePlans();
-    this.integers = kernel.alloc(this.integerBytes(), "the products of moves");
-    this.planMemory();
-    for (const [j, x] of digits.entries()) writeLimbs(kernel, at + j * stride, limbs, x);
-    const start = { top: at + stride, stride, limbs };
-    this.constants = { top: start.top + this.d * stride, stride, limbs };
+    for (const [j, x] of start.entries()) writeLimbs(kernel, at + j * stride, limbs, x);
+    const point = { top: at + stride, stride, limbs };
+    this.constants = { top: point.top + this.d * stride, stride, limbs };
     this.jointLeaf = -1;
     this.firstLeaf = Math.min(this.leaves - 1, Math.floor(from / this.leafMoves));
-    yield* this.node(this.root, start, undefined);
+    this.workDone = 0;
+    this.workTotal = treeWork(this.root, this.firstLeaf, this.work);
+    yield* this.node(this.root, point, undefined);
     this.kernel.raw.windowEmit(this.window, this.out);
     yield { first: this.steps, rows: 1, positions: kernel.u64(this.out, this.d * this.words) };
   }
 
   private *node(span: Span, point: Point, built: Built | undefined): Generator<TreeBlock, void, void> {
     if (span.halves === undefined) {
-      yield this.leaf(span.from, point);
+      const block = this.leaf(span.from, point);
+      this.workDone += this.work.walkLeaf();
+      yield block;
       return;
     }
     const [left, right] = span.halves;
@@ -270,12 +288,14 @@ export class TreeRun {
     const at = this.kernel.alloc(stride * this.d, "a point on the way");
     const after = raw.mark();
     const whole = built?.halves !== undefined ? built : undefined;
-    const leftBuilt = whole?.halves?.[0] ?? this.build(left, this.integers);
+    const leftBuilt = whole?.halves?.[0] ?? (yield* this.build(left, this.integers));
     const product = whole?.left ?? leftBuilt;
     const lost =
       "plan" in product
         ? this.apply(product, cutHere, at, stride)
         : this.kernel.scoped(() => this.apply(this.transform(span, product), cutHere, at, stride));
+    this.workDone += this.work.apply(span, whole !== undefined);
+    yield PAUSE;
     if (left.to > this.firstLeaf) yield* this.node(left, cutHere, leftBuilt);
     raw.release(after);
     const moved = { top: at + stride, stride, limbs: cutHere.limbs - lost };
@@ -321,21 +341,29 @@ export class TreeRun {
   }
 
   /** Forms a span's product; its entries go to `to`, on the integer stack. */
-  private build(span: Span, to: number): Built {
-    if (span.halves === undefined) return this.buildLeaf(span, to);
+  private *build(span: Span, to: number): Generator<TreeBlock, Built, void> {
+    if (span.halves === undefined) {
+      this.workDone += this.work.buildLeaf();
+      return this.buildLeaf(span, to);
+    }
     const [left, right] = span.halves;
-    const l = this.build(left, to);
+    const l = yield* this.build(left, to);
     const bytes = this.entryBytes(l.limbs);
     if (keepsTransforms(span, this.keep)) {
       const transforms = this.transform(span, l);
-      const r = this.build(right, to + bytes);
-      return { ...this.multiply(transforms, l, r, to), halves: [l, r], left: transforms };
+      const r = yield* this.build(right, to + bytes);
+      const product = this.multiply(transforms, l, r, to);
+      this.workDone += this.work.multiply(span);
+      yield PAUSE;
+      return { ...product, halves: [l, r], left: transforms };
     }
     const { kernel } = this;
     const copy = kernel.alloc(bytes, "a product of moves");
     kernel.u8(copy, bytes).set(kernel.u8(l.entries, bytes));
-    const r = this.build(right, to + bytes);
+    const r = yield* this.build(right, to + bytes);
     const product = kernel.scoped(() => this.multiply(this.transform(span, l, false), l, r, to));
+    this.workDone += this.work.multiply(span);
+    yield PAUSE;
     return { ...product, halves: [l, r], left: { entries: copy, limbs: l.limbs, bits: l.bits } };
   }
 

@@ -11,6 +11,7 @@ import { TreeRun } from "../kernel/tree.js";
 import type { Walk } from "../walk/walk.js";
 import { FractionBlock, type PositionBlock, WordBlock, wordsFor } from "./block.js";
 import { binaryFloor, startDigits, uniformFloor } from "./digits.js";
+import type { Share } from "./pace.js";
 import { type RationalWalk, rationalWalk, residueTable, windowTable } from "./table.js";
 
 export interface PathOptions {
@@ -35,13 +36,16 @@ export interface Path {
   readonly bitsHeld?: number;
   /** Bits that the moves consume at most, from the plan. */
   readonly consumes?: number;
+  /** How much of its work the path has done. */
+  readonly work: () => Share;
   /**
-   * Positions in order, up to number `steps`. A pause is safe between blocks: each is some ten
-   * milliseconds of work (before the first one of a tree there is more).
+   * Positions in order, up to number `steps`; undefined: no position yet, but a moment to
+   * breathe. Between two of these are some ten milliseconds of work (for a tree up to a
+   * second: one number's digits, one of its largest products).
    * @param from where the first block ends later: blocks are cut alike whatever it is, and
    * those that end before it are left out
    */
-  blocks(from: number): Generator<PositionBlock, void>;
+  blocks(from: number): Generator<PositionBlock | undefined, void>;
 }
 
 /** Positions of one block at most, and bytes that their words may take. */
@@ -58,13 +62,21 @@ export async function openPath(walk: Walk, options: PathOptions): Promise<Path> 
     rational === undefined
       ? realPath(walk, options, kernel)
       : (residuePath(walk, options, kernel, rational) ?? fractionPath(walk, options, kernel, rational));
-  return { ...path, blocks: (from) => after(path.blocks(from), from) };
+  let reached = 0;
+  return {
+    ...path,
+    work: path.work ?? (() => ({ done: reached, total: options.steps + 1 })),
+    *blocks(from) {
+      for (const block of path.blocks(from)) {
+        if (block !== undefined) reached = block.first + block.rows;
+        yield block !== undefined && reached > from ? block : undefined;
+      }
+    },
+  };
 }
 
-/** The blocks that end after `from`. */
-function* after(blocks: Generator<PositionBlock, void>, from: number): Generator<PositionBlock, void> {
-  for (const block of blocks) if (block.first + block.rows > from) yield block;
-}
+/** A path whose work is known by its positions, or better. */
+type BarePath = Omit<Path, "work"> & Partial<Pick<Path, "work">>;
 
 /** The draws of the replicate. */
 function drawAll(walk: Walk, kernel: Kernel, { seed, replicate = 0, steps }: PathOptions): Uint16Array {
@@ -81,7 +93,7 @@ const TREE_BITS = 100_000;
 const SAMPLE = 8192;
 
 /** From an irrational or a uniform point. */
-function realPath(walk: Walk, options: PathOptions, kernel: Kernel): Path {
+function realPath(walk: Walk, options: PathOptions, kernel: Kernel): BarePath {
   const { table, constants } = windowTable(walk);
   const choices = options.choices ?? drawAll(walk, kernel, options);
   const sample = Math.min(SAMPLE, choices.length);
@@ -100,6 +112,10 @@ function startPoint(walk: Walk): readonly (ExactNumber | undefined)[] {
   return walk.start.type === "point" ? walk.start.point : new Array<undefined>(walk.dimension).fill(undefined);
 }
 
+/** Seconds that a bit of a number's digits takes, as src/kernel/tree-work.ts counts them: by evaluation, else. */
+const EVALUATED_BIT = 6e-8;
+const READ_BIT = 2e-9;
+
 function treePath(
   walk: Walk,
   { seed, replicate = 0, steps, digits }: PathOptions,
@@ -107,25 +123,36 @@ function treePath(
   table: WindowTable,
   constants: readonly ExactNumber[],
   choices: Uint16Array,
-): Path {
+): BarePath {
   const words = wordsFor(digits);
   const d = walk.dimension;
   const run = new TreeRun(kernel, table, choices, words);
+  const numbers = [...startPoint(walk), ...constants];
+  const bits = 64 * run.limbs;
+  const digitsCost = (x: ExactNumber | undefined) =>
+    bits * (x === undefined || x.rational !== undefined ? READ_BIT : EVALUATED_BIT);
+  const digitsTotal = numbers.reduce((sum, x) => sum + digitsCost(x), 0);
+  let digitsDone = 0;
   return {
     method: "divide and conquer over the moves, bits from the products of the moves drawn",
     exact: false,
     choices,
-    bitsHeld: 64 * run.limbs,
+    bitsHeld: bits,
     consumes: run.consumes,
+    work: () => ({ done: digitsDone + run.progress.done, total: digitsTotal + run.progress.total }),
     *blocks(from) {
-      const bits = 64 * run.limbs;
-      const start = [...startPoint(walk), ...constants].map((x, j) =>
-        x === undefined
-          ? uniformFloor(kernel, seed, replicate, j, run.limbs)
-          : BigInt.asUintN(bits, binaryFloor(x, bits)),
-      );
+      const start: bigint[] = [];
+      for (const [j, x] of numbers.entries()) {
+        yield undefined;
+        start.push(
+          x === undefined
+            ? uniformFloor(kernel, seed, replicate, j, run.limbs)
+            : BigInt.asUintN(bits, binaryFloor(x, bits)),
+        );
+        digitsDone += digitsCost(x);
+      }
       for (const { first, rows, positions } of run.walk(start, from)) {
-        if (rows > 0) yield new WordBlock(first, Math.min(rows, steps + 1 - first), d, words, positions);
+        yield rows === 0 ? undefined : new WordBlock(first, Math.min(rows, steps + 1 - first), d, words, positions);
       }
     },
   };
@@ -138,7 +165,7 @@ function windowPath(
   table: WindowTable,
   constants: readonly ExactNumber[],
   choices: Uint16Array,
-): Path {
+): BarePath {
   const { seed, replicate = 0, steps, digits } = options;
   const words = wordsFor(digits);
   const d = walk.dimension;
@@ -169,7 +196,7 @@ function windowPath(
   };
 }
 
-function residuePath(walk: Walk, options: PathOptions, kernel: Kernel, rational: RationalWalk): Path | undefined {
+function residuePath(walk: Walk, options: PathOptions, kernel: Kernel, rational: RationalWalk): BarePath | undefined {
   const table = residueTable(walk, rational);
   if (table === undefined) return undefined;
   const d = walk.dimension;
@@ -194,7 +221,7 @@ function residuePath(walk: Walk, options: PathOptions, kernel: Kernel, rational:
 }
 
 /** Numerators beyond machine words. */
-function fractionPath(walk: Walk, options: PathOptions, kernel: Kernel, rational: RationalWalk): Path {
+function fractionPath(walk: Walk, options: PathOptions, kernel: Kernel, rational: RationalWalk): BarePath {
   const { denominator: q, start, translations } = rational;
   const d = walk.dimension;
   const { steps } = options;

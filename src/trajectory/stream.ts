@@ -4,6 +4,7 @@ import { type CommonOptions, openSession, type Session } from "../session.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { PositionBlock } from "./block.js";
 import { readOptions } from "./options.js";
+import { Pace } from "./pace.js";
 import { openPath, type Path } from "./paths.js";
 import { refuseDensity } from "./walker.js";
 
@@ -14,24 +15,49 @@ function breathe(): Promise<void> {
   return new Promise((resolve) => setTimeout(resolve, 0));
 }
 
-/** The blocks of a path that end after position `from`, with breaths. @throws StoppedError between blocks */
+/** The progress of a walk is told in thousandths of the time that it is expected to take. */
+const WHOLE = 1000;
+
+/**
+ * The blocks of a path that end after position `from`, with breaths.
+ * @param reader whether whoever takes the blocks does more with them than look
+ * @throws StoppedError between blocks, and while a long walk multiplies its moves out
+ */
 export async function* stream(
   path: Path,
   from: number,
   steps: number,
   session: Session,
+  reader = true,
 ): AsyncGenerator<PositionBlock, void> {
+  const pace = new Pace();
+  const rows = { done: 0, total: steps + 1 - from };
   let breath = performance.now();
+  let told = 0;
   for (const block of path.blocks(from)) {
+    pace.walked();
     session.checkStop();
-    yield block;
+    if (block !== undefined) {
+      yield block;
+      pace.read();
+      rows.done = Math.max(0, block.first + block.rows - from);
+    }
     if (performance.now() - breath > BREATH) {
-      session.progress("walking", block.first + block.rows, steps + 1);
+      const work = path.work();
+      const left = pace.secondsLeft(work, reader ? rows : undefined);
+      if (left === undefined) {
+        // How fast the reader is has yet to be seen.
+        session.progress("preparing the walk", Math.floor((WHOLE * work.done) / work.total), WHOLE, null);
+      } else {
+        told = Math.max(told, Math.floor((WHOLE * pace.seconds) / (pace.seconds + left)));
+        session.progress("walking", told, WHOLE, left);
+      }
       await breathe();
+      pace.walked();
       breath = performance.now();
     }
   }
-  session.progress("walking", steps + 1, steps + 1);
+  session.progress("walking", WHOLE, WHOLE, 0);
 }
 
 export interface PositionsOptions extends CommonOptions {

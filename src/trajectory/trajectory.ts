@@ -27,7 +27,7 @@ async function collect(
   if (next < 0) next = at.length;
   const state = () => ({ rows, positions: [...positions] });
   try {
-    for await (const block of stream(path, rows, steps, session)) {
+    for await (const block of stream(path, rows, steps, session, sink !== undefined)) {
       if (block.first !== rows) throw new Error(`the walk went on at move ${block.first}, not ${rows}`);
       for (; next < at.length && (at[next] as number) < block.first + block.rows; next++) {
         const step = at[next] as number;
@@ -35,7 +35,7 @@ async function collect(
         const point = block.decimals(row, digits);
         positions.push({ step, point, ...(block.fractions ? { fractions: block.fractions(row) } : {}) });
       }
-      if (sink === undefined && next === at.length) break;
+      if (sink === undefined && next === at.length && block.first + block.rows <= steps) break;
       await sink?.write(block);
       rows = block.first + block.rows;
       await sink?.save?.(state);
