@@ -32,7 +32,7 @@ export function workCosts(
 ): TreeCosts {
   const transforms = (span: Span, count: number) => {
     const n = length(span);
-    return TRANSFORM * count * n * Math.log2(n + 2);
+    return TRANSFORM * count * n * (32 - Math.clz32(n));
   };
   return {
     buildLeaf: () => BUILD_MOVE * leafMoves * d * inputs,
