@@ -38,7 +38,7 @@ export function sampledWalk(walk: Walk): Walk {
 export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise<Float64Array<ArrayBuffer>> {
   const { seed, steps, first, count, ends, memoryLimit } = request;
   const options = { memoryLimit, ...(request.target === undefined ? {} : { target: request.target }) };
-  const observer = new Observer(await loadKernel(options), observeProgram(walk));
+  const program = observeProgram(walk);
   const stride = walk.observables.length * ends.length;
   const sums = new Float64Array(count * stride);
   if (steps > HELD_MOVES) {
@@ -46,12 +46,17 @@ export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise
     const path = { seed, steps: steps - 1, digits: 1, memoryLimit };
     for (let r = 0; r < count; r++) {
       const out = sums.subarray(r * stride, (r + 1) * stride);
-      const { blocks } = await openPath(sampledWalk(walk), { ...path, replicate: first + r });
-      for (const block of blocks(0))
+      // In one kernel, so that the sums are formed where the positions are.
+      const kernel = await loadKernel(options);
+      const observer = new Observer(kernel, program);
+      const { blocks } = await openPath(sampledWalk(walk), { ...path, replicate: first + r, kernel });
+      for (const block of blocks(0)) {
         if (block !== undefined) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
+      }
     }
     return sums;
   }
+  const observer = new Observer(await loadKernel(options), program);
   const walker = await prepareWalker(sampledWalk(walk), { ...options, seed, steps });
   for (let r = 0; r < count; r++) {
     const { positions } = walker.run(first + r);

@@ -24,15 +24,13 @@ export type ObservableProgram =
 /** Rows evaluated at a time: the block's arrays stay in a core's own cache. */
 export const OBSERVE_BLOCK = 1024;
 
-/** A program laid out in a kernel's arena; valid until the arena is released. Any later allocation there breaks it. */
+/** A program laid out in a kernel's arena; valid until the arena is released. Positions in the same kernel's memory are not copied. */
 export class Observer {
   private readonly positionsAt: number;
   private readonly frequenciesAt: number;
   private readonly wavesAt: number;
   private readonly valuesAt: number;
   private readonly sidesAt: number[];
-  private readonly positions: BigUint64Array;
-  private readonly values: Float64Array;
 
   /** @throws LimitError where the arena has no room */
   constructor(
@@ -46,8 +44,6 @@ export class Observer {
     this.wavesAt = kernel.alloc(16 * OBSERVE_BLOCK * Math.max(1, frequencies.length), "cosines and sines of a block");
     this.valuesAt = kernel.alloc(8 * OBSERVE_BLOCK * Math.max(1, observables.length), "observables of a block");
     this.sidesAt = observables.map((f) => (f.type === "box" ? kernel.alloc(24 * f.sides.length, "a box") : 0));
-    this.positions = kernel.u64(this.positionsAt, dimension * OBSERVE_BLOCK);
-    this.values = kernel.f64(this.valuesAt, OBSERVE_BLOCK * observables.length);
     kernel
       .u64(this.frequenciesAt, dimension * frequencies.length)
       .set(frequencies.flat().map((k) => BigInt.asUintN(64, k)));
@@ -63,25 +59,35 @@ export class Observer {
     return { cos, sin: cos + 8 * OBSERVE_BLOCK };
   }
 
+  /** Where rows from, ..., from + rows - 1 lie in the kernel's memory: where they are, or copied to the block. */
+  private place(path: BigUint64Array, from: number, rows: number): number {
+    const { dimension } = this.program;
+    const block = this.kernel.u64(this.positionsAt, dimension * OBSERVE_BLOCK);
+    if (path.buffer === block.buffer) return path.byteOffset + 8 * dimension * from;
+    block.set(path.subarray(from * dimension, (from + rows) * dimension));
+    return this.positionsAt;
+  }
+
   /** Evaluates every observable on rows from, ..., from + rows - 1 (rows <= OBSERVE_BLOCK) into the block. */
   private evaluate(path: BigUint64Array, from: number, rows: number): void {
     const { raw } = this.kernel;
     const { dimension, frequencies, observables } = this.program;
-    this.positions.set(path.subarray(from * dimension, (from + rows) * dimension));
+    const at = this.place(path, from, rows);
+    const values = this.kernel.f64(this.valuesAt, OBSERVE_BLOCK * observables.length);
     for (let k = 0; k < frequencies.length; k++) {
       const { cos, sin } = this.wave(k);
-      raw.observePhases(this.positionsAt, rows, dimension, this.frequenciesAt + 8 * dimension * k, cos, sin);
+      raw.observePhases(at, rows, dimension, this.frequenciesAt + 8 * dimension * k, cos, sin);
     }
     for (const [i, f] of observables.entries()) {
-      const at = this.valuesAt + 8 * OBSERVE_BLOCK * i;
+      const to = this.valuesAt + 8 * OBSERVE_BLOCK * i;
       if (f.type === "box") {
-        raw.observeBox(at, this.positionsAt, rows, dimension, this.sidesAt[i] as number, f.sides.length);
+        raw.observeBox(to, at, rows, dimension, this.sidesAt[i] as number, f.sides.length);
         continue;
       }
-      this.values.fill(0, OBSERVE_BLOCK * i, OBSERVE_BLOCK * i + rows);
+      values.fill(0, OBSERVE_BLOCK * i, OBSERVE_BLOCK * i + rows);
       for (const wave of f.waves) {
         const { cos, sin } = this.wave(wave.frequency);
-        raw.observeAdd(at, rows, cos, sin, wave.cos, wave.sin);
+        raw.observeAdd(to, rows, cos, sin, wave.cos, wave.sin);
       }
     }
   }
@@ -93,7 +99,7 @@ export class Observer {
       const count = Math.min(OBSERVE_BLOCK, rows - from);
       this.evaluate(path, from, count);
       for (let i = 0; i < this.program.observables.length; i++) {
-        out.set(this.values.subarray(OBSERVE_BLOCK * i, OBSERVE_BLOCK * i + count), i * rows + from);
+        out.set(this.kernel.f64(this.valuesAt + 8 * OBSERVE_BLOCK * i, count), i * rows + from);
       }
     }
     return out;

@@ -24,6 +24,8 @@ export interface PathOptions {
   /** Decimal digits that positions will be asked for. */
   readonly digits: number;
   readonly memoryLimit: number;
+  /** The kernel to walk in; by default one of its own, within the memory limit. */
+  readonly kernel?: Kernel;
   /** Bits from which the tree is taken; for tests and benches. */
   readonly treeBits?: number;
 }
@@ -54,9 +56,9 @@ const BYTES = 2 ** 22;
 /** Multiplications of one block, about. */
 const WORK = 2e7;
 
-/** Lays a walk out in a kernel of its own. @throws LimitError before anything is run that would not fit */
+/** Lays a walk out in a kernel. @throws LimitError before anything is run that would not fit */
 export async function openPath(walk: Walk, options: PathOptions): Promise<Path> {
-  const kernel = await loadKernel({ memoryLimit: options.memoryLimit });
+  const kernel = options.kernel ?? (await loadKernel({ memoryLimit: options.memoryLimit }));
   const rational = rationalWalk(walk);
   const path =
     rational === undefined

@@ -17,7 +17,11 @@ export const startQuestion: Question<{ denominators?: number }> = {
   summary: "whether this start is safe, or near a rational trap",
   examples: ["torwend start examples/tray.json --denominators 500"],
   options: [
-    { flags: "--denominators <q>", text: "largest denominator of traps looked for (default: 1000, at most 10^9)", read: whole },
+    {
+      flags: "--denominators <q>",
+      text: "largest denominator of traps looked for (default: 1000, at most 10^9)",
+      read: whole,
+    },
   ],
   ask: async ({ walk, values, common }) => {
     const result = await start(walk, { ...common, ...values });
