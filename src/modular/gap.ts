@@ -132,6 +132,7 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
     const norm = inverseOf(own);
     return { norm, spectralRadius: norm, symmetric, freeSemigroup: false, certificates };
   }
+  const freeSemigroup = isFreeSemigroup(law) || certifyFree(withInverses(law)) !== undefined;
   let norm: Interval = { low: 0, high: 1 };
   let upper = 1;
   let power = law;
@@ -140,6 +141,7 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
     [2, "P*^2 P^2"],
     [4, "P*^4 P^4"],
   ] as const) {
+    if (m > 1 && freeSemigroup) break; // the spectral radius is known
     if (m > 1) {
       if (power.size ** 4 > MOST_PAIRS) break;
       power = product(power, power);
@@ -155,7 +157,6 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
     for (let k = m; k > 1; k /= 2) bound = root(point(bound)).high;
     upper = Math.min(upper, bound);
   }
-  const freeSemigroup = isFreeSemigroup(law) || certifyFree(withInverses(law)) !== undefined;
   const size = twoNorm(law);
   if (freeSemigroup) upper = Math.min(upper, size.high);
   if (upper >= 1) return undefined;

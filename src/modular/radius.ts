@@ -31,16 +31,22 @@ export interface Radius {
 type Answer = { readonly type: "finite"; readonly rate: number } | { readonly type: "infinite" | "unknown" };
 
 const LONG_STEPS = 20;
-const ITERATIONS = 24;
+const ITERATIONS = 20;
+/** Where a direction is taken up again. */
+const FEW = 8;
+/** Terms of the series behind the slack of the entries that h leaves out. */
+const ROUNDS = 100;
+/** Growth of an entry a move below which a finite solution is tried. */
+const SETTLED = 1e-10;
 /** Entries of a direction smaller than this, relatively, are left out. */
-const NEGLIGIBLE = 1e-7;
+const NEGLIGIBLE = 1e-5;
 
 const largestOf = (f: Triple) => LETTERS.reduce((m, x) => f[x].reduce((a, b) => Math.max(a, b), m), 0);
 
 /** The direction in which F is approached slowest: any h will do for the proofs. */
-function slowest(chain: Chain, x: Triple, from: Triple): Triple {
+function slowest(chain: Chain, x: Triple, from: Triple, rounds: number): Triple {
   let h = from;
-  for (let k = 0; k < ITERATIONS; k++) {
+  for (let k = 0; k < rounds; k++) {
     const next = derivative(chain, x, h, "low");
     const size = largestOf(next);
     if (!(size > 0)) return h;
@@ -60,7 +66,8 @@ function smallestRatio(f: Triple, h: Triple): number {
 }
 
 /** G = x + s h + small for the s that makes Phi(G) - G smallest along h, and smaller ones. */
-function proveFinite(chain: Chain, x: Triple, h: Triple, rate: number): boolean {
+function proveFinite(chain: Chain, x: Triple, rough: Triple, rate: number): boolean {
+  const h = slowest(chain, x, rough, 2 * ITERATIONS);
   const none = filled(chain.n, 0);
   const [curved, straight] = [derivative(chain, h, h, "high"), derivative(chain, none, h, "high")];
   // Along h, Phi(x + s h) - x - s h = r - s (1 - rate) h + s^2 q h, nearly.
@@ -75,9 +82,23 @@ function proveFinite(chain: Chain, x: Triple, h: Triple, rate: number): boolean 
   const best = bend > 0 ? ((1 - rate) / 2) * (weight / bend) : 1;
   const support = supportOf(chain);
   let small = support;
-  for (let k = 0; k < 2 * ITERATIONS; k++) {
-    small = each(derivative(chain, x, small, "high"), support, (a, b) => (a + 1) * b);
-    if (largestOf(small) > 1e6) break;
+  let ended = false;
+  // 1 + Phi' 1 + Phi' Phi' 1 + ...: what is left of its next term shrinks, but along h.
+  for (let k = 0; k < ROUNDS; k++) {
+    const next = each(derivative(chain, x, small, "high"), support, (a, b) => (a + 1) * b);
+    const grown = largestStep(small, next);
+    small = next;
+    ended = grown < 0.5;
+    if (ended) break;
+  }
+  const proves = (g: Triple): boolean => {
+    if (!isAbove(chain, g, support)) return false;
+    const r = returns(chain, g, "high");
+    return new LeastSolver({ low: r, high: r }).contracts;
+  };
+  // Far from the radius that series is enough.
+  for (let s = 1e-2; ended && s > 1e-12; s /= 100) {
+    if (proves(each(x, small, (a, b) => a + s * b))) return true;
   }
   for (let s = Math.min(best, 1); s > 1e-12; s /= 4) {
     for (let epsilon = 1e-4; epsilon > 1e-9; epsilon /= 30) {
@@ -86,9 +107,7 @@ function proveFinite(chain: Chain, x: Triple, h: Triple, rate: number): boolean 
         small,
         (a, b) => a + s * epsilon * b,
       );
-      if (!isAbove(chain, g, support)) continue;
-      const r = returns(chain, g, "high");
-      if (new LeastSolver({ low: r, high: r }).contracts) return true;
+      if (proves(g)) return true;
     }
   }
   return false;
@@ -107,7 +126,15 @@ function decide(chain: Chain): Answer {
     const left = largestStep(x, next);
     const r = each(x, next, (a, b) => Math.max(0, below(b - a)));
     if (!(left < 1e9)) return { type: "unknown" };
-    h = slowest(chain, x, k === 0 ? r : each(h, r, (a, b) => a + b));
+    h =
+      k === 0
+        ? slowest(chain, x, r, ITERATIONS)
+        : slowest(
+            chain,
+            x,
+            each(h, r, (a, b) => a + b),
+            FEW,
+          );
     // Two moves at a time, y >= r + Phi' r + Phi' Phi' y: some entries grow at every second only.
     const step2 = derivative(chain, x, derivative(chain, x, h, "low"), "low");
     const two = smallestRatio(step2, h);
@@ -117,7 +144,7 @@ function decide(chain: Chain): Answer {
       h,
     );
     if (c > 0 && two >= 1) return { type: "infinite" };
-    if (left < 1e-12) break;
+    if (left < SETTLED) break;
     if (!(c > 0)) continue;
     const step = below(c / above(1 - two));
     x = each(x, h, (a, b) => Math.max(0, below(a + below(step * b))));
@@ -127,23 +154,26 @@ function decide(chain: Chain): Answer {
 
 export interface RadiusOptions {
   readonly mostStates: number;
-  /** Relative distance of the two ends at which to stop. */
+  /** Relative distance of the two ends at which to stop; by default 1e-7, and more for many states. */
   readonly tolerance?: number;
   /** Most z to look at. */
   readonly most?: number;
 }
 
 const FARTHEST = 64;
+const nearness = (states: number) => (states <= 40 ? 1e-7 : states <= 64 ? 1e-6 : 1e-3);
 
 /** Bounds of the radius; undefined where the chain has too many states. @throws RangeError for words too long */
 export function radius(
   matrices: readonly Matrix2[],
   probabilities: readonly Rational[],
-  { mostStates, tolerance = 1e-7, most = 24 }: RadiusOptions,
+  { mostStates, tolerance, most }: RadiusOptions,
 ): Radius | undefined {
   const at = (z: number) => chainOf(matrices, probabilities, { signs: false, z, mostStates });
   const first = at(1);
   if (first === undefined) return undefined;
+  const near = tolerance ?? nearness(first.n);
+  const looks = most ?? (first.n <= 40 ? 24 : 14);
   let finite = 1;
   let infinite = Number.POSITIVE_INFINITY;
   /** (z, (1 - rate)^2): nearly a line near the radius, where it meets 0. */
@@ -170,20 +200,20 @@ export function radius(
     if (look(z).type === "unknown") break;
   }
   let refused = infinite;
-  for (; looked < most && refused > finite * (1 + tolerance); looked++) {
+  for (; looked < looks && refused > finite * (1 + near); looked++) {
     if (!(refused < Number.POSITIVE_INFINITY)) refused = z;
     const [a, b] = seen.slice(-2);
     let guess = (finite + refused) / 2;
     if (a !== undefined && b !== undefined && a.m > b.m && b.z > a.z) {
       const crossing = b.z + (b.m * (b.z - a.z)) / (a.m - b.m);
       const side = looked % 2 === 0 ? -1 : 1;
-      const near = crossing * (1 + (side * tolerance) / 4);
-      if (near > finite && near < refused) guess = near;
+      const beside = crossing * (1 + (side * near) / 4);
+      if (beside > finite && beside < refused) guess = beside;
     }
     if (look(guess).type !== "finite") refused = Math.min(refused, guess);
   }
   // Where no answer was found too near the radius, from farther away.
-  for (let apart = tolerance; apart < 0.1 && infinite > finite * (1 + 2 * apart); apart *= 4) {
+  for (let apart = near; apart < 0.1 && infinite > finite * (1 + 2 * apart); apart *= 4) {
     look(Math.min(refused, infinite) * (1 - apart));
     look(finite * (1 + apart));
   }
