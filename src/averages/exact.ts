@@ -7,11 +7,11 @@ import { commonDenominator } from "../walk/denominator.js";
 import type { Walk } from "../walk/walk.js";
 import { EXACT_BUDGET, type ExactBudget } from "./budget.js";
 import type { ExactFinding } from "./finding.js";
-import { type Gap, gapOf, gapPayload } from "./gap.js";
+import type { Gap } from "./gap.js";
 import { haarFindings } from "./haar.js";
-import { gapJob } from "./modular-jobs.js";
 import { finiteOrbit } from "./orbit.js";
 import { orbitFindings } from "./orbital.js";
+import { provedGap } from "./proved-gap.js";
 
 export interface ExactAverages {
   readonly findings: readonly ExactFinding[];
@@ -83,18 +83,8 @@ export async function exactAverages(
       "A coordinate of the start is not proved irrational: if all are rational, the limit is a finite orbit's mean.",
     );
   }
-  const gap = walk.dimension === 2 ? await haarGap(walk, session, budget) : undefined;
+  const gap = walk.dimension === 2 ? await provedGap(walk, budget.normStates, session) : undefined;
   const contraction = gap === undefined ? 1 : Number(gap.norm.high);
   const findings = await haarFindings(walk, session, budget, generating, contraction);
   return { findings, ...(gap === undefined ? {} : { gap }), warnings };
-}
-
-async function haarGap(walk: Walk, session: Session, budget: ExactBudget): Promise<Gap | undefined> {
-  const stage = "norms by certificates";
-  session.progress(stage, 0, 1);
-  const payload = gapPayload(walk, budget.normStates);
-  const [found = {}] = await session.pool.map(gapJob, [payload], { signal: session.signal });
-  session.progress(stage, 1, 1);
-  session.checkStop();
-  return gapOf(walk, found);
 }

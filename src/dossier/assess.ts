@@ -34,7 +34,11 @@ async function askEach<P, T extends object>(
 async function askLaw(walk: Walk, session: Session): Promise<Dossier["law"]> {
   const frequencies = lowFrequencies(walk.dimension, session.effort);
   return askEach(frequencies, (frequency, part) =>
-    law(walk, { [SESSION]: questionSession(session, "law", part, frequencies.length), frequency }),
+    law(walk, {
+      [SESSION]: questionSession(session, "law", part, frequencies.length),
+      frequency,
+      distance: part === 0,
+    }),
   );
 }
 

@@ -3,30 +3,20 @@
  * E e_k(x_n) is the integral of P^n e_k against the law of x_0. No sampling.
  */
 
-import { forwardMoves } from "../dual/moves.js";
-import { type DualShape, DualTables, entriesWithin, movesFit, type StepEnd } from "../kernel/dual.js";
-import { afterStep, type TableBound } from "../kernel/dual-rounding.js";
-import { loadKernel } from "../kernel/kernel.js";
+import type { StepEnd } from "../kernel/dual.js";
+import { loadReal } from "../kernel/real.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
 import { commonDenominator } from "../walk/denominator.js";
 import { asWalk, type WalkInput } from "../walk/parse.js";
 import type { Walk } from "../walk/walk.js";
+import { fitDecay, normBound } from "./decay.js";
+import { distanceToUniform } from "./distance.js";
+import { follow, type LawEnd } from "./follow.js";
 import { LAW_BUDGET, type LawOptions, type LawRequest, readOptions } from "./options.js";
-import { type ComplexQuantity, exactly, readerOf } from "./readers.js";
-import type { LawCoefficient, LawResult } from "./result.js";
+import type { LawResult } from "./result.js";
 
 export type { LawOptions } from "./options.js";
-
-/** The coefficient at every step where nothing has to be followed: k = 0, k.x_n whole, or a uniform start. */
-function constantLaw(walk: Walk, k: readonly bigint[], q: bigint | undefined): ComplexQuantity | undefined {
-  if (k.every((x) => x === 0n)) return exactly(1n, "the frequency 0");
-  if (walk.start.type === "uniform") return exactly(0n, "the uniform law is invariant");
-  if (q !== undefined && k.every((x) => x % q === 0n)) {
-    return exactly(1n, `the walk stays on points with denominator ${q}, where k.x is whole`);
-  }
-  return undefined;
-}
 
 const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
   done: "all steps asked for",
@@ -37,56 +27,26 @@ const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
 
 const breathe = () => new Promise<void>((resolve) => setTimeout(resolve, 0));
 
-async function follow(walk: Walk, request: LawRequest, q: bigint | undefined, session: Session): Promise<LawEnd> {
-  const budget = LAW_BUDGET[session.effort];
-  const phases = walk.moves.some((m) => m.translation !== undefined);
-  // A walk on points with denominator q sees frequencies modulo q only.
-  const residues = q !== undefined && q < 1n << 31n;
-  const shape: DualShape = {
-    dimension: walk.dimension,
-    width: phases ? 2 : 1,
-    fold: "none",
-    ...(residues ? { modulus: Number(q) } : {}),
-  };
-  const kernel = await loadKernel({ memoryLimit: session.memoryLimit });
-  const entries = Math.min(budget.entries, entriesWithin(0.9 * session.memoryLimit, shape, 2));
-  const tables = new DualTables(kernel, shape, entries, 2);
-  const dual = forwardMoves(walk);
-  const fits = residues || movesFit(dual);
-  const moves = tables.place(fits ? dual : []);
-  const read = readerOf(walk.start, walk.dimension);
-  tables.fill(0, [{ frequency: request.frequency, re: 1, im: 0 }]);
-  let bound: TableBound = { size: 1, error: 0 };
-  let now = 0;
-  let spent = 0;
-  let sinceBreath = 0;
-  let before = 1;
-  const coefficients: LawCoefficient[] = [];
-  for (let step = 0; ; step++) {
-    coefficients.push({ step, ...read(tables, now, bound), frequencies: tables.count(now) });
-    if (step === request.steps) return { coefficients, end: "done" };
-    if (!fits) return { coefficients, end: "overflow" };
-    const products = tables.count(now) * moves.count;
-    spent += products;
-    if (spent > budget.products) return { coefficients, end: "budget" };
-    sinceBreath += products;
-    if (sinceBreath > 500_000) {
-      session.progress("law", step, request.steps);
-      await breathe();
-      sinceBreath = 0;
-    }
-    session.checkStop();
-    const end = tables.wouldFill(now, before, moves) ? "full" : tables.evolve(now, 1 - now, moves);
-    if (end !== "done") return { coefficients, end };
-    before = tables.count(now);
-    now = 1 - now;
-    bound = afterStep(bound, moves.count, phases);
-  }
-}
-
-interface LawEnd {
-  readonly coefficients: readonly LawCoefficient[];
-  readonly end: StepEnd | "budget";
+/** The walk's coefficient at the frequency asked for; the session breathes between steps. */
+function followIn(session: Session, walk: Walk, request: LawRequest): Promise<LawEnd> {
+  let since = 0;
+  const { frequency, steps } = request;
+  return follow(walk, {
+    frequency,
+    steps,
+    denominator: commonDenominator(walk),
+    ...LAW_BUDGET[session.effort],
+    memoryLimit: session.memoryLimit,
+    pause: async (step, products) => {
+      since += products;
+      if (since > 500_000) {
+        session.progress("law", step, steps);
+        await breathe();
+        since = 0;
+      }
+      session.checkStop();
+    },
+  });
 }
 
 /**
@@ -100,25 +60,22 @@ export async function law(input: WalkInput, options: LawOptions & SharedSession)
   const walk = asWalk(input);
   return withSession(options, async (session) => {
     const request = readOptions(options, walk.dimension);
-    const q = commonDenominator(walk);
-    const constant = constantLaw(walk, request.frequency, q);
-    const { coefficients, end }: LawEnd =
-      constant === undefined
-        ? await follow(walk, request, q, session)
-        : {
-            coefficients: Array.from({ length: request.steps + 1 }, (_, step) => ({
-              step,
-              ...constant,
-              frequencies: 0,
-            })),
-            end: "done",
-          };
+    const { coefficients, end } = await followIn(session, walk, request);
+    const real = await loadReal();
+    const decay = fitDecay(coefficients, real);
+    const whole = options.distance !== false;
+    const bound = whole ? await normBound(walk, session, real) : undefined;
+    const distance =
+      whole && walk.start.type !== "uniform" ? await distanceToUniform(walk, request.steps, session) : undefined;
     const reached = { step: coefficients.length - 1, reason: END_REASON[end] };
     return {
       torwend: VERSION,
       walk: walk.title,
       frequency: request.frequency.map(String),
       coefficients,
+      ...(decay === undefined ? {} : { decay }),
+      ...(bound === undefined ? {} : { normBound: bound }),
+      ...(distance === undefined ? {} : { distance }),
       reached,
       ...(end !== "done" && request.asked ? { stoppedAt: reached } : {}),
     };

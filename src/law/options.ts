@@ -7,6 +7,8 @@ export interface LawOptions extends CommonOptions {
   readonly frequency: readonly (bigint | number | string)[];
   /** The last step n wanted; default: as many as the effort allows, up to 40. */
   readonly steps?: number;
+  /** Also the distance to uniform and the norm bound, which do not depend on the frequency; default true. */
+  readonly distance?: boolean;
 }
 
 export interface LawRequest {

@@ -85,6 +85,18 @@ function law(frequency: string[], rate: number): LawResult {
     walk: "t",
     frequency,
     reached: { step: 19, reason: "invented" },
+    decay: { rate: estimated(-Math.log(rate), 0.01), from: 10, to: 19, residual: 0.25 },
+    normBound: { spectralRadius: estimated(0.7, 0.001), rate: estimated(0.35, 0.001), reading: "invented" },
+    distance: {
+      cutoff: 4,
+      frequencies: 40,
+      steps: Array.from({ length: 17 }, (_, step) => ({
+        step,
+        largest: estimated(rate ** step, 1e-9),
+        frequency: [1, -step % 4],
+        wasserstein: estimated(0.2, 0.1),
+      })),
+    },
     coefficients: Array.from({ length: 20 }, (_, step) => ({
       step,
       frequencies: 2 ** step,

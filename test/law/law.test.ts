@@ -106,14 +106,14 @@ describe("law from a point", () => {
       // Denominator 2^31 + 11 (residues do not apply), then a small one (they do).
       for (const start of [point([1234567, 2147483659], [7654321, 2147483659]), point([1, 6], [3, 4])]) {
         const walk = walkOf([...moves], start);
-        agrees(await law(walk, { frequency: k, steps: 7, workers: 0 }), walk, [...k], 7);
+        agrees(await law(walk, { frequency: k, steps: 7, workers: 0, distance: false }), walk, [...k], 7);
       }
     }
   });
 
   it("runs on for a thousand steps from a rational start", async () => {
     const walk = walkOf(tray, point([1, 5], [2, 5]));
-    const result = await law(walk, { frequency: [1, 0], steps: 1000, workers: 0 });
+    const result = await law(walk, { frequency: [1, 0], steps: 1000, workers: 0, distance: false });
     expect(result.coefficients.length).toBe(1001);
     expect(result.stoppedAt).toBeUndefined();
     expect(result.coefficients.at(-1)!.frequencies).toBeLessThan(225);
@@ -125,11 +125,21 @@ describe("law from a point", () => {
   });
 
   it("is exact where nothing has to be computed", async () => {
-    const zero = await law(walkOf([tray[0]!], point([0, 1], [0, 1])), { frequency: [5, 3], steps: 3, workers: 0 });
+    const zero = await law(walkOf([tray[0]!], point([0, 1], [0, 1])), {
+      frequency: [5, 3],
+      steps: 3,
+      workers: 0,
+      distance: false,
+    });
     for (const c of zero.coefficients) expect([c.real.value, c.real.standing, c.imag.value]).toEqual([1, "exact", 0]);
-    const constant = await law(walkOf(tray, point([1, 7], [0, 1])), { frequency: [0, 0], steps: 2, workers: 0 });
+    const constant = await law(walkOf(tray, point([1, 7], [0, 1])), {
+      frequency: [0, 0],
+      steps: 2,
+      workers: 0,
+      distance: false,
+    });
     expect(constant.coefficients.map((c) => c.real.value)).toEqual([1, 1, 1]);
-    const uniform = await law(walkOf(tray), { frequency: ["1", "0"], workers: 0 });
+    const uniform = await law(walkOf(tray), { frequency: ["1", "0"], workers: 0, distance: false });
     expect(uniform.coefficients.length).toBe(41);
     for (const c of uniform.coefficients) expect([c.real.value, c.real.standing]).toEqual([0, "exact"]);
   });
@@ -144,7 +154,7 @@ describe("law from a density", () => {
       { frequency: [1n, 0n], cos: number(1, 7), sin: number(0) },
     ];
     const walk = walkOf(tray, { type: "density", terms });
-    const result = await law(walk, { frequency: [1, 0], steps: 3, workers: 0 });
+    const result = await law(walk, { frequency: [1, 0], steps: 3, workers: 0, distance: false });
     const N = 32; // exact for all frequencies below 32: those met here stay below 15
     for (const c of result.coefficients.slice(0, 3)) {
       let [re, im] = [0, 0];
@@ -186,11 +196,17 @@ describe("limits of law", () => {
 
   it("keeps what is finished when the table is full, and says how to go on", async () => {
     const memoryLimit = 2 ** 23;
-    const result = await law(walkOf(tray, start), { frequency: [1, 0], steps: 40, workers: 0, memoryLimit });
+    const result = await law(walkOf(tray, start), {
+      frequency: [1, 0],
+      steps: 40,
+      workers: 0,
+      distance: false,
+      memoryLimit,
+    });
     const last = result.coefficients.length - 1;
     expect(last).toBeGreaterThan(15);
     expect(result.stoppedAt).toEqual({ step: last, reason: expect.stringMatching(/--effort/) });
-    const open = await law(walkOf(tray, start), { frequency: [1, 0], workers: 0, memoryLimit });
+    const open = await law(walkOf(tray, start), { frequency: [1, 0], workers: 0, distance: false, memoryLimit });
     expect(open.stoppedAt).toBeUndefined();
     expect(open.reached.step).toBe(last);
   });
@@ -208,7 +224,7 @@ describe("limits of law", () => {
       ],
       start,
     );
-    const result = await law(big, { frequency: [1, 1], steps: 10, workers: 0 });
+    const result = await law(big, { frequency: [1, 1], steps: 10, workers: 0, distance: false });
     expect(result.stoppedAt).toEqual({ step: 3, reason: expect.stringMatching(/63 bits/) });
   });
 
@@ -225,12 +241,12 @@ describe("limits of law", () => {
       ],
       start,
     );
-    const result = await law(wide, { frequency: [1, 1], steps: 10, workers: 0 });
+    const result = await law(wide, { frequency: [1, 1], steps: 10, workers: 0, distance: false });
     expect(result.stoppedAt).toEqual({ step: 0, reason: expect.stringMatching(/63 bits/) });
   });
 
   it("names options that are wrong", async () => {
-    const call = law(walkOf(tray), { frequency: [1, 0.5, 2], steps: -1, workers: 0 });
+    const call = law(walkOf(tray), { frequency: [1, 0.5, 2], steps: -1, workers: 0, distance: false });
     await expect(call).rejects.toThrow(OptionsError);
     await expect(call).rejects.toThrow(/--frequency: found 1,0.5,2; accepted: 2 whole numbers.*\n--steps: found -1/);
   });

@@ -1,6 +1,9 @@
 import { law } from "../../law/law.js";
+import type { DistanceToUniform } from "../../law/result.js";
+import { decimalDown, decimalUp } from "../../quantity/decimal.js";
+import { quantityNumber } from "../../quantity/quantity.js";
 import type { Question } from "../command.js";
-import { block, cells, page, table } from "../render.js";
+import { block, cells, number, page, paragraph, table } from "../render.js";
 import { bigList, whole } from "../values.js";
 
 interface Values {
@@ -9,6 +12,25 @@ interface Values {
 }
 
 const ROWS = 60;
+
+function distanceBlock({ cutoff, steps }: DistanceToUniform): string {
+  const rows = steps.map(({ step, largest, frequency, wasserstein }) => {
+    const [low, high] = [wasserstein.low ?? wasserstein.value, wasserstein.high ?? wasserstein.value].map(Number);
+    // Rounded outward: both ends are proved.
+    const between = `${number(Number(decimalDown(low as number, 3)), 3)} to ${number(Number(decimalUp(high as number, 3)), 3)}`;
+    return [
+      String(step),
+      number(quantityNumber(largest), 5),
+      `(${frequency.join(", ")})`,
+      between,
+      cells(wasserstein)[2],
+    ];
+  });
+  return block(
+    `Distance to the uniform law: coefficients with every |k_j| <= ${cutoff}`,
+    table(["move n", "largest", "at k", "Wasserstein-1", "standing"], rows.slice(0, ROWS)),
+  );
+}
 
 export const lawQuestion: Question<Values> = {
   name: "law",
@@ -33,6 +55,14 @@ export const lawQuestion: Question<Values> = {
         table(["move n", "real part", "interval", "imaginary part", "interval", "standing"], rows) +
           (more > 0 ? `\n  and ${more} moves more: --json lists all` : ""),
       ),
+      result.decay &&
+        `Decay of this coefficient, fitted over moves ${result.decay.from} to ${result.decay.to}: ${number(quantityNumber(result.decay.rate), 4)} per move, natural log (estimated).`,
+      result.normBound &&
+        paragraph(
+          `Guaranteed rate: ${number(quantityNumber(result.normBound.rate), 6)} (proved, from the norm of the averaging operator). ${result.normBound.reading}`,
+          0,
+        ),
+      result.distance && distanceBlock(result.distance),
       `Ended at move ${result.reached.step}: ${result.reached.reason}.`,
     ]);
     const { stoppedAt } = result;

@@ -1,10 +1,12 @@
 /** The law of x_n: how fast it forgets the start. */
-import type { LawResult } from "../../law/result.js";
+import type { DistanceToUniform, LawResult } from "../../law/result.js";
+import { decimalDown, decimalUp } from "../../quantity/decimal.js";
+import { quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html } from "../html.js";
 import { significant } from "../numbers.js";
 import { lawPlot, moduli } from "../plots/law.js";
 import { type Dossier, isAnswered } from "../result.js";
-import { missing, plural, table, warning } from "./parts.js";
+import { missing, plural, quantity, quantityColumn, table, warning } from "./parts.js";
 import { prose } from "./prose.js";
 
 const STANDINGS = {
@@ -54,6 +56,46 @@ export function lawSummary(dossier: Dossier): Html {
   })}`;
 }
 
+function decayTable(laws: readonly LawResult[]): Html | undefined {
+  const fitted = laws.flatMap((l) => (l.decay === undefined ? [] : [{ law: l, decay: l.decay }]));
+  if (fitted.length === 0) return undefined;
+  const rates = quantityColumn(
+    "rate",
+    fitted.map(({ decay }) => decay.rate),
+  );
+  return table(
+    html`Decay of each coefficient, natural logarithm per move: least squares of the logarithm over the second half of the moves.`,
+    [{ name: html`<i>k</i>` }, rates.column, { name: "moves", n: true }, { name: "scatter about the line", n: true }],
+    fitted.map(
+      ({ law, decay }) =>
+        html`<th scope="row">${name(law)}</th>${rates.show(decay.rate)}<td class="n">${decay.from} to ${decay.to}</td><td class="n">${significant(decay.residual, 2)}</td>`,
+    ),
+  );
+}
+
+/** At most this many rows: the first moves, then evenly, and the last. */
+const DISTANCES = 10;
+
+function distanceTable({ cutoff, frequencies, steps }: DistanceToUniform): Html {
+  const every = Math.max(1, Math.ceil((steps.length - 1) / (DISTANCES - 1)));
+  const rows = steps.filter(({ step }, i) => step % every === 0 || i === steps.length - 1);
+  return table(
+    html`Distance of the law to uniform. Largest: of |E exp(2π<i>i</i> <i>k</i>·<i>x<sub>n</sub></i>)| over the ${frequencies} frequencies (up to sign) with every |<i>k<sub>j</sub></i>| ≤ ${cutoff}. Wasserstein-1: what it costs, in distance on the torus, to move the law to the uniform one; at least and at most, both proved (the upper bound by the smoothing inequality of Bobkov and Ledoux, whose first term does not shrink with <i>n</i>).`,
+    [
+      { name: "moves", n: true },
+      { name: "largest", n: true },
+      { name: html`at <i>k</i>` },
+      { name: "Wasserstein-1 at least", n: true },
+      { name: "at most", n: true },
+    ],
+    rows.map(({ step, largest, frequency, wasserstein: w }) => {
+      const [low, high] = [w.low ?? w.value, w.high ?? w.value].map(Number) as [number, number];
+      const k = `(${frequency.map((x) => String(x).replace("-", "−")).join(", ")})`;
+      return html`<th scope="row" class="n">${step}</th><td class="n">${significant(quantityNumber(largest), 4)}</td><td>${k}</td><td class="n">${significant(Number(decimalDown(low, 3)), 3)}</td><td class="n">${significant(Number(decimalUp(high, 3)), 3)}</td>`;
+    }),
+  );
+}
+
 export function lawSection(dossier: Dossier): Html {
   const laws = answered(dossier);
   const law = dossier.law;
@@ -85,6 +127,13 @@ ${table(
     return html`<th scope="row">${name(l)}</th><td class="n">${last?.step ?? "–"}</td><td class="n">${last === undefined ? "–" : significant(last.modulus, 4)}</td>${LEVELS.map((level) => html`<td class="n">${belowFrom(l, level) ?? "–"}</td>`)}`;
   }),
 )}
+${decayTable(laws)}
+${
+  law.normBound !== undefined &&
+  html`<p>Guaranteed: a rate of ${quantity(law.normBound.rate)} per move, from the proved norm of the averaging operator on functions of mean 0. ${prose(law.normBound.reading)}</p>
+`
+}
+${law.distance !== undefined && distanceTable(law.distance)}
 ${laws.map((l) => l.stoppedAt !== undefined && warning(html`At <i>k</i> = ${name(l)} the computation ended after move ${l.stoppedAt.step}: ${prose(l.stoppedAt.reason)}`))}
 ${law.others.map((o) => missing(o))}
 ${first !== undefined && html`<p class="note">${STANDINGS[first.real.standing]}: ${prose(first.real.method)}.${ends.length > 0 && html` The computation ended: ${ends.map((e, i) => html`${i > 0 && "; "}${prose(e)}`)}.`}</p>`}
