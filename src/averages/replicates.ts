@@ -1,7 +1,7 @@
 /** Replicates of exact walks, reduced to sums of the observables over segments of each path. */
 import { type KernelTarget, loadKernel } from "../kernel/kernel.js";
 import { Observer } from "../kernel/observe.js";
-import { openPath } from "../trajectory/paths.js";
+import { layOut } from "../trajectory/paths.js";
 import { prepareWalker } from "../trajectory/walker.js";
 import type { Walk } from "../walk/walk.js";
 import { observeProgram } from "./program.js";
@@ -21,7 +21,7 @@ export interface SegmentsRequest {
 }
 
 /** Paths up to this length are held whole, one preparation for all; longer ones are consumed block by block. */
-export const HELD_MOVES = 100_000;
+export const HELD_MOVES = 30_000;
 
 /**
  * The walk that is sampled. No point can be drawn from a density that need not be positive,
@@ -44,15 +44,16 @@ export async function segmentSums(walk: Walk, request: SegmentsRequest): Promise
   if (steps > HELD_MOVES) {
     // The last position is not part of the average, and need not be reached.
     const path = { seed, steps: steps - 1, digits: 1, memoryLimit };
+    // In one kernel, so that the sums are formed where the positions are.
+    const kernel = await loadKernel(options);
+    const observer = new Observer(kernel, program);
     for (let r = 0; r < count; r++) {
       const out = sums.subarray(r * stride, (r + 1) * stride);
-      // In one kernel, so that the sums are formed where the positions are.
-      const kernel = await loadKernel(options);
-      const observer = new Observer(kernel, program);
-      const { blocks } = await openPath(sampledWalk(walk), { ...path, replicate: first + r, kernel });
-      for (const block of blocks(0)) {
-        if (block !== undefined) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
-      }
+      kernel.scoped(() => {
+        for (const block of layOut(sampledWalk(walk), { ...path, replicate: first + r }, kernel).blocks(0)) {
+          if (block !== undefined) observer.addToSegments(block.fixed(), block.first, block.rows, ends, out);
+        }
+      });
     }
     return sums;
   }

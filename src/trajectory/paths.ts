@@ -24,8 +24,6 @@ export interface PathOptions {
   /** Decimal digits that positions will be asked for. */
   readonly digits: number;
   readonly memoryLimit: number;
-  /** The kernel to walk in; by default one of its own, within the memory limit. */
-  readonly kernel?: Kernel;
   /** Bits from which the tree is taken; for tests and benches. */
   readonly treeBits?: number;
 }
@@ -56,9 +54,13 @@ const BYTES = 2 ** 22;
 /** Multiplications of one block, about. */
 const WORK = 2e7;
 
-/** Lays a walk out in a kernel. @throws LimitError before anything is run that would not fit */
+/** Lays a walk out in a kernel of its own. @throws LimitError before anything is run that would not fit */
 export async function openPath(walk: Walk, options: PathOptions): Promise<Path> {
-  const kernel = options.kernel ?? (await loadKernel({ memoryLimit: options.memoryLimit }));
+  return layOut(walk, options, await loadKernel({ memoryLimit: options.memoryLimit }));
+}
+
+/** Lays a walk out in a kernel that stays as it is until the path's last block. @throws LimitError as `openPath` */
+export function layOut(walk: Walk, options: PathOptions, kernel: Kernel): Path {
   const rational = rationalWalk(walk);
   const path =
     rational === undefined
@@ -88,9 +90,9 @@ function drawAll(walk: Walk, kernel: Kernel, { seed, replicate = 0, steps }: Pat
 
 /**
  * Bits that a walk consumes from which the tree is quicker than the window, measured by
- * bench/trajectory.ts: 60 to 170 thousand, by dimension and entries.
+ * bench/thresholds.ts: some 30 thousand in dimension 2.
  */
-const TREE_BITS = 100_000;
+const TREE_BITS = 40_000;
 /** Moves by which a walk's bits are foretold. */
 const SAMPLE = 8192;
 
