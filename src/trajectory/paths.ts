@@ -116,9 +116,14 @@ function startPoint(walk: Walk): readonly (ExactNumber | undefined)[] {
   return walk.start.type === "point" ? walk.start.point : new Array<undefined>(walk.dimension).fill(undefined);
 }
 
-/** Seconds that a bit of a number's digits takes, as src/kernel/tree-work.ts counts them: by evaluation, else. */
-const EVALUATED_BIT = 6e-8;
-const READ_BIT = 2e-9;
+/**
+ * Seconds that a bit of a number's digits takes, as src/kernel/tree-work.ts counts them:
+ * measured at ten million bits of square roots, of cubic numbers and pi, of fractions.
+ */
+function secondsPerBit(x: ExactNumber | undefined): number {
+  if (x === undefined || x.rational !== undefined) return 2e-9;
+  return x.polynomial?.length === 3 ? 8e-8 : 4e-7;
+}
 
 function treePath(
   walk: Walk,
@@ -133,8 +138,7 @@ function treePath(
   const run = new TreeRun(kernel, table, choices, words);
   const numbers = [...startPoint(walk), ...constants];
   const bits = 64 * run.limbs;
-  const digitsCost = (x: ExactNumber | undefined) =>
-    bits * (x === undefined || x.rational !== undefined ? READ_BIT : EVALUATED_BIT);
+  const digitsCost = (x: ExactNumber | undefined) => bits * secondsPerBit(x);
   const digitsTotal = numbers.reduce((sum, x) => sum + digitsCost(x), 0);
   let digitsDone = 0;
   return {
