@@ -1,7 +1,8 @@
-/** Dual evolution: the kernel's tables against a Map of plain TypeScript, ten steps of four shears. */
+/** Dual evolution: the kernel's tables against a Map of plain TypeScript and hash tables of C++; cost by terms. */
 import { DualTables } from "../src/kernel/dual.js";
 import { loadKernel } from "../src/kernel/kernel.js";
-import { type Comparison, compare } from "./compare.js";
+import { type Comparison, compare, comparison, medianTime } from "./compare.js";
+import { peer } from "./native.js";
 
 const SHEARS: readonly (readonly [number, number, number, number])[] = [
   [1, 2, 0, 1],
@@ -38,28 +39,68 @@ function plain(steps: number): number {
   return sum;
 }
 
+const STEPS = 13;
+
+/** `steps` steps of the kernel from one frequency, in tables made for `entries` of them. */
+async function kernelRun(steps: number, entries: number) {
+  const kernel = await loadKernel();
+  const tables = new DualTables(kernel, { dimension: 2, width: 1, fold: "even" }, entries, 2);
+  const moves = tables.place(
+    SHEARS.map(([a, b, c, d]) => ({
+      matrix: [
+        [BigInt(a), BigInt(b)],
+        [BigInt(c), BigInt(d)],
+      ],
+      weight: 0.25,
+    })),
+  );
+  const run = () => {
+    tables.fill(0, [{ frequency: [1n, 0n], re: 0.5, im: 0 }]);
+    for (let n = 0; n < steps; n++) {
+      const end = tables.evolve(n & 1, 1 - (n & 1), moves);
+      if (end !== "done") throw new Error(`step ${n} ended ${end}`);
+    }
+    return 2 * tables.pair(steps & 1, steps & 1).sum;
+  };
+  return { run, count: () => tables.count(steps & 1), bytes: tables.bytesEach };
+}
+
+/** Against Abseil's and Tessil's tables in C++; one word for the answer, see native/dual.cpp. */
+async function peers(): Promise<Comparison[]> {
+  const libraries = ["-labsl_hash", "-labsl_raw_hash_set", "-labsl_city", "-labsl_low_level_hash"];
+  const native = peer("dual.cpp", "g++", [...libraries, "-labsl_hashtablez_sampler"]);
+  if (native === undefined) return [];
+  const { run, count } = await kernelRun(STEPS, 3 ** STEPS);
+  const milliseconds = await medianTime(3, run);
+  const answer = (BigInt(count()) << 32n) | BigInt(Math.round(1e9 * run()));
+  const rows = ["absl", "hopscotch"].map((label) => {
+    const { milliseconds: time, hash } = native.run(new BigUint64Array(1), label, String(STEPS), "3");
+    return { label: `${label}, C++`, milliseconds: time, answer: hash };
+  });
+  const products = 4 * ((3 ** STEPS - 1) / 2);
+  const name = `${STEPS} steps, ${count()} frequencies: ${(products / milliseconds / 1000).toFixed(1)} million insertions a second`;
+  return [comparison(name, [{ label: "kernel", milliseconds, answer }, ...rows])];
+}
+
+/** Time and memory of <f, P^n f> for n up to 2 steps, by steps: both grow by the same factor. */
+async function cost(): Promise<Comparison> {
+  const rows = [];
+  for (const steps of [8, 10, 12, 14]) {
+    const { run, count, bytes } = await kernelRun(steps, 3 ** steps);
+    const milliseconds = await medianTime(3, run);
+    const mebibytes = (2 * bytes * count()) / 2 ** 20;
+    rows.push({
+      label: `n to ${2 * steps}: ${count()} frequencies, ${mebibytes.toFixed(2)} MiB at ${bytes} bytes each, two tables`,
+      milliseconds,
+    });
+  }
+  return comparison("cost and memory of correlations against their number", rows);
+}
+
 export async function suite(): Promise<Comparison[]> {
   const out: Comparison[] = [];
   for (const steps of [8, 12]) {
-    const kernel = await loadKernel();
-    const tables = new DualTables(kernel, { dimension: 2, width: 1, fold: "even" }, 2 ** 21, 2);
-    const moves = tables.place(
-      SHEARS.map(([a, b, c, d]) => ({
-        matrix: [
-          [BigInt(a), BigInt(b)],
-          [BigInt(c), BigInt(d)],
-        ],
-        weight: 0.25,
-      })),
-    );
-    const run = () => {
-      tables.fill(0, [{ frequency: [1n, 0n], re: 0.5, im: 0 }]);
-      for (let n = 0; n < steps; n++) {
-        const end = tables.evolve(n & 1, 1 - (n & 1), moves);
-        if (end !== "done") throw new Error(`step ${n} ended ${end}`);
-      }
-      return 2 * tables.pair(steps & 1, steps & 1).sum;
-    };
+    const { run } = await kernelRun(steps, 2 ** 21);
     out.push(
       await compare(
         `${steps} steps of the dual walk, four shears`,
@@ -71,5 +112,5 @@ export async function suite(): Promise<Comparison[]> {
       ),
     );
   }
-  return out;
+  return [...out, ...(await peers()), await cost()];
 }

@@ -31,7 +31,7 @@ static uint64_t *read_words(const char *name, size_t *count) {
   fseek(f, 0, SEEK_END);
   *count = ftell(f) / 8;
   rewind(f);
-  uint64_t *words = malloc(8 * *count);
+  uint64_t *words = (uint64_t *)malloc(8 * *count);
   if (fread(words, 8, *count, f) != *count) exit(1);
   fclose(f);
   return words;

@@ -95,6 +95,11 @@ export class DualTables {
     for (const table of this.at) raw.dualClear(table, 64, 0, this.stride);
   }
 
+  /** Bytes that a frequency takes at the default load, in one table. */
+  get bytesEach(): number {
+    return this.stride / LOAD;
+  }
+
   /** @throws LimitError where an entry of a matrix does not fit in 63 bits. */
   place(moves: readonly DualMove[]): PlacedMoves {
     const { dimension: d, modulus } = this.shape;

@@ -254,6 +254,23 @@ describe("limits", () => {
     expect(() => tables.fill(0, [{ frequency: [2n ** 63n, 0n], re: 1, im: 0 }])).toThrow(LimitError);
   });
 
+  it("take at most 40 bytes a frequency in dimension 2, and what is planned is what is taken", async () => {
+    for (const width of [1, 2] as const) {
+      const kernel = await loadKernel();
+      const entries = 100_000;
+      const before = kernel.raw.mark() >>> 0;
+      const tables = new DualTables(kernel, { dimension: 2, width, fold: "conjugate" }, entries, 2);
+      expect(tables.bytesEach).toBeLessThanOrEqual(40);
+      const taken = (kernel.raw.mark() >>> 0) - before;
+      expect(taken / (2 * entries)).toBeLessThan(1.01 * tables.bytesEach);
+      // All of them go in, and not one more.
+      const terms = Array.from({ length: entries }, (_, i) => ({ frequency: [1n, BigInt(i)], re: 1, im: 0 }));
+      tables.fill(0, terms);
+      expect(tables.count(0)).toBe(entries);
+      expect(() => tables.fill(1, [...terms, { frequency: [2n, 1n], re: 1, im: 0 }])).toThrow(LimitError);
+    }
+  });
+
   it("both builds give the same bits", async () => {
     const runs = await Promise.all(
       targets.map(async (target) => {
