@@ -1,6 +1,7 @@
 /** What is known of time averages without sampling: under Haar measure, or on a rational start's finite orbit. */
 
 import { decidePlane } from "../conditions/plane.js";
+import { above } from "../quantity/interval.js";
 import { estimatedQuantity, quantityNumber } from "../quantity/quantity.js";
 import type { Session } from "../session.js";
 import { commonDenominator } from "../walk/denominator.js";
@@ -84,7 +85,8 @@ export async function exactAverages(
     );
   }
   const gap = walk.dimension === 2 ? await provedGap(walk, budget.normStates, session) : undefined;
-  const contraction = gap === undefined ? 1 : Number(gap.norm.high);
+  // The decimal's double is the nearest: one unit more is surely above.
+  const contraction = gap === undefined ? 1 : above(Number(gap.norm.high));
   const findings = await haarFindings(walk, session, budget, generating, contraction);
   return { findings, ...(gap === undefined ? {} : { gap }), warnings };
 }

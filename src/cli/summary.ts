@@ -16,21 +16,32 @@ function section<T extends object>(heading: string, answer: Answer<T>, body: (an
 
 const findings = (rows: readonly Row[]) => table(["", "value", "interval", "standing"], rows);
 
-function averagesText(observables: Extract<Dossier["averages"], { observables: unknown }>["observables"]): string {
-  return observables
-    .map((o) => {
-      const last = o.stepsFor.at(-1);
-      return block(
-        `  ${o.label}`,
-        findings([
-          row("limit of the time average", o.mean),
-          row("variance (limit of n Var)", o.variance),
-          row("sampled mean", o.sampled.mean),
-          ...(last === undefined ? [] : [row(`moves for an error bar of ${number(last.halfWidth)}`, last.steps, true)]),
-        ]),
-      );
-    })
-    .join("\n");
+type Averages = Extract<Dossier["averages"], { observables: unknown }>;
+
+function averagesText({ observables, gap }: Averages): string {
+  const shrinking =
+    gap === undefined
+      ? []
+      : [
+          block(
+            "  all functions of mean 0",
+            findings([row("norm of a move's average", gap.norm), row("spectral radius", gap.spectralRadius)]),
+          ),
+        ];
+  const blocks = observables.map((o) => {
+    const last = o.stepsFor.at(-1);
+    return block(
+      `  ${o.label}`,
+      findings([
+        row("limit of the time average", o.mean),
+        row("variance (limit of n Var)", o.variance),
+        ...(o.bracket === undefined ? [] : [row("variance, proved bounds", o.bracket)]),
+        row("sampled mean", o.sampled.mean),
+        ...(last === undefined ? [] : [row(`moves for an error bar of ${number(last.halfWidth)}`, last.steps, true)]),
+      ]),
+    );
+  });
+  return [...blocks, ...shrinking].join("\n");
 }
 
 /** The kinds of orbits that mix slowest, over all moduli asked for. */
@@ -80,7 +91,7 @@ export function summary(dossier: Dossier): string[] {
         .filter(Boolean)
         .join("\n");
     }),
-    section("What do time averages converge to, and how fast?", dossier.averages, (a) => averagesText(a.observables)),
+    section("What do time averages converge to, and how fast?", dossier.averages, averagesText),
     section("How fast does the law forget the start?", dossier.law, (l) => {
       const rows = l.coefficients.filter((_, i) => i === 0 || i === l.coefficients.length - 1);
       return table(

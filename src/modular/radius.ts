@@ -113,6 +113,22 @@ function proveFinite(chain: Chain, x: Triple, rough: Triple, rate: number): bool
   return false;
 }
 
+/**
+ * r + Phi'(x) r from below, r known from below. Rounding may have made entries of it negative:
+ * Phi' r >= Phi' r+ - v Phi' 1 with v the size of the least of them.
+ */
+function twice(chain: Chain, x: Triple, r: Triple): Triple {
+  const positive = each(r, r, (a) => Math.max(0, a));
+  const least = LETTERS.reduce((m, l) => r[l].reduce((a, b) => Math.min(a, b), m), 0);
+  const lost = derivative(chain, x, filled(chain.n, -least), "high");
+  const gained = derivative(chain, x, positive, "low");
+  return each(
+    r,
+    each(gained, lost, (a, b) => below(a - b)),
+    (a, b) => below(a + b),
+  );
+}
+
 function decide(chain: Chain): Answer {
   let x = filled(chain.n, 0);
   let h = filled(chain.n, 1);
@@ -140,7 +156,11 @@ function decide(chain: Chain): Answer {
     const two = smallestRatio(step2, h);
     rate = Math.sqrt(Math.max(0, two));
     const c = smallestRatio(
-      each(r, derivative(chain, x, r, "low"), (a, b) => below(a + b)),
+      twice(
+        chain,
+        x,
+        each(x, next, (a, b) => below(b - a)),
+      ),
       h,
     );
     if (c > 0 && two >= 1) return { type: "infinite" };
