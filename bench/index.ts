@@ -9,6 +9,7 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   positive: () => import("./positive.js"),
   sampling: () => import("./sampling.js"),
   dual: () => import("./dual.js"),
+  variance: () => import("./variance.js"),
   orbits: () => import("./orbits.js"),
   trajectory: () => import("./trajectory.js"),
   tree: () => import("./tree.js"),
