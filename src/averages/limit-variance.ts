@@ -1,5 +1,6 @@
 /**
- * The limit variance <f, f> + 2 sum over n >= 1 of <f, P^n f>, as well as it is known.
+ * The limit variance <f, f> + 2 sum over n >= 1 of <f, P^n f> of the walk started from Haar
+ * measure, as well as it is known.
  *
  * With translations, |<f, P^n f>| <= <F, Q^n F>: F has the coefficients |f_k|, Q is the walk
  * without translations, since each path of frequencies has the same weight in both and a

@@ -46,7 +46,7 @@ export interface SampledAverage {
 export interface ObservableResult {
   readonly label: string;
   readonly mean: Quantity;
-  /** lim n Var(time average over n moves). */
+  /** lim n Var(time average over n moves) of the stationary walk: started from Haar measure, or uniformly on the start's finite orbit. */
   readonly variance: Quantity;
   /** Is the variance 0 (f = g - P g with g invariant under every A_i A_j^-1)? */
   readonly degenerate: Verdict;
