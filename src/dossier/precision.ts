@@ -6,11 +6,14 @@ import { isAnswered } from "./result.js";
 
 const BITS_OF_A_DOUBLE = 53;
 
-/** size / lambda, with the interval that lambda's gives; the rate of a single walk fluctuates about it. */
+/**
+ * size / lambda; the rate of a single walk fluctuates about it, so that an interval is given
+ * only where lambda itself is a statistical estimate.
+ */
 function lasts(size: number, lambda: Quantity, method: string): Quantity {
   const [low, high] = [lambda.low, lambda.high].map((end) => (end === undefined ? Number.NaN : Number(end)));
   const value = size / quantityNumber(lambda);
-  if (!((low as number) > 0)) return estimatedQuantity(value, method);
+  if (lambda.standing !== "estimated" || !((low as number) > 0)) return estimatedQuantity(value, method);
   return estimatedQuantity(value, method, { low: size / (high as number), high: size / (low as number) }, lambda.level);
 }
 
