@@ -36,10 +36,6 @@ function trapsTable(dossier: Dossier): Html | undefined {
   if (!isAnswered(start) || start.traps.length === 0) return undefined;
   const sampled = start.traps.some((t) => t.sampledHold !== undefined);
   const most = 12;
-  const distance = quantityColumn(
-    "distance",
-    start.traps.map((t) => t.distance),
-  );
   const hold = quantityColumn(
     "hold",
     start.traps.map((t) => t.hold),
@@ -51,18 +47,18 @@ function trapsTable(dossier: Dossier): Html | undefined {
   const usual = start.traps.every((t) => t.excess !== undefined);
   const rows = start.traps.slice(0, most).map((t) => {
     const s = t.sampledHold;
-    return html`${number(t.denominator)}<td>(${t.numerators.map((n) => brief(n)).join(", ")})</td>${distance.show(t.distance)}${hold.show(t.hold)}${usual && t.excess !== undefined && excess.show(t.excess)}${
+    return html`${number(t.denominator)}<td>(${t.numerators.map((n) => brief(n)).join(", ")})</td><td class="n">${significant(quantityNumber(t.distance), 4)}</td>${hold.show(t.hold)}${usual && t.excess !== undefined && excess.show(t.excess)}${
       sampled &&
       html`<td class="n">${s === undefined ? "–" : `${brief(s.median)} (${brief(s.low)} to ${brief(s.high)})`}</td>`
     }`;
   });
   const left = start.traps.length - rows.length;
   return table(
-    html`Rational points near the start, by predicted hold${left > 0 ? `; the ${most} strongest of ${start.traps.length}` : ""}. Hold in moves${usual ? "; beyond the usual: less the hold of a point on the dashed line below, such as every irrational start has" : ""}${sampled ? "; sampled hold: median (quantiles) over exact walks" : ""}.`,
+    html`Rational points near the start, by predicted hold${left > 0 ? `; the ${most} strongest of ${start.traps.length}` : ""}. Distances are proved to the digits shown. Hold in moves${usual ? "; beyond the usual: less the hold of a point on the dashed line below, such as every irrational start has" : ""}${sampled ? "; sampled hold: median (quantiles) over exact walks" : ""}.`,
     [
       { name: "denominator", n: true },
       { name: "numerators" },
-      distance.column,
+      { name: "distance", n: true },
       hold.column,
       ...(usual ? [excess.column] : []),
       ...(sampled ? [{ name: "sampled hold", n: true }] : []),
