@@ -91,6 +91,15 @@ export function percent(level: number): string {
   return `${brief(100 * level, 6)}\u202f%`;
 }
 
+/** An enclosed quantity to `digits` digits where its interval proves them all: both ends round to the same. */
+export function settled(q: Quantity, digits = 6): string | undefined {
+  if (q.standing !== "enclosed" || q.low === undefined || q.high === undefined) return undefined;
+  const [low, high] = [decimalValue(q.low), decimalValue(q.high)];
+  if (low === undefined || high === undefined || low.num === 0n || high.num === 0n) return undefined;
+  const text = (x: Rational) => fixed(x, digits - 1 - decade(x.toNumber()), decade(x.toNumber()), "near");
+  return text(low) === text(high) ? text(low) : undefined;
+}
+
 const decimals = (x: number) => (x === 0 || !Number.isFinite(x) ? 0 : decade(x));
 
 /** How a quantity is shown; `whole` where it counts something, so that no decimals are wanted of a large one. */

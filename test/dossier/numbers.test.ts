@@ -1,6 +1,6 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
-import { brief, decimalValue, shown, significant, superscript } from "../../src/dossier/numbers.js";
+import { brief, decimalValue, settled, shown, significant, superscript } from "../../src/dossier/numbers.js";
 import { Rational } from "../../src/exact/rational.js";
 import { enclosedQuantity, estimatedQuantity, exactQuantity } from "../../src/quantity/quantity.js";
 
@@ -95,5 +95,16 @@ describe("plain numbers", () => {
     expect(decimalValue(".5")?.toString()).toBe("1/2");
     expect(decimalValue("NaN")).toBeUndefined();
     expect(decimalValue("")).toBeUndefined();
+  });
+});
+
+describe("settled", () => {
+  it("gives the digits that an enclosure proves, and nothing where it does not", () => {
+    expect(settled(enclosedQuantity(0.4999999999999, 0.5000000000001, "m"))).toBe("0.500000");
+    expect(settled(enclosedQuantity(2.3456784, 2.3456785, "m"))).toBe("2.34568");
+    // The ends round to different digits.
+    expect(settled(enclosedQuantity(2.3456749, 2.3456751, "m"))).toBeUndefined();
+    expect(settled(enclosedQuantity(2.488, 2.5001, "m"))).toBeUndefined();
+    expect(settled(estimatedQuantity(1, "m"))).toBeUndefined();
   });
 });

@@ -4,7 +4,7 @@ import type { PoissonFinding } from "../../averages/limit-variance.js";
 import type { ObservableResult } from "../../averages/result.js";
 import { type Quantity, quantityNumber } from "../../quantity/quantity.js";
 import { type Html, html, joined, type Piece } from "../html.js";
-import { brief, percent, shown, significant } from "../numbers.js";
+import { brief, percent, settled, shown, significant } from "../numbers.js";
 import { correlationsPlot, histogramPlot, runningPlot } from "../plots/averages.js";
 import { pair } from "../plots/figure.js";
 import { type Dossier, isAnswered } from "../result.js";
@@ -39,13 +39,21 @@ export function averagesSummary(dossier: Dossier): Html {
     html`variance <i>v</i>`,
     averages.observables.map((o) => o.variance),
   );
+  // The interval stands in the section itself: here a few proved digits are enough.
+  const digits = (q: Quantity) => {
+    const text = settled(q);
+    return (
+      text &&
+      html`<td class="n"><span class="value">${text}</span> <span class="standing">proved to these digits</span></td>`
+    );
+  };
   const noted = averages.observables.filter((o) => o.notes.length > 0).map((o) => o.label);
   const found = table(
     html`Limit of each time average; <i>v</i> = lim <i>n</i> Var(average over <i>n</i> moves), so that its error after <i>n</i> moves is about √(<i>v</i>/<i>n</i>); moves until the ${percent(dossier.level)} interval has the half-width named.`,
     [{ name: "observable" }, limit.column, variance.column, { name: "moves" }],
     averages.observables.map(
       (o) =>
-        html`<th scope="row">${o.label}</th>${limit.show(o.mean)}${variance.show(o.variance)}<td>${needed(o)}</td>`,
+        html`<th scope="row">${o.label}</th>${limit.show(o.mean)}${digits(o.variance) ?? variance.show(o.variance)}<td>${needed(o)}</td>`,
     ),
   );
   return html`${found}${averages.warnings.map((w) => warning(w))}${noted.length > 0 && warning(html`Read the <a href="#averages">notes on ${listed(noted)}</a> before relying on these.`)}`;
