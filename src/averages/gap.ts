@@ -58,10 +58,12 @@ const texts = (m: readonly bigint[]) => [m.slice(0, 2).map(String), m.slice(2).m
 export function gapOf(walk: Walk, { bounds, free }: GapFinding): Gap | undefined {
   if (bounds === undefined) return undefined;
   const translated = walk.moves.some((m) => m.translation !== undefined);
-  const below: Interval = { low: 0, high: bounds.norm.high };
-  const norm = translated ? below : bounds.norm;
-  const radius = translated ? { low: 0, high: bounds.spectralRadius.high } : bounds.spectralRadius;
-  const method = `radii of convergence on the modular group by certificates${translated ? "; an upper bound, since translations only add phases" : ""}`;
+  const { least, freeSemigroup } = bounds;
+  const norm = translated ? { low: least, high: bounds.norm.high } : bounds.norm;
+  const radius = translated
+    ? { low: freeSemigroup ? least : 0, high: bounds.spectralRadius.high }
+    : bounds.spectralRadius;
+  const method = `radii of convergence on the modular group by certificates${translated ? "; from above, since translations only add phases, and from below the root of the sum of squared probabilities" : ""}`;
   // Of a mere upper bound, the bound is what a reader wants to see.
   const quantity = ({ low, high }: Interval, how = method) => {
     const q = enclosedQuantity(low, high, how);

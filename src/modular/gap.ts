@@ -13,7 +13,9 @@
  * the sum of squared probabilities; it is equal to it where the moves generate a free
  * semigroup: the group has rapid decay (Haagerup 1978; Jolissaint 1990 for this one), so the
  * spectral radius is lim |mu^n|_2^(1/n), and then |mu^n|_2 = |mu|_2^n.
- * With translations coefficients get phases of modulus 1: the upper bounds stay.
+ * With translations coefficients get phases of modulus 1: the upper bounds stay, and so does
+ * |P e_k| = |mu|_2 for a k whose images are distinct, where the matrices are (for words of n
+ * moves, where the semigroup is free).
  */
 import { Rational } from "../exact/rational.js";
 import { above, below, type Interval, over, point, root } from "../quantity/interval.js";
@@ -34,6 +36,8 @@ export interface GapBounds {
   readonly symmetric: boolean;
   /** Proved: the moves generate a free semigroup. */
   readonly freeSemigroup: boolean;
+  /** A lower bound of |P|, and for a free semigroup of the spectral radius, whatever the translations are. */
+  readonly least: number;
   readonly certificates: readonly Certificate[];
 }
 
@@ -124,13 +128,15 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
   const law: Law = new Map();
   for (const { matrix, probability } of moves) add(law, transposed(matrix), probability);
   const symmetric = same(law, reflected(law));
+  const size = twoNorm(law);
+  const least = law.size === moves.length ? size.low : 0;
   const certificates: Certificate[] = [];
   const own = bounded(law, mostStates);
   if (own !== undefined) certificates.push({ of: "P", radius: own });
   if (symmetric) {
     if (own === undefined || !own.certified) return undefined;
     const norm = inverseOf(own);
-    return { norm, spectralRadius: norm, symmetric, freeSemigroup: false, certificates };
+    return { norm, spectralRadius: norm, symmetric, freeSemigroup: false, least, certificates };
   }
   const freeSemigroup = isFreeSemigroup(law) || certifyFree(withInverses(law)) !== undefined;
   let norm: Interval = { low: 0, high: 1 };
@@ -157,10 +163,16 @@ export function gapBounds(moves: readonly PlanarMove[], mostStates: number): Gap
     for (let k = m; k > 1; k /= 2) bound = root(point(bound)).high;
     upper = Math.min(upper, bound);
   }
-  const size = twoNorm(law);
   if (freeSemigroup) upper = Math.min(upper, size.high);
   if (upper >= 1) return undefined;
   const low = Math.max(size.low, own === undefined ? 0 : inverseOf(own).low);
   norm = { low: Math.max(norm.low, size.low), high: norm.high };
-  return { norm, spectralRadius: { low: Math.min(low, upper), high: upper }, symmetric, freeSemigroup, certificates };
+  return {
+    norm,
+    spectralRadius: { low: Math.min(low, upper), high: upper },
+    symmetric,
+    freeSemigroup,
+    least,
+    certificates,
+  };
 }

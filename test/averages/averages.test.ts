@@ -69,7 +69,9 @@ describe("averages", () => {
     const shifted = free.map((m, i) => move(m, quarter, 1, [r(i, 5), r(1, 3)]));
     const upper = (await averages(walkOf(shifted), { ...small, steps: 50 })).gap!;
     expect(Number(upper.norm.high)).toBeCloseTo(Math.sqrt(3) / 2, 6);
-    expect(upper.norm.low).toBe("0");
+    // |P e_k|^2 = 4 / 16 for a k with four images.
+    expect(Number(upper.norm.low)).toBeCloseTo(0.5, 12);
+    expect(upper.spectralRadius.low).toBe("0");
     expect(upper.kesten).toBeUndefined();
   });
 
