@@ -52,7 +52,7 @@ export { wordMeans, wordNorms } from "./growth/words";
 // The law, correlations: the dual walk
 export { dualAdd, dualEvolve, dualMoveBytes } from "./dual/evolve";
 export { dualPhase } from "./dual/phase";
-export { dualEvaluate, dualFind, dualGather, dualLargestCoefficient, dualPair } from "./dual/sums";
+export { dualEvaluate, dualFind, dualGather, dualLargestCoefficient, dualPair, dualPairExact } from "./dual/sums";
 export {
   dualClear,
   dualCount,

@@ -10,6 +10,10 @@
  * A move: d x d entries of M_i (i64, by rows), its weight (f64), a flag (u64: 1 where it
  * has a phase), d fractions of b_i (16 bytes each: low word, high word).
  * With a modulus q > 0 (below 2^31) frequencies are residues in [0, q).
+ *
+ * Coefficients are f64, or i64: exact integers, with integer weights and no phases; the
+ * caller sees to it that no sum of their absolute values reaches 2^63. Images with a
+ * component beyond `keep` (where that is positive) are dropped.
  */
 import { FULL, OK, OVERFLOW } from "../status";
 import { fractionOf, turn, turnCos, turnSin } from "./phase";
@@ -80,7 +84,7 @@ function lookAhead(count: u32): void {
 }
 
 /** Adds the staged products to the table; false where it is full. */
-function insertStaged(to: usize, count: u32, dimension: u32, width: u32): bool {
+function insertStaged<T>(to: usize, count: u32, dimension: u32, width: u32): bool {
   lookAhead(count);
   const stride = (<usize>(dimension + width)) << 3;
   const keyBytes = (<usize>dimension) << 3;
@@ -119,11 +123,11 @@ function insertStaged(to: usize, count: u32, dimension: u32, width: u32): bool {
         store<i64>(slot + ((<usize>j) << 3), k);
         largest = max(largest, abs(k));
       }
-      store<f64>(slot + keyBytes, load<f64>(at, 64));
-      if (width == 2) store<f64>(slot + keyBytes, load<f64>(at, 72), 8);
+      store<T>(slot + keyBytes, load<T>(at, 64));
+      if (width == 2) store<T>(slot + keyBytes, load<T>(at, 72), 8);
     } else {
-      store<f64>(slot + keyBytes, load<f64>(slot + keyBytes) + load<f64>(at, 64));
-      if (width == 2) store<f64>(slot + keyBytes, load<f64>(slot + keyBytes, 8) + load<f64>(at, 72), 8);
+      store<T>(slot + keyBytes, load<T>(slot + keyBytes) + load<T>(at, 64));
+      if (width == 2) store<T>(slot + keyBytes, load<T>(slot + keyBytes, 8) + load<T>(at, 72), 8);
     }
   }
   store<u32>(to, entries, 4);
@@ -132,29 +136,41 @@ function insertStaged(to: usize, count: u32, dimension: u32, width: u32): bool {
 }
 
 /** Folds the staged key, flips the coefficient where the fold asks, finds the home slot. */
-function settle(to: usize, at: usize, dimension: u32, width: u32, fold: u32): void {
+function settle<T>(to: usize, at: usize, dimension: u32, width: u32, fold: u32): void {
   if (fold != FOLD_NONE && foldKey(at, dimension) && fold != FOLD_EVEN) {
     const last = at + 64 + ((<usize>(width - 1)) << 3);
-    store<f64>(last, -load<f64>(last));
+    store<T>(last, <T>-load<T>(last));
   }
   const h = dimension == 2 ? hash2(load<i64>(at), load<i64>(at, 8)) : hashKey(at, dimension);
   const slot = to + HEADER + <usize>home(h, slotsOf(to)) * ((<usize>(dimension + width)) << 3);
   store<u64>(at, slot, 80);
 }
 
-/** Puts `count` given terms (d components, two doubles each) into the table. OK or FULL. */
-export function dualAdd(to: usize, terms: usize, count: u32, dimension: u32, width: u32, fold: u32): i32 {
+/** Puts `count` given terms (d components, two coefficients each) into the table. OK or FULL. */
+export function dualAdd(to: usize, terms: usize, count: u32, dimension: u32, width: u32, fold: u32, exact: bool): i32 {
+  return exact
+    ? addTerms<i64>(to, terms, count, dimension, width, fold)
+    : addTerms<f64>(to, terms, count, dimension, width, fold);
+}
+
+function addTerms<T>(to: usize, terms: usize, count: u32, dimension: u32, width: u32, fold: u32): i32 {
   const bytes = (<usize>(dimension + 2)) << 3;
   const keyBytes = (<usize>dimension) << 3;
   for (let i: u32 = 0; i < count; i++) {
     const term = terms + bytes * i;
     memory.copy(stage, term, keyBytes);
-    store<f64>(stage, load<f64>(term + keyBytes), 64);
-    store<f64>(stage, load<f64>(term + keyBytes, 8), 72);
-    settle(to, stage, dimension, width, fold);
-    if (!insertStaged(to, 1, dimension, width)) return FULL;
+    store<T>(stage, load<T>(term + keyBytes), 64);
+    store<T>(stage, load<T>(term + keyBytes, 8), 72);
+    settle<T>(to, stage, dimension, width, fold);
+    if (!insertStaged<T>(to, 1, dimension, width)) return FULL;
   }
   return OK;
+}
+
+/** Whether a component is beyond `keep`. */
+function beyond(key: usize, dimension: u32, keep: i64): bool {
+  for (let j: u32 = 0; j < dimension; j++) if (abs(load<i64>(key + ((<usize>j) << 3))) > keep) return true;
+  return false;
 }
 
 /**
@@ -171,6 +187,25 @@ export function dualEvolve(
   fold: u32,
   modulus: i64,
   checked: bool,
+  keep: i64,
+  exact: bool,
+): i32 {
+  return exact
+    ? evolve<i64>(from, to, moves, moveCount, dimension, width, fold, modulus, checked, keep)
+    : evolve<f64>(from, to, moves, moveCount, dimension, width, fold, modulus, checked, keep);
+}
+
+function evolve<T>(
+  from: usize,
+  to: usize,
+  moves: usize,
+  moveCount: u32,
+  dimension: u32,
+  width: u32,
+  fold: u32,
+  modulus: i64,
+  checked: bool,
+  keep: i64,
 ): i32 {
   const stride = (<usize>(dimension + width)) << 3;
   const keyBytes = (<usize>dimension) << 3;
@@ -180,30 +215,31 @@ export function dualEvolve(
   let staged: u32 = 0;
   for (let slot = from + HEADER; slot < end; slot += stride) {
     if (vacant(slot, dimension)) continue;
-    const re = load<f64>(slot + keyBytes);
-    const im: f64 = width == 2 ? load<f64>(slot + keyBytes, 8) : 0;
+    const re = load<T>(slot + keyBytes);
+    const im: T = width == 2 ? load<T>(slot + keyBytes, 8) : <T>0;
     let move = moves;
     for (let i: u32 = 0; i < moveCount; i++, move += moveBytes) {
       if (checked && !fits(slot, move, dimension)) return OVERFLOW;
       const at = stage + STAGED * staged;
       image(at, slot, move, dimension, modulus);
-      const weight = load<f64>(move + weightAt);
+      if (keep > 0 && beyond(at, dimension, keep)) continue;
+      const weight = load<T>(move + weightAt);
       if (load<u64>(move + weightAt, 8) == 0) {
-        store<f64>(at, weight * re, 64);
-        store<f64>(at, weight * im, 72);
+        store<T>(at, <T>(weight * re), 64);
+        store<T>(at, <T>(weight * im), 72);
       } else {
         turn(fractionOf(slot, move + weightAt + 16, dimension));
-        const c = weight * turnCos;
-        const s = weight * turnSin;
-        store<f64>(at, c * re - s * im, 64);
-        store<f64>(at, c * im + s * re, 72);
+        const c = <f64>weight * turnCos;
+        const s = <f64>weight * turnSin;
+        store<T>(at, <T>(c * <f64>re - s * <f64>im), 64);
+        store<T>(at, <T>(c * <f64>im + s * <f64>re), 72);
       }
-      settle(to, at, dimension, width, fold);
+      settle<T>(to, at, dimension, width, fold);
       if (++staged == BLOCK) {
-        if (!insertStaged(to, staged, dimension, width)) return FULL;
+        if (!insertStaged<T>(to, staged, dimension, width)) return FULL;
         staged = 0;
       }
     }
   }
-  return insertStaged(to, staged, dimension, width) ? OK : FULL;
+  return insertStaged<T>(to, staged, dimension, width) ? OK : FULL;
 }

@@ -3,6 +3,7 @@
  * errors carried along (Sum2 of Ogita, Rump, Oishi: Accurate sum and dot product, SIAM J.
  * Sci. Comput. 2005): with N < 2^26 terms t the sum is off by at most u |sum| + (N u)^2 sum |t|.
  */
+import { mulHigh } from "../random/choices";
 import { fractionOf, turn, turnCos, turnSin } from "./phase";
 import { dualCount, FOLD_NONE, foldKey, HEADER, hash2, hashKey, home, locate, slotsOf, vacant } from "./table";
 
@@ -68,6 +69,38 @@ export function dualPair(out: usize, a: usize, b: usize, dimension: u32, width: 
   store<f64>(out, sum0 + lost0);
   store<f64>(out, absolute, 8);
   store<f64>(out, met, 16);
+}
+
+let wide0: u64 = 0;
+let wide1: u64 = 0;
+
+/** Adds a b to the 128 bits of wide1, wide0, signed. */
+function addWide(a: i64, b: i64): void {
+  const low = <u64>a * <u64>b;
+  const high = mulHigh(<u64>a, <u64>b) - (a < 0 ? <u64>b : 0) - (b < 0 ? <u64>a : 0);
+  wide0 += low;
+  wide1 += high + u64(wide0 < low);
+}
+
+/**
+ * `dualPair` for tables of integers, exactly: 128 bits at `out`, low word first. Each table's
+ * sum of absolute values is below 2^63, so that the sum of products is below 2^126.
+ */
+export function dualPairExact(out: usize, a: usize, b: usize, dimension: u32, width: u32): void {
+  const stride = (<usize>(dimension + width)) << 3;
+  const keyBytes = (<usize>dimension) << 3;
+  const end = a + HEADER + <usize>slotsOf(a) * stride;
+  wide0 = 0;
+  wide1 = 0;
+  for (let slot = a + HEADER; slot < end; slot += stride) {
+    if (vacant(slot, dimension)) continue;
+    const other = a == b ? slot : find(b, slot, dimension, width);
+    if (other == 0) continue;
+    addWide(load<i64>(slot + keyBytes), load<i64>(other + keyBytes));
+    if (width == 2) addWide(load<i64>(slot + keyBytes, 8), load<i64>(other + keyBytes, 8));
+  }
+  store<u64>(out, wide0);
+  store<u64>(out, wide1, 8);
 }
 
 /** Sum of c_k exp(2 pi i k.x), written as two doubles at `out`; `point`: d fractions of 128 bits. */

@@ -33,7 +33,13 @@ export async function averages(
   const walk = asWalk(input);
   return withSession(options, async (session) => {
     const sampling = samplingOf(options, session, walk);
-    const { findings, orbit, gap, warnings } = await exactAverages(walk, session, undefined, options.generating);
+    const { findings, orbit, gap, warnings } = await exactAverages(
+      walk,
+      session,
+      undefined,
+      options.generating,
+      options.exact,
+    );
     const means = findings.map((f) => quantityNumber(f.mean));
     const costs = orbit === undefined ? await startCosts(walk, means, session) : undefined;
     const sampled = await sampleAverages(walk, session, {

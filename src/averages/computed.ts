@@ -1,7 +1,9 @@
 /** What is computed of trigonometric polynomials under Haar measure: correlations, and in dimension 2 sums over all n. */
 import { isSelfAdjoint } from "../dual/adjoint.js";
+import { type IntegerTerms, integerMoves, integerTerms } from "../dual/integers.js";
 import { adjointMoves, forwardMoves } from "../dual/moves.js";
 import { shapeOf, type TrigPolynomial, tableTerms } from "../dual/polynomial.js";
+import type { DualMove, DualShape } from "../kernel/dual.js";
 import type { Session } from "../session.js";
 import type { Move, Walk } from "../walk/walk.js";
 import type { ExactBudget } from "./budget.js";
@@ -34,23 +36,44 @@ function correlationsOf(
   session: Session,
   budget: ExactBudget,
   share: number,
+  integers: boolean,
 ): CorrelationsPayload[] {
   const phases = isTranslated(walk);
   const forward = forwardMoves(walk);
-  const backward = isSelfAdjoint(walk) ? {} : { backward: adjointMoves(walk) };
+  const backward: { readonly backward?: readonly DualMove[] } = isSelfAdjoint(walk)
+    ? {}
+    : { backward: adjointMoves(walk) };
   return list.map((f) => {
     const shape = shapeOf(f, walk.dimension, phases);
+    const whole = integers ? integerTerms(f, shape) : undefined;
     return {
-      shape,
-      forward,
-      ...backward,
-      ...tableTerms(f, shape),
+      ...(whole === undefined
+        ? { shape, forward, ...backward, ...tableTerms(f, shape) }
+        : inIntegers(walk, shape, whole, forward, backward.backward)),
       entries: budget.entries,
       products: budget.products / share,
       last: budget.last,
       memoryLimit: session.memoryLimit,
     };
   });
+}
+
+function inIntegers(
+  walk: Walk,
+  shape: DualShape,
+  { terms, scale, size }: IntegerTerms,
+  forward: readonly DualMove[],
+  backward: readonly DualMove[] | undefined,
+) {
+  const { moves, total } = integerMoves(walk, forward);
+  return {
+    shape: { ...shape, exact: true },
+    forward: moves,
+    ...(backward === undefined ? {} : { backward: integerMoves(walk, backward).moves }),
+    terms,
+    bound: { size: 0, error: 0 },
+    exact: { scale, total, size },
+  };
 }
 
 async function poissonFits(
@@ -88,6 +111,7 @@ export async function computeSums(
   session: Session,
   budget: ExactBudget,
   at: readonly number[],
+  integers = false,
 ): Promise<Computed[]> {
   if (list.length === 0) return [];
   let modular: readonly ModularSums[] = [];
@@ -102,8 +126,8 @@ export async function computeSums(
   const dominated = list.filter((_, i) => modular[i]?.dominating !== undefined);
   const share = list.length + dominated.length;
   const payloads = [
-    ...correlationsOf(walk, list, session, budget, share),
-    ...correlationsOf(withoutTranslations(walk), dominated.map(moduliOf), session, budget, share),
+    ...correlationsOf(walk, list, session, budget, share, integers),
+    ...correlationsOf(withoutTranslations(walk), dominated.map(moduliOf), session, budget, share, false),
   ];
   const stage = "correlations by the dual walk";
   session.progress(stage, 0, payloads.length);

@@ -47,6 +47,7 @@ export async function exactAverages(
   session: Session,
   budget: ExactBudget = EXACT_BUDGET[session.effort],
   generating: readonly number[] = [],
+  integers = false,
 ): Promise<ExactAverages> {
   const denominator = commonDenominator(walk);
   if (denominator !== undefined) {
@@ -62,7 +63,7 @@ export async function exactAverages(
       };
     }
     return {
-      findings: (await haarFindings(walk, session, budget, generating)).map(asEstimate),
+      findings: (await haarFindings(walk, session, budget, generating, 1, integers)).map(asEstimate),
       warnings: [
         `The start is rational with denominator ${denominator}: averages converge to the mean over a finite orbit, which has more points than this effort lists (${budget.points}); integrals are given in its place.`,
       ],
@@ -87,6 +88,6 @@ export async function exactAverages(
   const gap = walk.dimension === 2 ? await provedGap(walk, budget.normStates, session) : undefined;
   // The decimal's double is the nearest: one unit more is surely above.
   const contraction = gap === undefined ? 1 : above(Number(gap.norm.high));
-  const findings = await haarFindings(walk, session, budget, generating, contraction);
+  const findings = await haarFindings(walk, session, budget, generating, contraction, integers);
   return { findings, ...(gap === undefined ? {} : { gap }), warnings };
 }

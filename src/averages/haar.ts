@@ -27,6 +27,7 @@ const END: Readonly<Record<CorrelationSums["end"], string>> = {
   full: "the frequency table would be full; a higher effort or a higher memory limit allows a larger one",
   overflow: "a frequency of the next term needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher effort allows more",
+  coefficients: "the exact integers of the next term may need more than 63 bits",
 };
 
 const constantOf = (degeneracy: Degeneracy) => degeneracy.g !== undefined && degeneracy.g.harmonics.length === 0;
@@ -51,7 +52,10 @@ function squareNorm(f: TrigPolynomial): Rational | undefined {
   return sum.mul(Rational.of(1, 2));
 }
 
-function correlationQuantities(f: TrigPolynomial, { values, errors }: CorrelationSums): Quantity[] {
+function correlationQuantities(f: TrigPolynomial, { values, errors, fractions }: CorrelationSums): Quantity[] {
+  if (fractions !== undefined) {
+    return fractions.map(([num, den]) => exactQuantity(Rational.of(num, den), "dual walk in exact integers"));
+  }
   const norm = squareNorm(f);
   return values.map((value, n) =>
     n === 0 && norm !== undefined
@@ -194,13 +198,17 @@ async function boxBrackets(
   );
 }
 
-/** @param contraction a proved bound of |P| on functions of mean 0; 1 where none is known */
+/**
+ * @param contraction a proved bound of |P| on functions of mean 0; 1 where none is known
+ * @param integers correlations in exact integers, where coefficients and weights allow it
+ */
 export async function haarFindings(
   walk: Walk,
   session: Session,
   budget: ExactBudget,
   at: readonly number[] = [],
   contraction = 1,
+  integers = false,
 ): Promise<ExactFinding[]> {
   const differences = differencesOf(walk);
   const parts = walk.observables.map((observable) => {
@@ -215,6 +223,7 @@ export async function haarFindings(
     session,
     budget,
     at,
+    integers,
   );
   const brackets = await boxBrackets(walk, session, budget, contraction);
   return parts.map((part) => {

@@ -1,4 +1,6 @@
 /** Options of `averages`, read and checked before anything is computed. */
+
+import { notInIntegers } from "../dual/integers.js";
 import { type Fault, OptionsError } from "../errors.js";
 import type { CommonOptions, Session } from "../session.js";
 import type { Walk } from "../walk/walk.js";
@@ -11,6 +13,11 @@ export interface AveragesOptions extends CommonOptions {
   readonly replicates?: number;
   /** Points z in (0, 1] at which to evaluate the correlations' generating function, sum of z^n <f, P^n f>. */
   readonly generating?: readonly number[];
+  /**
+   * Correlations as exact fractions, from integers over the weights' common denominator: for walks
+   * without translations and observables with rational coefficients. Default: doubles, enclosed.
+   */
+  readonly exact?: boolean;
 }
 
 /** Where only the moves are given: as many replicates as make the usual work of it, but enough to compare. */
@@ -18,6 +25,13 @@ const FEWEST = 8;
 function replicatesFor(steps: number, usual: { readonly steps: number; readonly replicates: number }): number {
   const share = Math.floor((usual.steps * usual.replicates) / steps);
   return Math.min(usual.replicates, Math.max(FEWEST, Number.isFinite(share) ? share : FEWEST));
+}
+
+function irrationalObservable(walk: Walk): string | undefined {
+  const found = walk.observables.find(
+    (f) => f.type === "terms" && f.terms.some((t) => t.cos.rational === undefined || t.sin.rational === undefined),
+  );
+  return found === undefined ? undefined : `an irrational coefficient in ${found.label}`;
 }
 
 /** @throws OptionsError naming every option that is wrong. */
@@ -39,6 +53,13 @@ export function samplingOf(
   for (const z of options.generating ?? []) {
     if (z > 0 && z <= 1) continue;
     faults.push({ pointer: "--generating", message: `found ${z}; accepted: numbers above 0, at most 1` });
+  }
+  if (options.exact === true) {
+    const found = notInIntegers(walk) ?? irrationalObservable(walk);
+    if (found !== undefined) {
+      const accepted = "walks without translations, observables with rational coefficients";
+      faults.push({ pointer: "--exact", message: `found ${found}; accepted: ${accepted}` });
+    }
   }
   if (faults.length > 0) throw new OptionsError(faults);
   return { steps, replicates };

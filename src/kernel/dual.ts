@@ -18,6 +18,8 @@ export interface DualShape {
   /** Doubles a coefficient: 1 where all stay real (or, folded, all imaginary), else 2. */
   readonly width: 1 | 2;
   readonly fold: Fold;
+  /** Coefficients are integers, and so are weights; no phases. Their absolute sum must stay below 2^63. */
+  readonly exact?: boolean;
   /** Frequencies are residues modulo this, 1 to 2^31 - 1; with the fold `none` only. */
   readonly modulus?: number;
 }
@@ -25,6 +27,7 @@ export interface DualShape {
 /** What one move does to frequencies: e_k goes to weight exp(2 pi i k.translation) e_{matrix k}. */
 export interface DualMove {
   readonly matrix: readonly (readonly bigint[])[];
+  /** A whole number where the table's coefficients are exact integers, below 2^53 then. */
   readonly weight: number;
   /** d fractions, in units of 2^-128, from 0 to 2^128 - 1. Needs width 2. */
   readonly translation?: readonly bigint[];
@@ -34,6 +37,13 @@ export interface FrequencyTerm {
   readonly frequency: readonly bigint[];
   readonly re: number;
   readonly im: number;
+}
+
+/** A term of a table of exact integers. */
+export interface IntegerTerm {
+  readonly frequency: readonly bigint[];
+  readonly re: bigint;
+  readonly im: bigint;
 }
 
 /** Moves laid out in the arena. */
@@ -72,6 +82,7 @@ export class DualTables {
   private readonly stride: number;
   private readonly fold: number;
   private readonly modulus: bigint;
+  private readonly exact: boolean;
 
   /**
    * Takes memory for `tables` tables of at most `entries` frequencies each.
@@ -88,6 +99,7 @@ export class DualTables {
     this.slots = Math.max(64, Math.ceil(entries / LOAD) + 1);
     this.fold = { none: raw.dualFoldNone(), even: raw.dualFoldEven(), conjugate: raw.dualFoldConjugate() }[shape.fold];
     this.modulus = BigInt(shape.modulus ?? 0);
+    this.exact = shape.exact === true;
     const bytes = raw.dualHeaderBytes() + this.slots * this.stride;
     kernel.require(tables * bytes, `${tables} frequency tables of ${entries} entries`);
     for (let i = 0; i < tables; i++) this.at.push(kernel.alloc(bytes, "a frequency table"));
@@ -121,7 +133,10 @@ export class DualTables {
         if (sum > reach) reach = sum;
       }
       const tail = at + m * bytes + 8 * d * d;
-      kernel.f64(tail, 1)[0] = move.weight;
+      if (this.exact) {
+        if (move.translation !== undefined) throw new RangeError("place: exact tables take no translations");
+        kernel.i64(tail, 1)[0] = BigInt(move.weight);
+      } else kernel.f64(tail, 1)[0] = move.weight;
       kernel.u64(tail + 8, 1)[0] = move.translation === undefined ? 0n : 1n;
       this.putFractions(tail + 16, move.translation ?? new Array<bigint>(d).fill(0n));
     }
@@ -147,7 +162,7 @@ export class DualTables {
    * says. With width 1, `re` is the coefficient that is kept.
    * @throws LimitError where there are more terms than entries, or a component is beyond 2^63.
    */
-  fill(table: number, terms: readonly FrequencyTerm[]): void {
+  fill(table: number, terms: readonly (FrequencyTerm | IntegerTerm)[]): void {
     const { dimension: d, width } = this.shape;
     const { kernel } = this;
     this.clear(table, terms.length);
@@ -160,15 +175,20 @@ export class DualTables {
           if (k <= -INT64 || k >= INT64) throw new LimitError(`a frequency ${k} is beyond 2^63`);
           key[j] = this.modulus === 0n ? k : positiveMod(k, this.modulus);
         }
-        kernel.f64(at + i * bytes + 8 * d, 2).set([term.re, term.im]);
+        const value = at + i * bytes + 8 * d;
+        if (this.exact) kernel.i64(value, 2).set([BigInt(term.re), BigInt(term.im)]);
+        else kernel.f64(value, 2).set([Number(term.re), Number(term.im)]);
       }
-      const status = kernel.raw.dualAdd(this.at[table] as number, at, terms.length, d, width, this.fold);
+      const status = kernel.raw.dualAdd(this.at[table] as number, at, terms.length, d, width, this.fold, this.exact);
       if (status !== 0) throw new LimitError(`${terms.length} frequencies do not fit in ${this.entries} entries`);
     });
   }
 
-  /** Writes one step of the dual walk, from table `from` to table `to`; unless `done`, `to` is of no use. */
-  evolve(from: number, to: number, moves: PlacedMoves): StepEnd {
+  /**
+   * Writes one step of the dual walk, from table `from` to table `to`; unless `done`, `to` is of no use.
+   * @param keep frequencies with a larger |component| are dropped; absent: none
+   */
+  evolve(from: number, to: number, moves: PlacedMoves, keep?: bigint): StepEnd {
     const { raw } = this.kernel;
     const { dimension, width } = this.shape;
     this.clear(to, this.count(from) * moves.count);
@@ -183,6 +203,8 @@ export class DualTables {
       this.fold,
       this.modulus,
       checked,
+      keep === undefined || keep >= INT64 ? 0n : keep,
+      this.exact,
     );
     if (status === 0) return "done";
     if (status === raw.statusOverflow()) return "overflow";
@@ -221,6 +243,15 @@ export class DualTables {
     return { sum, absolute, met };
   }
 
+  /** The `sum` of `pair`, exactly, for tables of integers. */
+  pairExact(a: number, b: number): bigint {
+    const [walked, sought] = this.count(a) <= this.count(b) ? [a, b] : [b, a];
+    const { dimension, width } = this.shape;
+    this.kernel.raw.dualPairExact(this.scratch, this.at[walked] as number, this.at[sought] as number, dimension, width);
+    const [low, high] = this.kernel.u64(this.scratch, 2) as unknown as [bigint, bigint];
+    return BigInt.asIntN(128, (high << 64n) | low);
+  }
+
   /** The sum of c_k exp(2 pi i k.x) over the slots; `point`: d fractions in units of 2^-128. */
   evaluate(table: number, point: readonly bigint[]): { re: number; im: number } {
     const { dimension, width } = this.shape;
@@ -245,6 +276,16 @@ export class DualTables {
     if (at === 0) return undefined;
     const values = this.kernel.f64(at + 8 * d, width);
     return { re: values[0] as number, im: width === 2 ? (values[1] as number) : 0 };
+  }
+
+  /** The integer coefficient kept for a frequency, 0 where there is none; for tables of integers without a fold. */
+  integerAt(table: number, frequency: readonly bigint[]): { re: bigint; im: bigint } {
+    const { dimension: d, width } = this.shape;
+    this.kernel.i64(this.scratch, d).set(frequency);
+    const at = this.kernel.raw.dualFind(this.at[table] as number, this.scratch, d, width, this.fold) >>> 0;
+    if (at === 0) return { re: 0n, im: 0n };
+    const values = this.kernel.i64(at + 8 * d, width);
+    return { re: values[0] as bigint, im: width === 2 ? (values[1] as bigint) : 0n };
   }
 
   /** All entries of a table, in the order of its slots. For small tables: reports and tests. */

@@ -3,7 +3,6 @@
  * E e_k(x_n) is the integral of P^n e_k against the law of x_0. No sampling.
  */
 
-import type { StepEnd } from "../kernel/dual.js";
 import { loadReal } from "../kernel/real.js";
 import { type Session, type SharedSession, withSession } from "../session.js";
 import { VERSION } from "../version.js";
@@ -18,9 +17,10 @@ import type { LawResult } from "./result.js";
 
 export type { LawOptions } from "./options.js";
 
-const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
+const END_REASON: Readonly<Record<LawEnd["end"], string>> = {
   done: "all steps asked for",
   full: "the frequency table would be full; a higher --effort or a higher memory limit allows a larger one",
+  coefficients: "the exact integers of the next step may need more than 63 bits",
   overflow: "a frequency of the next step needs more than 63 bits",
   budget: "the products that this effort allows are used up; a higher --effort allows more",
 };
@@ -28,13 +28,14 @@ const END_REASON: Readonly<Record<StepEnd | "budget", string>> = {
 const breathe = () => new Promise<void>((resolve) => setTimeout(resolve, 0));
 
 /** The walk's coefficient at the frequency asked for; the session breathes between steps. */
-function followIn(session: Session, walk: Walk, request: LawRequest): Promise<LawEnd> {
+function followIn(session: Session, walk: Walk, request: LawRequest, options: LawOptions): Promise<LawEnd> {
   let since = 0;
   const { frequency, steps } = request;
   return follow(walk, {
     frequency,
     steps,
     denominator: commonDenominator(walk),
+    exact: options.exact === true,
     ...LAW_BUDGET[session.effort],
     memoryLimit: session.memoryLimit,
     pause: async (step, products) => {
@@ -59,8 +60,8 @@ function followIn(session: Session, walk: Walk, request: LawRequest): Promise<La
 export async function law(input: WalkInput, options: LawOptions & SharedSession): Promise<LawResult> {
   const walk = asWalk(input);
   return withSession(options, async (session) => {
-    const request = readOptions(options, walk.dimension);
-    const { coefficients, end } = await followIn(session, walk, request);
+    const request = readOptions(options, walk);
+    const { coefficients, end } = await followIn(session, walk, request, options);
     const real = await loadReal();
     const decay = fitDecay(coefficients, real);
     const whole = options.distance !== false;

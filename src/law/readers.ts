@@ -5,6 +5,7 @@
 import { encloseAround } from "../dual/enclose.js";
 import { pointFractions } from "../dual/moves.js";
 import { polynomialOf, tableTerms } from "../dual/polynomial.js";
+import { Rational } from "../exact/rational.js";
 import type { DualTables } from "../kernel/dual.js";
 import { evaluationError, type TableBound, U } from "../kernel/dual-rounding.js";
 import { exactQuantity, type Quantity } from "../quantity/quantity.js";
@@ -16,7 +17,7 @@ export interface ComplexQuantity {
 }
 
 /** Reads one table; `bound` is what is proved of the table's size and error. */
-export type TableReader = (tables: DualTables, table: number, bound: TableBound) => ComplexQuantity;
+export type TableReader = (tables: DualTables, table: number, bound: TableBound, step: number) => ComplexQuantity;
 
 export const exactly = (re: bigint, method: string): ComplexQuantity => ({
   real: exactQuantity(re, method),
@@ -64,6 +65,32 @@ function againstDensity(start: Start & { type: "density" }, dimension: number): 
     const arithmetic = (4 + met) * U * absolute;
     const error = (arithmetic + bound.error * largest + (bound.size + bound.error) * rounded.error) * (1 + 2 ** -48);
     return around(re, im, error, "dual walk paired with the density");
+  };
+}
+
+/** Tables of integers over total^step against a density with rational coefficients: exact fractions. */
+export function exactReaderOf(start: Start, total: bigint): TableReader {
+  if (start.type !== "density") throw new RangeError("exactReaderOf: only a density has rational coefficients");
+  const half = Rational.of(1, 2);
+  // The coefficient of the density at -k, against e_k.
+  const both = polynomialOf(start.terms).harmonics.flatMap(({ frequency, cos, sin }) => {
+    const [re, im] = [cos.scale(half).rational as Rational, sin.scale(half).rational as Rational];
+    return [
+      { frequency, re, im },
+      { frequency: frequency.map((k) => -k), re, im: im.neg() },
+    ];
+  });
+  const method = "dual walk in exact integers, paired with the density";
+  return (tables, table, _, step) => {
+    let re = Rational.ZERO;
+    let im = Rational.ZERO;
+    for (const term of both) {
+      const c = tables.integerAt(table, term.frequency);
+      re = re.add(term.re.mul(Rational.of(c.re))).add(term.im.neg().mul(Rational.of(c.im)));
+      im = im.add(term.im.mul(Rational.of(c.re))).add(term.re.mul(Rational.of(c.im)));
+    }
+    const over = Rational.of(1n, total ** BigInt(step));
+    return { real: exactQuantity(re.mul(over), method), imag: exactQuantity(im.mul(over), method) };
   };
 }
 

@@ -3,12 +3,13 @@ import type { Gap } from "../../averages/gap.js";
 import type { ObservableResult } from "../../averages/result.js";
 import type { Question } from "../command.js";
 import { block, cells, number, page, paragraph, table, verdict } from "../render.js";
-import { realList, whole } from "../values.js";
+import { realList, whole, yes } from "../values.js";
 
 interface Values {
   readonly steps?: number;
   readonly replicates?: number;
   readonly generating?: readonly number[];
+  readonly exact?: boolean;
 }
 
 const CORRELATIONS = 8;
@@ -89,6 +90,7 @@ export const averagesQuestion: Question<Values> = {
       text: "sums of z^n <f, P^n f> over n >= 0, z in (0, 1], comma-separated",
       read: realList,
     },
+    { flags: "--exact", text: "correlations as exact fractions (no translations, rational coefficients)", read: yes },
   ],
   ask: async ({ walk, values, common }) => {
     const result = await averages(walk, { ...common, ...values });

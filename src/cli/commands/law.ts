@@ -4,11 +4,12 @@ import { decimalDown, decimalUp } from "../../quantity/decimal.js";
 import { quantityNumber } from "../../quantity/quantity.js";
 import type { Question } from "../command.js";
 import { block, cells, number, page, paragraph, table } from "../render.js";
-import { bigList, whole } from "../values.js";
+import { bigList, whole, yes } from "../values.js";
 
 interface Values {
   readonly frequency: readonly string[];
   readonly steps?: number;
+  readonly exact?: boolean;
 }
 
 const ROWS = 60;
@@ -38,11 +39,12 @@ export const lawQuestion: Question<Values> = {
   examples: ["torwend law examples/tray.json --frequency 1,0 --steps 20"],
   options: [
     { flags: "--frequency <k>", text: "d whole numbers separated by commas", read: bigList, required: true },
+    { flags: "--exact", text: "exact fractions, for a density (no translations, rational coefficients)", read: yes },
     { flags: "--steps <n>", text: "the last move wanted (default: as the effort allows, up to 40)", read: whole },
   ],
   ask: async ({ walk, values, common }) => {
-    const { frequency, steps } = values;
-    const result = await law(walk, { ...common, frequency, ...(steps === undefined ? {} : { steps }) });
+    const { steps } = values;
+    const result = await law(walk, { ...common, ...values });
     const rows = result.coefficients.slice(0, ROWS).map((c) => {
       const [re, reInterval, standing] = cells(c.real);
       const [im, imInterval] = cells(c.imag);
