@@ -11,7 +11,7 @@
  * the last place of a number below 1).
  */
 import { alloc } from "../memory";
-import { ROOTS_BYTES, writeRoots } from "./roots";
+import { LONGEST, ROOTS_BYTES, writeRoots } from "./roots";
 
 const TURN: f64 = 6.283185307179586476925286766559;
 /** Passes at most: lengths stay below 2^31. */
@@ -87,10 +87,11 @@ export function planFamily(m: u32): u32 {
 }
 
 /**
- * Makes the plan for length m (of the form of `lengthFor`); 0 where the arena is full.
+ * Makes the plan for length m (of the form of `lengthFor`); 0 where the arena is full or no check is to be had.
  * @param like a plan of the same family, at least as long, whose tables are shared; or 0
  */
 export function makePlan(m: u32, like: usize): usize {
+  if (m > LONGEST) return 0;
   const plan = alloc(<u32>SIZE);
   if (plan == 0) return 0;
   store<u32>(plan, m);

@@ -22,7 +22,7 @@ const BY_LOW: f64 = 0.00000762939453125;
 const BY_HIGH: f64 = 5.820766091346741e-11;
 
 const BY_P1: f64 = 1.0 / 2013265921.0;
-const BY_P2: f64 = 1.0 / 1572864001.0;
+const BY_P2: f64 = 1.0 / 1811939329.0;
 
 /** The two residues of the digits in a transform that has not been evaluated, as one word. */
 export function digitResidues(plan: usize, at: usize): u64 {

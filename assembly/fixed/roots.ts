@@ -3,14 +3,18 @@
  * check of products (residue.ts) needs, kept in a plan. Montgomery's multiplication, R = 2^32.
  */
 
-/** 15 2^27 + 1 and 375 2^22 + 1: both have roots of unity of order 4 M for M up to 5 2^20. */
+/**
+ * 15 2^27 + 1 and 27 2^26 + 1: the first has roots of unity of order 4 M for M = 2^a, 3 2^a
+ * and 5 2^a up to a = 25, the second up to a = 24, of order 4 M / 5 where M has the factor 5
+ * (rho^{2M} = (-1)^5 all the same).
+ */
 export const P1: u32 = 2013265921;
-export const P2: u32 = 1572864001;
+export const P2: u32 = 1811939329;
 const G1: u64 = 31;
 const G2: u64 = 13;
 
-/** The longest plan whose products can be checked. */
-export const LONGEST: u32 = 5 << 20;
+/** Longer plans have no such roots. */
+export const LONGEST: u32 = (1 << 25) - 1;
 
 /** Powers of rho that are kept: a block of digits is a sum of products with them. */
 export const BLOCK: u32 = 64;
@@ -40,7 +44,9 @@ function inverse32(p: u32): u32 {
 }
 
 function writePrime(at: usize, m: u32, p: u32, g: u64): void {
-  const root = power(g, (<u64>p - 1) / (4 * <u64>m), p);
+  const whole = <u64>p - 1;
+  const order = 4 * <u64>m;
+  const root = power(g, whole / (whole % order == 0 ? order : order / 5), p);
   const w = <u32>((power(root, BLOCK, p) << 32) % p);
   store<u32>(at, w);
   store<u32>(at, w * inverse32(p), 4);

@@ -469,6 +469,7 @@ export class TreeRun {
       this.kernel.require(raw.planBytes(length) >>> 0, "the transforms' tables");
       const family = raw.planFamily(length);
       const plan = raw.makePlan(length, families.get(family) ?? 0) >>> 0;
+      if (plan === 0) throw new LimitError(`a transform of length ${length} is beyond what can be checked or held`);
       if (!families.has(family)) families.set(family, plan);
       this.plans.set(length, plan);
     }

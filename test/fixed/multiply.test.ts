@@ -67,4 +67,38 @@ describe.each(["simd", "plain"] as KernelTarget[])("multiply (%s)", (target) => 
     expect(() => multiply(kernel, worst, worst, limbs, 14)).toThrow(/failed its check/);
     expect(multiply(kernel, worst, worst, limbs, 12)).toBe(worst * worst);
   });
+  it("checks products that wrap, at every length that is taken: the primes have roots for them", async () => {
+    const width = 12;
+    for (const length of [8, 24, 40, 3 << 10, 5 << 11, 3 << 17, 1 << 21]) {
+      const { raw, ...kernel } = await loadWithArena(target);
+      const plan = raw.makePlan(length, 0) >>> 0;
+      // All 2 M digits: what passes the top wraps with its sign turned, which only rho^(2M) = -1 can check.
+      const limbs = Math.floor((2 * length * width) / 64);
+      const [a, b, out] = [0, 1, 2].map(() => kernel.alloc(8 * limbs)) as [number, number, number];
+      const next = source(length);
+      for (const at of [a, b]) {
+        const words = kernel.u32(at, 2 * limbs);
+        for (let i = 0; i < words.length; i++) words[i] = next();
+      }
+      const [x, y, work] = [0, 1, 2].map(() => kernel.alloc(16 * length)) as [number, number, number];
+      const [xNotes, yNotes] = [kernel.alloc(16), kernel.alloc(16)] as const;
+      raw.treeTransform(plan, x, xNotes, a, 8 * limbs, 1, limbs, width, true);
+      raw.treeTransform(plan, y, yNotes, b, 8 * limbs, 1, limbs, width, true);
+      const row = () => raw.treeRow(plan, x, xNotes, y, yNotes, 1, 1, work, out, 8 * limbs, limbs, 0, width, true);
+      expect(row(), `length ${length}`).toBe(0);
+      // A wrong evaluation is seen.
+      kernel.f64(y, 1)[0]! += 2 ** 30;
+      expect(row(), `length ${length}`).not.toBe(0);
+    }
+  });
 });
+
+async function loadWithArena(target: KernelTarget) {
+  const kernel = await loadKernel({ target, memoryLimit: 2 ** 29 });
+  return {
+    raw: kernel.raw,
+    alloc: (bytes: number) => kernel.alloc(bytes, "a test"),
+    u32: kernel.u32.bind(kernel),
+    f64: kernel.f64.bind(kernel),
+  };
+}
