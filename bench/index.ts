@@ -14,6 +14,7 @@ const suites: Record<string, () => Promise<{ suite: () => Promise<Comparison[]> 
   trajectory: () => import("./trajectory.js"),
   tree: () => import("./tree.js"),
   ensemble: () => import("./ensemble.js"),
+  cocycle: () => import("./cocycle.js"),
   thresholds: () => import("./thresholds.js"),
 };
 

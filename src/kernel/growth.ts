@@ -75,7 +75,7 @@ export interface GrowthRun {
 }
 
 /** An entry of a starting frame: uniform in [-1/2, 1/2), so that the frame is generic. */
-function startingFrame(kernel: Kernel, run: GrowthRun, replicate: number, d: number): number[][] {
+export function startingFrame(kernel: Kernel, run: GrowthRun, replicate: number, d: number): number[][] {
   return Array.from({ length: d }, (_, i) =>
     Array.from(drawStartWords(kernel, run.seed, replicate, i, d), (w) => (Number(w >> 11n) + 0.5) / 2 ** 53 - 0.5),
   );
