@@ -90,7 +90,7 @@ export class Kernel {
 
   private refusal(bytes: number, what: string): LimitError {
     const mib = (x: number) => `${Math.ceil(x / 2 ** 20)} MiB`;
-    return new LimitError(`${what} needs ${mib(bytes)} of memory; the limit is ${mib(this.memoryLimit)} in all`);
+    return new LimitError(`${what} would take ${mib(bytes)} of memory; the limit is ${mib(this.memoryLimit)} in all`);
   }
 
   /** Runs `body` and gives back all that it took from the arena. */

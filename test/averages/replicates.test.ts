@@ -155,7 +155,7 @@ describe("segmentSums of replicates", () => {
   it("refuses what its memory does not hold", async () => {
     const walk = makeWalk(STROKES, { type: "uniform" }, [wave([1, 0], 1)]);
     const request = { seed: 1n, steps: 2_000_000, first: 0, count: 1, ends: [2_000_000], memoryLimit: 2 ** 21 };
-    await expect(segmentSums(walk, request)).rejects.toThrow(/needs .* MiB/);
+    await expect(segmentSums(walk, request)).rejects.toThrow(/would take .* MiB/);
   });
 });
 
