@@ -61,6 +61,9 @@ export {
   dualFoldNone,
   dualHeaderBytes,
   dualLargest,
+  dualSetPacked,
+  dualSetPart,
+  dualSlots,
 } from "./dual/table";
 
 // Averages along a path

@@ -9,6 +9,7 @@ import "./averages/poisson-jobs.js";
 import "./growth/jobs.js";
 import "./growth/positive/jobs.js";
 import "./law/jobs.js";
+import "./law/spread-jobs.js";
 import "./start/jobs.js";
 import { findJob } from "./kernel/jobs.js";
 import type { JobReply, JobRequest } from "./kernel/pool.js";

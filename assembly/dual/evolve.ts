@@ -26,7 +26,9 @@ import {
   hash2,
   hashKey,
   home,
+  inPart,
   locate,
+  partsOf,
   slotsOf,
   vacant,
 } from "./table";
@@ -135,15 +137,17 @@ function insertStaged<T>(to: usize, count: u32, dimension: u32, width: u32): boo
   return true;
 }
 
-/** Folds the staged key, flips the coefficient where the fold asks, finds the home slot. */
-function settle<T>(to: usize, at: usize, dimension: u32, width: u32, fold: u32): void {
+/** Folds the staged key, flips the coefficient where the fold asks, finds the home slot; false where it lies in another part. */
+function settle<T>(to: usize, at: usize, dimension: u32, width: u32, fold: u32, whole: bool): bool {
   if (fold != FOLD_NONE && foldKey(at, dimension) && fold != FOLD_EVEN) {
     const last = at + 64 + ((<usize>(width - 1)) << 3);
     store<T>(last, <T>-load<T>(last));
   }
   const h = dimension == 2 ? hash2(load<i64>(at), load<i64>(at, 8)) : hashKey(at, dimension);
-  const slot = to + HEADER + <usize>home(h, slotsOf(to)) * ((<usize>(dimension + width)) << 3);
+  if (!whole && !inPart(to, h)) return false;
+  const slot = to + HEADER + <usize>home(h, to) * ((<usize>(dimension + width)) << 3);
   store<u64>(at, slot, 80);
+  return true;
 }
 
 /** Puts `count` given terms (d components, two coefficients each) into the table. OK or FULL. */
@@ -161,7 +165,7 @@ function addTerms<T>(to: usize, terms: usize, count: u32, dimension: u32, width:
     memory.copy(stage, term, keyBytes);
     store<T>(stage, load<T>(term + keyBytes), 64);
     store<T>(stage, load<T>(term + keyBytes, 8), 72);
-    settle<T>(to, stage, dimension, width, fold);
+    if (!settle<T>(to, stage, dimension, width, fold, false)) continue;
     if (!insertStaged<T>(to, 1, dimension, width)) return FULL;
   }
   return OK;
@@ -212,6 +216,7 @@ function evolve<T>(
   const moveBytes = <usize>dualMoveBytes(dimension);
   const weightAt = (<usize>(dimension * dimension)) << 3;
   const end = from + HEADER + <usize>slotsOf(from) * stride;
+  const whole = partsOf(to) == 1;
   let staged: u32 = 0;
   for (let slot = from + HEADER; slot < end; slot += stride) {
     if (vacant(slot, dimension)) continue;
@@ -234,7 +239,7 @@ function evolve<T>(
         store<T>(at, <T>(c * <f64>re - s * <f64>im), 64);
         store<T>(at, <T>(c * <f64>im + s * <f64>re), 72);
       }
-      settle<T>(to, at, dimension, width, fold);
+      if (!settle<T>(to, at, dimension, width, fold, whole)) continue;
       if (++staged == BLOCK) {
         if (!insertStaged<T>(to, staged, dimension, width)) return FULL;
         staged = 0;

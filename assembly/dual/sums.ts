@@ -5,7 +5,7 @@
  */
 import { mulHigh } from "../random/choices";
 import { fractionOf, turn, turnCos, turnSin } from "./phase";
-import { dualCount, FOLD_NONE, foldKey, HEADER, hash2, hashKey, home, locate, slotsOf, vacant } from "./table";
+import { FOLD_NONE, foldKey, HEADER, hash2, hashKey, home, locate, slotsOf, vacant } from "./table";
 
 let sum0: f64 = 0;
 let lost0: f64 = 0;
@@ -36,7 +36,7 @@ function add1(t: f64): void {
 /** Address of the slot that holds `key` (folded already), or 0. */
 function find(table: usize, key: usize, dimension: u32, width: u32): usize {
   const h = dimension == 2 ? hash2(load<i64>(key), load<i64>(key, 8)) : hashKey(key, dimension);
-  const at = locate(table, key, dimension, (<usize>(dimension + width)) << 3, home(h, slotsOf(table)));
+  const at = locate(table, key, dimension, (<usize>(dimension + width)) << 3, home(h, table));
   return vacant(at, dimension) ? 0 : at;
 }
 
@@ -146,14 +146,15 @@ export function dualFind(table: usize, key: usize, dimension: u32, width: u32, f
   return find(table, key, dimension, width);
 }
 
-/** Copies the taken slots one after the other to `out`; returns their number. */
-export function dualGather(out: usize, table: usize, dimension: u32, width: u32): u32 {
+/** Copies the taken ones of the slots from, ..., to - 1 one after the other to `out`; returns their number. */
+export function dualGather(out: usize, table: usize, from: u32, to: u32, dimension: u32, width: u32): u32 {
   const stride = (<usize>(dimension + width)) << 3;
-  const end = table + HEADER + <usize>slotsOf(table) * stride;
-  for (let slot = table + HEADER; slot < end; slot += stride) {
+  const end = table + HEADER + <usize>to * stride;
+  const first = out;
+  for (let slot = table + HEADER + <usize>from * stride; slot < end; slot += stride) {
     if (vacant(slot, dimension)) continue;
     memory.copy(out, slot, stride);
     out += stride;
   }
-  return dualCount(table);
+  return <u32>((out - first) / stride);
 }

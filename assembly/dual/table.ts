@@ -2,7 +2,9 @@
  * Frequency tables: open addressing with linear probing, in place in linear memory.
  *
  * A table is a header of 64 bytes and then its slots. Header: slots (u32), entries (u32),
- * the most entries it may take (u32), a spare word, and the largest |component| (i64).
+ * the most entries it may take (u32), parts (u32), the largest |component| (i64), part (u32).
+ * A table with part p of P takes the keys whose hash lies in the p-th of P equal ranges, so
+ * that the parts of one function may be made apart from each other.
  * Slot: d components (i64), then the coefficient: one double, or two (real, imaginary).
  * The frequency 0 marks an empty slot: it is mapped to itself by every move, so the
  * constant of a function never needs a table.
@@ -32,11 +34,17 @@ export function dualHeaderBytes(): u32 {
   return <u32>HEADER;
 }
 
+export function dualSlots(table: usize): u32 {
+  return slotsOf(table);
+}
 export function slotsOf(table: usize): u32 {
   return load<u32>(table);
 }
 export function dualCount(table: usize): u32 {
   return load<u32>(table, 4);
+}
+export function partsOf(table: usize): u32 {
+  return load<u32>(table, 12);
 }
 export function dualLargest(table: usize): i64 {
   return load<i64>(table, 16);
@@ -47,6 +55,8 @@ export function dualClear(table: usize, slots: u32, limit: u32, stride: u32): vo
   store<u32>(table, slots);
   store<u32>(table, 0, 4);
   store<u32>(table, limit, 8);
+  store<u32>(table, 1, 12);
+  store<u32>(table, 0, 24);
   store<i64>(table, 0, 16);
   memory.fill(table + HEADER, 0, <usize>slots * stride);
 }
@@ -72,9 +82,31 @@ export function hashKey(key: usize, dimension: u32): u64 {
   return mix(h);
 }
 
-/** Index of the slot at which probing for a hash starts. */
-export function home(h: u64, slots: u32): u32 {
-  return <u32>(((h >> 32) * <u64>slots) >> 32);
+/** Makes an empty table one of `parts` parts. */
+export function dualSetPart(table: usize, part: u32, parts: u32): void {
+  store<u32>(table, parts, 12);
+  store<u32>(table, part, 24);
+}
+
+/** A header for `count` slots that the caller fills, all taken: to be read from slot to slot, not looked up in. */
+export function dualSetPacked(table: usize, count: u32, largest: i64): void {
+  store<u32>(table, count);
+  store<u32>(table, count, 4);
+  store<u32>(table, count, 8);
+  store<u32>(table, 1, 12);
+  store<i64>(table, largest, 16);
+  store<u32>(table, 0, 24);
+}
+
+/** Whether a hash lies in the table's range. */
+export function inPart(table: usize, h: u64): bool {
+  return <u32>(((h >> 32) * <u64>partsOf(table)) >> 32) == load<u32>(table, 24);
+}
+
+/** Index of the slot at which probing for a hash starts: its place in the table's range. */
+export function home(h: u64, table: usize): u32 {
+  const within = ((h >> 32) * <u64>partsOf(table)) & 0xffffffff;
+  return <u32>((within * <u64>slotsOf(table)) >> 32);
 }
 
 /** Address of the slot that holds `key`, or of the empty one where it would go. */

@@ -46,6 +46,13 @@ export interface IntegerTerm {
   readonly im: bigint;
 }
 
+/** A table's slots without gaps. */
+export interface PackedFrequencies {
+  readonly words: BigInt64Array;
+  /** Largest |component|. */
+  readonly largest: bigint;
+}
+
 /** Moves laid out in the arena. */
 export interface PlacedMoves {
   readonly at: number;
@@ -58,11 +65,18 @@ export interface PlacedMoves {
 export type StepEnd = "done" | "full" | "overflow";
 
 const LOAD = 0.8;
+/** Slots that are passed in and out at a time: few enough to stay in the processor's cache. */
+const BLOCK = 8192;
 const INT64 = 1n << 63n;
 
 /** Whether every matrix entry fits in the 63 bits of a component; `place` refuses others. */
 export function movesFit(moves: readonly DualMove[]): boolean {
   return moves.every((m) => m.matrix.every((row) => row.every((e) => e > -INT64 && e < INT64)));
+}
+
+/** Slots of a table for so many entries. */
+function slotsFor(entries: number): number {
+  return Math.max(64, Math.ceil(entries / LOAD) + 1);
 }
 
 /** Bytes of a slot. */
@@ -77,7 +91,6 @@ export function entriesWithin(bytes: number, shape: DualShape, tables: number): 
 
 export class DualTables {
   private readonly at: number[] = [];
-  private readonly slots: number;
   private readonly scratch: number;
   private readonly stride: number;
   private readonly fold: number;
@@ -96,11 +109,10 @@ export class DualTables {
   ) {
     const { raw } = kernel;
     this.stride = strideOf(shape);
-    this.slots = Math.max(64, Math.ceil(entries / LOAD) + 1);
     this.fold = { none: raw.dualFoldNone(), even: raw.dualFoldEven(), conjugate: raw.dualFoldConjugate() }[shape.fold];
     this.modulus = BigInt(shape.modulus ?? 0);
     this.exact = shape.exact === true;
-    const bytes = raw.dualHeaderBytes() + this.slots * this.stride;
+    const bytes = raw.dualHeaderBytes() + slotsFor(entries) * this.stride;
     kernel.require(tables * bytes, `${tables} frequency tables of ${entries} entries`);
     for (let i = 0; i < tables; i++) this.at.push(kernel.alloc(bytes, "a frequency table"));
     this.scratch = kernel.alloc(256, "frequency scratch");
@@ -153,8 +165,7 @@ export class DualTables {
 
   private clear(table: number, wanted: number): void {
     const limit = Math.min(this.entries, Math.max(wanted, 1));
-    const slots = Math.min(this.slots, Math.max(64, Math.ceil(limit / LOAD) + 1));
-    this.kernel.raw.dualClear(this.at[table] as number, slots, limit, this.stride);
+    this.kernel.raw.dualClear(this.at[table] as number, slotsFor(limit), limit, this.stride);
   }
 
   /**
@@ -189,13 +200,19 @@ export class DualTables {
    * @param keep frequencies with a larger |component| are dropped; absent: none
    */
   evolve(from: number, to: number, moves: PlacedMoves, keep?: bigint): StepEnd {
+    const most = keep === undefined || keep >= INT64 ? 0n : keep;
+    this.clear(to, this.count(from) * moves.count);
+    return this.step(this.at[from] as number, this.at[to] as number, moves, most);
+  }
+
+  /** Adds the image of the table at one address to that at another. */
+  private step(from: number, to: number, moves: PlacedMoves, keep: bigint): StepEnd {
     const { raw } = this.kernel;
     const { dimension, width } = this.shape;
-    this.clear(to, this.count(from) * moves.count);
-    const checked = this.modulus === 0n && raw.dualLargest(this.at[from] as number) * moves.reach >= INT64;
+    const checked = this.modulus === 0n && raw.dualLargest(from) * moves.reach >= INT64;
     const status = raw.dualEvolve(
-      this.at[from] as number,
-      this.at[to] as number,
+      from,
+      to,
       moves.at,
       moves.count,
       dimension,
@@ -203,7 +220,7 @@ export class DualTables {
       this.fold,
       this.modulus,
       checked,
-      keep === undefined || keep >= INT64 ? 0n : keep,
+      keep,
       this.exact,
     );
     if (status === 0) return "done";
@@ -219,6 +236,48 @@ export class DualTables {
   wouldFill(table: number, before: number, moves: PlacedMoves): boolean {
     const count = this.count(table);
     return count * Math.min(moves.count, count / Math.max(1, before)) > 1.2 * this.entries;
+  }
+
+  /** The slots taken, one after the other: for `evolvePart` elsewhere. */
+  packed(table: number): PackedFrequencies {
+    const { dimension: d, width } = this.shape;
+    const { kernel } = this;
+    const at = this.at[table] as number;
+    const slots = kernel.raw.dualSlots(at) >>> 0;
+    const words = new BigInt64Array(this.count(table) * (d + width));
+    kernel.scoped(() => {
+      const buffer = kernel.alloc(this.stride * BLOCK, "frequencies on their way");
+      let filled = 0;
+      for (let from = 0; from < slots; from += BLOCK) {
+        const count = kernel.raw.dualGather(buffer, at, from, Math.min(slots, from + BLOCK), d, width) >>> 0;
+        words.set(kernel.i64(buffer, count * (d + width)), filled);
+        filled += count * (d + width);
+      }
+    });
+    return { words, largest: this.largest(table) };
+  }
+
+  /**
+   * One step from frequencies held elsewhere, into the part of a table whose hashes lie in the
+   * `part`-th of `parts` ranges. They pass through this memory in blocks.
+   */
+  evolvePart(source: PackedFrequencies, to: number, moves: PlacedMoves, part: number, parts: number): StepEnd {
+    const { kernel } = this;
+    const { dimension: d, width } = this.shape;
+    this.clear(to, this.entries);
+    kernel.raw.dualSetPart(this.at[to] as number, part, parts);
+    return kernel.scoped(() => {
+      const block = kernel.alloc(kernel.raw.dualHeaderBytes() + this.stride * BLOCK, "frequencies on their way");
+      const words = BLOCK * (d + width);
+      for (let from = 0; from < source.words.length; from += words) {
+        const some = source.words.subarray(from, from + words);
+        kernel.raw.dualSetPacked(block, some.length / (d + width), source.largest);
+        kernel.i64(block + kernel.raw.dualHeaderBytes(), some.length).set(some);
+        const end = this.step(block, this.at[to] as number, moves, 0n);
+        if (end !== "done") return end;
+      }
+      return "done";
+    });
   }
 
   count(table: number): number {
@@ -294,7 +353,8 @@ export class DualTables {
     const { kernel } = this;
     return kernel.scoped(() => {
       const at = kernel.alloc(this.stride * Math.max(1, this.count(table)), "the listed frequencies");
-      const count = kernel.raw.dualGather(at, this.at[table] as number, d, width);
+      const place = this.at[table] as number;
+      const count = kernel.raw.dualGather(at, place, 0, kernel.raw.dualSlots(place), d, width);
       return Array.from({ length: count }, (_, i) => {
         const values = kernel.f64(at + i * this.stride + 8 * d, width);
         const frequency = [...kernel.i64(at + i * this.stride, d)];

@@ -5,10 +5,12 @@ import { forwardMoves } from "../dual/moves.js";
 import { type DualMove, type DualShape, DualTables, entriesWithin, movesFit, type StepEnd } from "../kernel/dual.js";
 import { afterStep, type TableBound } from "../kernel/dual-rounding.js";
 import { loadKernel } from "../kernel/kernel.js";
+import type { Session } from "../session.js";
 import { type IntegerMatrix, inverseMatrix } from "../walk/integers.js";
 import type { Walk } from "../walk/walk.js";
 import { type ComplexQuantity, exactly, exactReaderOf, readerOf } from "./readers.js";
 import type { LawCoefficient } from "./result.js";
+import { followSpread, SPREAD_FROM } from "./spread.js";
 
 export interface FollowRequest {
   readonly frequency: readonly bigint[];
@@ -21,6 +23,8 @@ export interface FollowRequest {
   readonly memoryLimit: number;
   /** In exact integers: see `notInIntegers`; from a density with rational coefficients. */
   readonly exact?: boolean;
+  /** Where large steps are spread over its pool: not inside of a job. */
+  readonly session?: Session;
   /** Called before each step with the products since the last pause; may wait, or throw to stop. */
   readonly pause?: (step: number, products: number) => Promise<void> | void;
 }
@@ -115,6 +119,12 @@ export async function follow(walk: Walk, request: FollowRequest): Promise<LawEnd
     if (whole !== undefined && whole.total ** BigInt(step + 1) >= 1n << 63n)
       return { coefficients, end: "coefficients" };
     await request.pause?.(step, products);
+    if (request.session !== undefined && products >= SPREAD_FROM && walk.start.type === "point" && !residues) {
+      const spread = { shape, moves: dual, start: walk.start, session: request.session, entries, phases };
+      const state = { packed: tables.packed(now), bound };
+      const { pause, products: most } = request;
+      return followSpread(spread, state, { coefficients, step, spent, before }, { last: steps, products: most, pause });
+    }
     const most = keep?.(step + 1);
     const drops = most !== undefined && tables.largest(now) * moves.reach > most;
     const end = !drops && tables.wouldFill(now, before, moves) ? "full" : tables.evolve(now, 1 - now, moves, most);

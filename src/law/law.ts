@@ -36,6 +36,7 @@ function followIn(session: Session, walk: Walk, request: LawRequest, options: La
     steps,
     denominator: commonDenominator(walk),
     exact: options.exact === true,
+    session,
     ...LAW_BUDGET[session.effort],
     memoryLimit: session.memoryLimit,
     pause: async (step, products) => {
