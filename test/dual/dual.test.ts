@@ -238,7 +238,9 @@ describe("limits", () => {
   it("are refused before the run, with the size that was found", async () => {
     const kernel = await loadKernel({ memoryLimit: 2 ** 20 });
     const shape: DualShape = { dimension: 2, width: 1, fold: "even" };
-    expect(() => new DualTables(kernel, shape, 1_000_000, 2)).toThrow(/2 frequency tables of 1000000 entries would take/);
+    expect(() => new DualTables(kernel, shape, 1_000_000, 2)).toThrow(
+      /2 frequency tables of 1000000 entries would take/,
+    );
     const tables = new DualTables(kernel, shape, 100, 2);
     expect(() =>
       tables.place([
