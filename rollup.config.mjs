@@ -7,6 +7,7 @@ import json from "@rollup/plugin-json";
 import { nodeResolve } from "@rollup/plugin-node-resolve";
 import terser from "@rollup/plugin-terser";
 import esbuild from "rollup-plugin-esbuild";
+import license from "rollup-plugin-license";
 
 const manifest = JSON.parse(readFileSync(new URL("package.json", import.meta.url), "utf8"));
 const external = [...Object.keys(manifest.dependencies), /^node:/];
@@ -35,6 +36,9 @@ const copyFiles = {
   },
 };
 
+// What the bundles carry of other packages, with their licences.
+const notices = (dir) => license({ thirdParty: { output: { file: `${dir}/THIRD-PARTY.txt` } } });
+
 const output = (dir) => ({
   dir,
   format: "es",
@@ -55,7 +59,7 @@ export default [
     input: { index: "src/index.ts", worker: "src/worker.ts", cli: "src/cli/main.ts" },
     external: isExternal,
     output: output("dist/node"),
-    plugins: plugins(["node", "import", "default"], [copyFiles]),
+    plugins: plugins(["node", "import", "default"], [copyFiles, notices("dist/node")]),
     treeshake: { moduleSideEffects: (id) => /\/src\/(worker|cli\/main)\.ts$|jobs\.ts$/.test(id) },
     onwarn,
   },
@@ -63,7 +67,7 @@ export default [
     input: { index: "src/index.ts", worker: "src/worker.ts" },
     external: [],
     output: output("dist/browser"),
-    plugins: plugins(["browser", "import", "default"], [terser()]),
+    plugins: plugins(["browser", "import", "default"], [terser(), notices("dist/browser")]),
     treeshake: { moduleSideEffects: (id) => /\/src\/worker\.ts$|jobs\.ts$/.test(id) },
     onwarn,
   },
