@@ -37,7 +37,18 @@ const copyFiles = {
 };
 
 // What the bundles carry of other packages, with their licences.
-const notices = (dir) => license({ thirdParty: { output: { file: `${dir}/THIRD-PARTY.txt` } } });
+// Each licence's text once, under the packages that it is of.
+const notices = (dir) => {
+  const template = (packages) => {
+    const named = new Map();
+    for (const { name, version, license: kind, licenseText, noticeText } of packages) {
+      const text = [licenseText ?? kind, noticeText].filter(Boolean).join("\n\n").trim();
+      named.set(text, [...(named.get(text) ?? []), `${name} ${version} (${kind})`]);
+    }
+    return [...named].map(([text, names]) => `${names.sort().join("\n")}\n\n${text}\n`).join(`\n${"-".repeat(72)}\n\n`);
+  };
+  return license({ thirdParty: { output: { file: `${dir}/THIRD-PARTY.txt`, template } } });
+};
 
 const output = (dir) => ({
   dir,
