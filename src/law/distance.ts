@@ -34,10 +34,18 @@ export function lowHalf(dimension: number, cutoff: number): number[][] {
 const enclosed = ({ low, high }: Interval, method: string): Quantity =>
   low === high && Number.isInteger(low) ? exactQuantity(BigInt(low), method) : enclosedQuantity(low, high, method);
 
-/** Distances at n = 0, 1, ..., as far as every coefficient was followed. */
-export async function distanceToUniform(walk: Walk, asked: number, session: Session): Promise<DistanceToUniform> {
+/** More frequencies than this are not followed: in dimension 8 even K = 1 has 3280, and bounds that say little. */
+const MOST_FREQUENCIES = 1200;
+
+/** Distances at n = 0, 1, ..., as far as every coefficient was followed; undefined in dimension 8. */
+export async function distanceToUniform(
+  walk: Walk,
+  asked: number,
+  session: Session,
+): Promise<DistanceToUniform | undefined> {
   const steps = Math.min(asked, MOST_STEPS);
   const cutoff = cutoffFor(walk.dimension, session.effort);
+  if (((2 * cutoff + 1) ** walk.dimension - 1) / 2 > MOST_FREQUENCIES) return undefined;
   const half = lowHalf(walk.dimension, cutoff);
   const products = Math.ceil(PRODUCTS[session.effort] / half.length);
   const payloads = Array.from({ length: Math.ceil(half.length / PER_JOB) }, (_, i) => ({

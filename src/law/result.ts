@@ -53,6 +53,7 @@ export interface LawResult {
   /** Absent where too few coefficients are told from 0. */
   readonly decay?: Decay;
   readonly normBound?: NormBound;
+  /** Absent for a uniform start, and in dimension 8, where too many frequencies would have to be followed. */
   readonly distance?: DistanceToUniform;
   /** The last step reached, and why it is the last. */
   readonly reached: { readonly step: number; readonly reason: string };
