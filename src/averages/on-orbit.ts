@@ -103,7 +103,7 @@ export function orbitVariance(orbit: FiniteOrbit, weights: readonly number[], f:
   }
   const off = apply(g);
   const rest = f.centred.map((x, s) => x - off[s]!);
-  const residual = Math.sqrt(inner(rest, rest) / norm);
+  const residual = norm > 0 ? Math.sqrt(inner(rest, rest) / norm) : 0;
   const value = Math.max(0, 2 * inner(f.centred, g) - norm);
   return estimatedQuantity(
     value,

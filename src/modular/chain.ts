@@ -134,8 +134,17 @@ export function chainOf(
   probabilities: readonly Rational[],
   { signs, z, mostStates }: { readonly signs: boolean; readonly z: number; readonly mostStates: number },
 ): Chain | undefined {
-  const words = matrices.map(wordOf);
-  const size = positionsOf(words).length * (signs ? 2 : 1) * (words.some((w) => w.swap) ? 2 : 1);
-  if (size > mostStates) return undefined;
+  // Word by word: many long ones must not be written out before they are refused.
+  const words: Word[] = [];
+  const names = new Set([""]);
+  let copies = signs ? 2 : 1;
+  for (const matrix of matrices) {
+    const word = wordOf(matrix);
+    if (word.letters.length > mostStates) return undefined;
+    if (word.swap && !words.some((w) => w.swap)) copies *= 2;
+    words.push(word);
+    for (let j = 1; j < word.letters.length; j++) names.add(restOf(word, j));
+    if (names.size * copies > mostStates) return undefined;
+  }
   return expand(words, drawsOf(words, probabilities, signs), z, signs);
 }

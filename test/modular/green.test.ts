@@ -2,6 +2,7 @@
 import fc from "fast-check";
 import { describe, expect, it } from "vitest";
 import { Rational } from "../../src/exact/rational.js";
+import { chainOf } from "../../src/modular/chain.js";
 import { Green } from "../../src/modular/green.js";
 import { passage } from "../../src/modular/passage.js";
 import { type Matrix2, multiply2, productOf, reduceWord, SWAP, wordOf } from "../../src/modular/words.js";
@@ -163,5 +164,25 @@ describe("Green", () => {
     // First passages are bounded here, visits are not.
     expect(passage([[0n, -1n, 1n, 0n]], [Rational.ONE])!.visits.contracts).toBe(false);
     expect(new Green(passage([[0n, -1n, 1n, 0n]], [Rational.ONE])!).visits([1n, 0n], [1n, 0n])).toBeUndefined();
+  });
+});
+
+describe("chainOf", () => {
+  it("refuses many long words before it has written them out", () => {
+    const n = 300;
+    const shears = Array.from(
+      { length: n },
+      (_, i): Matrix2 => (i % 2 ? [1n, BigInt(i), 0n, 1n] : [1n, 0n, BigInt(i), 1n]),
+    );
+    const pairs = shears.flatMap((a) => shears.map((b) => multiply2(a, b)));
+    const share = Rational.of(1n, BigInt(pairs.length));
+    const options = { signs: false, z: 1, mostStates: 100 };
+    expect(
+      chainOf(
+        pairs,
+        pairs.map(() => share),
+        options,
+      ),
+    ).toBeUndefined();
   });
 });
