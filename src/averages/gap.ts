@@ -92,7 +92,7 @@ export function gapOf(walk: Walk, { bounds, free }: GapFinding): Gap | undefined
         }),
     evidence: {
       reading:
-        "At z = finiteAt some G >= 0 has Phi_z(G) <= G in the equations of first passages, so that the sum over n of z^n times the probability of return converges; at notFiniteAt no G has. |P^m|^2 is the inverse of the radius of convergence for P*^m P^m.",
+        "At the z called finite some G >= 0 has Phi_z(G) <= G in the equations of first passages, so that the sum over n of z^n times the probability of return converges; at the one called not finite no G has. |P^m|^2 is the inverse of the radius of convergence for P*^m P^m.",
       certificates: bounds.certificates.map(shown),
       ...(free === undefined
         ? {}
